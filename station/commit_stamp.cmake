@@ -1,0 +1,18 @@
+# Writes commit_stamp.h only when it changes, so that a build of unchanged sources compiles nothing.
+execute_process(COMMAND git -C ${SOURCE} rev-parse --short=12 HEAD OUTPUT_VARIABLE commit
+                OUTPUT_STRIP_TRAILING_WHITESPACE ERROR_QUIET RESULT_VARIABLE failed)
+if(failed)
+  set(commit "unknown")
+else()
+  execute_process(COMMAND git -C ${SOURCE} status --porcelain --untracked-files=no OUTPUT_VARIABLE changed ERROR_QUIET)
+  if(NOT changed STREQUAL "")
+    set(commit "${commit}-changed")
+  endif()
+endif()
+set(text "#pragma once\n#define PW_VERSION \"${VERSION}\"\n#define PW_COMMIT \"${commit}\"\n#define PW_COMPILER \"${COMPILER}\"\n")
+if(EXISTS ${OUT})
+  file(READ ${OUT} old)
+endif()
+if(NOT "${old}" STREQUAL "${text}")
+  file(WRITE ${OUT} "${text}")
+endif()
