@@ -10,8 +10,8 @@
 
 namespace probewright {
 
-/// The JSON of ledger bodies: objects, arrays, strings, integers below 2^53, true/false, null. No floating point, so the canonical
-/// form of RFC 8785 needs no number rules. Keys are ASCII snake_case and come out sorted.
+/// The JSON of ledger bodies: objects, arrays, strings, integers below 2^53, true/false, null. No floating point, so
+/// the canonical form of RFC 8785 needs no number rules. Keys are ASCII snake_case and come out sorted.
 class Body {
  public:
   using Object = std::map<std::string, Body>;

@@ -13,8 +13,8 @@ enum class ProblemKind { refused_input, device_lost, not_ready, ledger_trouble, 
 /// An expected outcome that is not the wanted one: what, where, and how to mend it.
 /// Its identity is `id`, for ever; the English words stand in one table (problem_table.cpp).
 struct Problem {
-  std::string id;                                            ///< slug of the table, e.g. "yaml_duplicate_key"
-  std::string where;                                         ///< file:line:column, device, table ...; may be empty
+  std::string id;                                              ///< slug of the table, e.g. "yaml_duplicate_key"
+  std::string where;                                           ///< file:line:column, device, table ...; may be empty
   std::vector<std::pair<std::string, std::string>> arguments;  ///< fill the {names} of the sentence
 
   Problem() = default;

@@ -21,6 +21,8 @@ class Faults {
  public:
   explicit Faults(std::string file) : file_(std::move(file)) {}
   void add(Place place, std::string_view id, std::initializer_list<std::pair<std::string, std::string>> arguments = {});
+  /// The same for a problem that was found without knowing its place, such as one of a unit.
+  void add(Place place, Problem problem);
   bool empty() const { return problems_.empty(); }
   /// Sorted by line and column.
   Problems take();
@@ -47,7 +49,7 @@ class Value {
   std::optional<std::string> text(Faults& faults) const;
   std::optional<double> number(Faults& faults) const;
   std::optional<long long> integer(Faults& faults) const;
-  std::optional<bool> yes_no(Faults& faults) const;               ///< yes, no, true, false
+  std::optional<bool> yes_no(Faults& faults) const;                             ///< yes, no, true, false
   std::optional<double> quantity(std::string_view unit, Faults& faults) const;  ///< "655.0 nm" in `unit`
   std::optional<Map> map(Faults& faults) const;
   std::optional<List> list(Faults& faults) const;
@@ -58,6 +60,8 @@ class Value {
   friend class List;
   struct Node;
   explicit Value(const Node* node) : node_(node) {}
+  std::string_view kind_in_words() const;
+  void tell_wrong_kind(std::string_view wanted, Faults& faults) const;
   const Node* node_;
 };
 
@@ -71,9 +75,13 @@ class Map {
   /// The value of a key that may be left out.
   std::optional<Value> maybe(std::string_view key);
   /// All (key, value, place of the key) in file order, for maps whose keys are data; marks all as read.
-  struct Item { std::string key; Place place; Value value; };
+  struct Item {
+    std::string key;
+    Place place;
+    Value value;
+  };
   std::vector<Item> items();
-  /// Reports keys that were never asked for (yaml_unknown_key).
+  /// Reports keys that were never asked for (yaml_unknown_key; yaml_unknown_key_near where a valid word is near).
   void finish(Faults& faults);
 
  private:
@@ -107,6 +115,7 @@ class Document {
   ~Document();
 
  private:
+  class Builder;
   explicit Document(std::unique_ptr<Value::Node> root);
   std::unique_ptr<Value::Node> root_;
 };

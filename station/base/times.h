@@ -30,6 +30,8 @@ inline SteadyTime operator-(SteadyTime time, Duration by) { return {time.since_s
 inline Duration operator-(SteadyTime later, SteadyTime earlier) { return later.since_start - earlier.since_start; }
 
 inline constexpr double seconds(Duration d) { return std::chrono::duration<double>(d).count(); }
-inline Duration from_seconds(double s) { return std::chrono::duration_cast<Duration>(std::chrono::duration<double>(s)); }
+inline Duration from_seconds(double s) {
+  return std::chrono::duration_cast<Duration>(std::chrono::duration<double>(s));
+}
 
 }  // namespace probewright
