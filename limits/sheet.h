@@ -5,6 +5,7 @@
 #include <string_view>
 #include <vector>
 
+#include "limits/limits.h"
 #include "station/base/digest.h"
 #include "station/base/result.h"
 
@@ -12,13 +13,6 @@ namespace probewright::limits {
 
 /// What the sheet does with a check: judged (counts in the verdict), watched (alerts, no verdict) or recorded only.
 enum class Use { judged, watch, record_only };
-
-/// One or two limits of a quantity, in the unit of the check; a limit that is not there is open.
-struct Limits {
-  std::optional<double> lower, upper;
-  bool two_sided() const { return lower && upper; }
-  bool operator==(const Limits&) const = default;
-};
 
 /// A window written as a nominal value and a tolerance on both sides.
 struct Nominal {
