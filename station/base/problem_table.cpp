@@ -139,6 +139,27 @@ constexpr std::array rows = std::to_array<ProblemRow>({
     {"risk_input", refused_input, "no risk can be computed: {what}", "correct the input"},
     {"risk_not_reachable", refused_input, "no guard band reaches a risk of {risk}", "ask for a larger risk"},
     // --- wire
+    {"port_missing", device_lost, "there is no such serial port", "check the cable and the path in the station file"},
+    {"port_not_a_tty", refused_input, "this is no serial port", "check the path in the station file"},
+    {"port_busy", not_ready, "another program holds this serial port",
+     "end the other program; only one station can use a device"},
+    {"port_permission", not_ready, "this account may not open the serial port",
+     "add the account to the group dialout and sign in again, or set a udev rule for the device"},
+    {"port_baud", refused_input, "the serial port cannot run at {baud} baud", "check the baud rate in the station file"},
+    {"port_failed", device_lost, "the serial port failed: {reason}", "unplug the device and plug it in again"},
+    {"pty_failed", not_ready, "cannot make a pseudo-terminal: {reason}", "check that /dev/ptmx and /dev/pts are there"},
+    {"pty_link_failed", refused_input, "cannot make the link to the pseudo-terminal: {reason}",
+     "choose another folder for the links"},
+    {"cobs_malformed", device_lost, "a frame does not decode: {reason}", "check the cable of the device"},
+    {"frame_length", device_lost, "a frame has the wrong length ({size} bytes)", "check the cable of the device"},
+    {"frame_check", device_lost, "a frame has a wrong check", "check the cable of the device"},
+    {"line_checksum_missing", device_lost, "an answer has no checksum", "check the cable of the device"},
+    {"line_checksum_wrong", device_lost, "an answer has the checksum {found} instead of {computed}",
+     "check the cable of the device"},
+    {"block_malformed", device_lost, "a data block cannot be read: {reason}", "check the cable of the device"},
+    {"block_short", device_lost, "a data block of {size} bytes has only {found}", "check the cable of the device"},
+    {"message_malformed", device_lost, "a message cannot be read at character {offset}: {number} {words}",
+     "check the firmware of the device against its wire description"},
     // --- phantom
     // --- adapter
     // --- emulated
