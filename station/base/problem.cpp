@@ -5,14 +5,25 @@
 namespace probewright {
 namespace {
 
+/// The value of the argument `name`, or nullptr.
+const std::string* argument(const Problem& problem, std::string_view name) {
+  for (const auto& [key, value] : problem.arguments)
+    if (key == name) return &value;
+  return nullptr;
+}
+
+/// One pass over the sentence, so that braces inside a value stay as they are.
 std::string fill(std::string_view sentence, const Problem& problem) {
-  std::string filled{sentence};
-  for (const auto& [name, value] : problem.arguments) {
-    const std::string mark = "{" + name + "}";
-    for (auto at = filled.find(mark); at != std::string::npos; at = filled.find(mark, at + value.size()))
-      filled.replace(at, mark.size(), value);
+  std::string filled;
+  while (!sentence.empty()) {
+    const auto open = sentence.find('{'), close = sentence.find('}', open);
+    if (close == std::string_view::npos) break;
+    const std::string* value = argument(problem, sentence.substr(open + 1, close - open - 1));
+    filled += sentence.substr(0, open);
+    filled += value != nullptr ? std::string_view{*value} : sentence.substr(open, close - open + 1);
+    sentence.remove_prefix(close + 1);
   }
-  return filled;
+  return filled += sentence;
 }
 
 }  // namespace

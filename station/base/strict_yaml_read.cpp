@@ -27,6 +27,13 @@ class Places {
     }
   }
 
+  /// The text from a mark on.
+  std::string_view from(const YAML::Mark& mark) const {
+    if (mark.line < 0 || static_cast<std::size_t>(mark.line) >= line_starts_.size()) return {};
+    const std::size_t offset = line_starts_[static_cast<std::size_t>(mark.line)];
+    return text_.substr(std::min(offset + static_cast<std::size_t>(std::max(mark.column, 0)), text_.size()));
+  }
+
   Place of(const YAML::Mark& mark) const {
     if (mark.line < 0 || static_cast<std::size_t>(mark.line) >= line_starts_.size()) return {mark.line + 1, 1};
     const auto line = static_cast<std::size_t>(mark.line);
@@ -55,6 +62,22 @@ class ViewBuffer : public std::streambuf {
     setg(start, start, start + text.size());
   }
 };
+
+/// Whether the quotation mark at the front of `text` has its partner. yaml-cpp takes the end of the file for one,
+/// so a file that was cut short inside a quoted value would pass for whole.
+bool quote_is_closed(std::string_view text) {
+  const char quote = text.front();
+  for (std::size_t at = 1; at < text.size(); ++at) {
+    if (quote == '"' && text[at] == '\\') {
+      ++at;
+    } else if (text[at] == quote) {
+      const bool doubled = quote == '\'' && at + 1 < text.size() && text[at + 1] == quote;
+      if (!doubled) return true;
+      ++at;
+    }
+  }
+  return false;
+}
 
 /// Thrown out of the events to end the reading of a text that is not worth going on with; the fault is told.
 struct GivenUp {};
@@ -87,6 +110,7 @@ class Document::Builder final : public YAML::EventHandler {
   void OnScalar(const YAML::Mark& mark, const std::string& tag, YAML::anchor_t anchor,
                 const std::string& value) override {
     refuse_extras(mark, tag, anchor);
+    refuse_open_quote(mark);
     auto node = make(Node::Kind::scalar, mark);
     node->text = value;
     deliver(std::move(node));
@@ -121,6 +145,13 @@ class Document::Builder final : public YAML::EventHandler {
     // "?" stands for a plain value, "!" for a quoted one: neither was written.
     if (!tag.empty() && tag != "?" && tag != "!") faults_.add(places_.of(mark), "yaml_tag", {{"tag", tag}});
     if (anchor != YAML::NullAnchor) faults_.add(places_.of(mark), "yaml_anchor");
+  }
+
+  void refuse_open_quote(const YAML::Mark& mark) {
+    const std::string_view text = places_.from(mark);
+    if (!(text.starts_with('"') || text.starts_with('\'')) || quote_is_closed(text)) return;
+    faults_.add(places_.of(mark), "yaml_syntax", {{"reason", "the quotation mark is never closed"}});
+    throw GivenUp{};
   }
 
   void open(Node::Kind kind, const YAML::Mark& mark, const std::string& tag, YAML::anchor_t anchor) {
@@ -164,6 +195,7 @@ class Document::Builder final : public YAML::EventHandler {
   }
 
   void take_value(Frame& frame, std::unique_ptr<Node> node) {
+    if (node->kind == Node::Kind::null) node->place = frame.key->place;  // what is not there has no place of its own
     if (!frame.dropped) {
       frame.node->index.emplace(frame.key->text, frame.node->children.size());
       frame.node->keys.push_back(*std::move(frame.key));

@@ -1,0 +1,96 @@
+#include <gtest/gtest.h>
+
+#include <algorithm>
+#include <filesystem>
+#include <fstream>
+#include <set>
+#include <sstream>
+
+#include "station/base/problem_table.h"
+#include "station/base/result.h"
+
+namespace probewright {
+namespace {
+
+TEST(ProblemTable, IdsAreUniqueSlugs) {
+  std::set<std::string_view> ids;
+  for (const ProblemRow& row : problem_table()) {
+    EXPECT_TRUE(ids.insert(row.id).second) << row.id;
+    EXPECT_TRUE(!row.id.empty() && std::all_of(row.id.begin(), row.id.end(), [](char c) {
+      return (c >= 'a' && c <= 'z') || (c >= '0' && c <= '9') || c == '_';
+    })) << row.id;
+  }
+}
+
+TEST(ProblemTable, EveryRowSaysWhatAndHowToMendIt) {
+  for (const ProblemRow& row : problem_table()) {
+    EXPECT_GE(row.what.size(), 6u) << row.id;
+    EXPECT_GE(row.remedy.size(), 6u) << row.id;
+    for (const std::string_view text : {row.what, row.remedy}) {
+      EXPECT_EQ(std::count(text.begin(), text.end(), '{'), std::count(text.begin(), text.end(), '}')) << row.id;
+      EXPECT_FALSE(text.ends_with('.')) << row.id << ": sentences are put together, so they carry no full stop";
+    }
+  }
+}
+
+/// Every word in quotation marks that follows "Problem{" or "Problems{{" in the product's sources.
+std::set<std::string> ids_told_by_the_sources() {
+  std::set<std::string> ids;
+  for (const char* folder : {"station", "drivers", "limits", "db"})
+    for (const auto& entry : std::filesystem::recursive_directory_iterator{std::string{PW_SOURCE_DIR} + "/" + folder}) {
+      if (entry.path().extension() != ".cpp" && entry.path().extension() != ".h") continue;
+      std::ifstream file{entry.path()};
+      std::stringstream text;
+      text << file.rdbuf();
+      const std::string source = text.str();
+      for (auto at = source.find("Problem{\""); at != std::string::npos; at = source.find("Problem{\"", at + 1)) {
+        const auto start = at + std::string_view{"Problem{\""}.size();
+        ids.insert(source.substr(start, source.find('"', start) - start));
+      }
+    }
+  return ids;
+}
+
+TEST(ProblemTable, KnowsEveryIdThatTheSourcesTell) {
+  const auto ids = ids_told_by_the_sources();
+  EXPECT_GE(ids.size(), 5u) << "the search itself found next to nothing";
+  for (const std::string& id : ids) EXPECT_NE(find_problem(id), nullptr) << id << " is told but not in the table";
+}
+
+TEST(Problem, FillsItsSentence) {
+  const Problem problem{"yaml_duplicate_key", "sheet.yaml:7:3", {{"key", "upper"}, {"line", "5"}}};
+  EXPECT_EQ(problem.text(),
+            "sheet.yaml:7:3: the key \"upper\" stands here again; it stands first in line 5 (keep one of the two)");
+  EXPECT_EQ(problem.kind(), ProblemKind::refused_input);
+  EXPECT_EQ(exit_status(problem.kind()), 2);
+}
+
+// An argument whose value holds braces must not be filled again, nor without end.
+TEST(Problem, ValuesAreNotFilledAgain) {
+  const Problem problem{"yaml_unknown_key", "", {{"key", "{key}{key}"}}};
+  EXPECT_EQ(problem.what(), "there is no key \"{key}{key}\" here");
+}
+
+TEST(Problem, AnUnknownIdIsOurOwnMistake) {
+  const Problem problem{"no_such_problem", "somewhere"};
+  EXPECT_EQ(problem.kind(), ProblemKind::our_bug);
+  EXPECT_EQ(problem.what(), "no_such_problem");
+  EXPECT_FALSE(problem.remedy().empty());
+}
+
+TEST(Result, ValueThrowsTheProblem) {
+  const Result<int> refused = Problem{"csv_empty", "a.csv:1:1"};
+  try {
+    (void)refused.value();
+    FAIL() << "nothing thrown";
+  } catch (const ProblemError& error) {
+    EXPECT_EQ(error.problem().id, "csv_empty");
+    EXPECT_STREQ(error.what(), "a.csv:1:1: the table has no rows (check that this is the right file)");
+  }
+  const ResultOrFaults<int> faults = Problems{{"csv_empty", "b.csv"}, {"csv_quote", "b.csv"}};
+  EXPECT_THROW((void)faults.value(), ProblemError);
+  EXPECT_EQ(faults.error().size(), 2u);
+}
+
+}  // namespace
+}  // namespace probewright
