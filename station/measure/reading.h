@@ -20,7 +20,8 @@ struct Reading {
   std::string check;            ///< slug of the catalogue
   std::optional<double> value;  ///< in `unit`; yes/no: 1 or 0; finite, never -0.0
   std::string none_reason;      ///< set when there is no value: not_captured, blocked_by:<check>, clipped,
-                                ///< too_dark, no_peak, line_cut_off, id_open, at_compliance, not_a_number
+                                ///< too_dark, no_peak, cut_off, no_modulation,
+                                ///< id_open, not_certified, not_a_number
   std::optional<double> expanded_uncertainty;  ///< k = 2, in `unit`; none for yes/no
   std::string unit;                            ///< as in the catalogue
   std::string definition;                      ///< method, parameters and version: "centroid;threshold=0.01;...;v1"

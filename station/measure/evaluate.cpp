@@ -1,0 +1,365 @@
+#include "station/measure/evaluate.h"
+
+#include <algorithm>
+#include <array>
+#include <cmath>
+#include <optional>
+#include <string>
+
+#include "station/base/catalogue.h"
+#include "station/base/numbers.h"
+#include "station/measure/pulses.h"
+#include "station/measure/spectrum.h"
+
+namespace probewright::measure {
+namespace {
+
+constexpr double reference_C = 25.0;
+constexpr double coverage_factor = 2.0;
+
+/// What all checks of one run share. Each line is found once.
+struct Run {
+  const Model& model;
+  const Certificates& certificates;
+  const Captures& captures;
+  PerBand<Result<Line>> lines;
+
+  double above_reference_K(double told_C) const {
+    return certificates.phantom.true_temperature_C(told_C) - reference_C;
+  }
+};
+
+/// A value before it is finished: with what only the captures can tell of its uncertainty.
+struct Found {
+  double value = 0.0;
+  std::vector<Component> components;
+};
+
+/// A found value, or the slug of the reason why there is none.
+struct Outcome {
+  std::optional<Found> found;
+  std::string reason;
+};
+Outcome none(std::string reason) { return {std::nullopt, std::move(reason)}; }
+Outcome found(double value, std::vector<Component> components = {}) {
+  return {Found{value, std::move(components)}, {}};
+}
+
+/// The reason slug of a reading for a problem of the methods.
+std::string reason_of(const Problem& problem) {
+  constexpr std::array reasons = std::to_array<std::pair<std::string_view, std::string_view>>({
+      {"spectrum_clipped", "clipped"},
+      {"spectrum_too_dark", "too_dark"},
+      {"spectrum_no_peak", "no_peak"},
+      {"spectrum_cut_off", "cut_off"},
+      {"pulses_too_dark", "too_dark"},
+      {"pulses_no_modulation", "no_modulation"},
+  });
+  for (const auto& [id, reason] : reasons)
+    if (problem.id == id) return std::string{reason};
+  return problem.id;  // a capture that no healthy device sends; the id says what is wrong with it
+}
+
+Outcome not_captured(const Run& run) {
+  return none(run.captures.blocked_by.empty() ? "not_captured" : "blocked_by:" + run.captures.blocked_by);
+}
+
+Component noise(double u) { return {"noise", u, Scope::per_probe}; }
+
+/// Value at 25 C for a quantity that moves by `per_K`, with what that adds to its uncertainty.
+Found at_reference(const Run& run, Found as_found, double told_C, double per_K, double per_K_u) {
+  const double above_K = run.above_reference_K(told_C);
+  as_found.value -= per_K * above_K;
+  as_found.components.push_back(
+      {"temperature", std::abs(per_K) * run.model.temperature.temperature_u_K, Scope::common});
+  as_found.components.push_back({"temperature_coefficient", per_K_u * std::abs(above_K), Scope::per_probe});
+  return as_found;
+}
+
+// --- contact
+
+Outcome probe_present(const Run& run) {
+  const auto& electrical = run.captures.electrical;
+  if (!electrical) return not_captured(run);
+  const auto &phantom = electrical->present_phantom, &adapter = electrical->present_adapter;
+  if ((phantom && !*phantom) || (adapter && !*adapter)) return found(0.0);
+  if (!phantom || !adapter) return not_captured(run);
+  return found(1.0);
+}
+
+Outcome id_resistance(const Run& run) {
+  const auto& electrical = run.captures.electrical;
+  if (electrical && electrical->id_open) return none("id_open");
+  if (!electrical || !electrical->id_resistance_ohm) return not_captured(run);
+  return found(*electrical->id_resistance_ohm * run.certificates.adapter.resistance_scale);
+}
+
+/// The bin that this resistance stands for: the nearest by ratio, since tolerances are relative.
+const Bin* coded_bin(const Model& model, double ohm) {
+  const Bin* best = nullptr;
+  const auto apart = [ohm](const Bin& bin) { return std::abs(std::log(ohm / bin.coded_ohm)); };
+  for (const Bin& bin : model.bins)
+    if (best == nullptr || apart(bin) < apart(*best)) best = &bin;
+  return best;
+}
+
+Outcome id_deviation(const Run& run) {
+  const Outcome resistance = id_resistance(run);
+  if (!resistance.found) return resistance;
+  const double ohm = resistance.found->value;
+  // A short has no logarithm; it is nearest to the lowest resistor.
+  const Bin* bin = ohm > 0.0 ? coded_bin(run.model, ohm) : (run.model.bins.empty() ? nullptr : &run.model.bins.front());
+  if (bin == nullptr) return none("not_certified");
+  return found(100.0 * (ohm / bin->coded_ohm - 1.0));
+}
+
+// --- LEDs, electrical
+
+const std::optional<ForwardVoltage>* at_drive(const Run& run, Band band) {
+  const auto& electrical = run.captures.electrical;
+  return electrical && electrical->led.of(band).at_drive ? &electrical->led.of(band).at_drive : nullptr;
+}
+
+template <Band band>
+Outcome forward_voltage(const Run& run) {
+  const auto* led = at_drive(run, band);
+  if (led == nullptr) return not_captured(run);
+  const TemperatureModel& t = run.model.temperature;
+  Found as_found{(*led)->voltage_V * run.certificates.adapter.voltage_scale, {}};
+  return {at_reference(run, std::move(as_found), run.captures.electrical->temperature_C, t.voltage_V_per_K.of(band),
+                       t.voltage_V_per_K_u.of(band)),
+          {}};
+}
+
+template <Band band>
+Outcome drive(const Run& run) {
+  const auto* led = at_drive(run, band);
+  if (led == nullptr) return not_captured(run);
+  return found((*led)->delivered_mA * run.certificates.adapter.drive_scale);
+}
+
+// --- LEDs, optical
+
+Result<Line> line_of(const Model& model, const Certificates& certificates, const Captures& captures, Band band) {
+  const auto& capture = captures.spectrum(band);
+  if (!capture) return Problem{"not_captured", ""};
+  const bool wanted = (model.needs() & needs_spectra) != 0;
+  if (!wanted) return Problem{"not_captured", ""};
+  const auto spectrum = spectrum_of(*capture, certificates.phantom);
+  if (!spectrum) return spectrum.error();
+  return find_line(*spectrum, {band, standard_threshold, certificates.phantom.slit_nm});
+}
+
+/// A wavelength or width of a line, referred to 25 C.
+Outcome of_line(const Run& run, Band band, double Line::*value, double Line::*u, const PerBand<double>& per_K,
+                const PerBand<double>& per_K_u) {
+  if (!run.captures.spectrum(band)) return not_captured(run);
+  const auto& line = run.lines.of(band);
+  if (!line) return none(reason_of(line.error()));
+  return {at_reference(run, {(*line).*value, {noise((*line).*u)}}, run.captures.spectrum(band)->temperature_C,
+                       per_K.of(band), per_K_u.of(band)),
+          {}};
+}
+
+template <Band band>
+Outcome peak(const Run& run) {
+  const TemperatureModel& t = run.model.temperature;
+  return of_line(run, band, &Line::peak_nm, &Line::peak_u, t.centroid_nm_per_K, t.centroid_nm_per_K_u);
+}
+template <Band band>
+Outcome centroid(const Run& run) {
+  const TemperatureModel& t = run.model.temperature;
+  return of_line(run, band, &Line::centroid_nm, &Line::centroid_u, t.centroid_nm_per_K, t.centroid_nm_per_K_u);
+}
+template <Band band>
+Outcome half_power_centre(const Run& run) {
+  const TemperatureModel& t = run.model.temperature;
+  return of_line(run, band, &Line::half_power_centre_nm, &Line::half_power_centre_u, t.centroid_nm_per_K,
+                 t.centroid_nm_per_K_u);
+}
+template <Band band>
+Outcome width(const Run& run) {
+  const TemperatureModel& t = run.model.temperature;
+  return of_line(run, band, &Line::width_nm, &Line::width_u, t.width_nm_per_K, t.width_nm_per_K_u);
+}
+
+// --- detector
+
+Outcome dark_as_found(const Run& run) {
+  const auto& dark = run.captures.dark;
+  if (!dark) return not_captured(run);
+  const double scale = run.certificates.adapter.photocurrent_scale;
+  return found(scale * (dark->connected_nA - dark->open_nA),
+               {noise(scale * std::hypot(dark->connected_sd_nA, dark->open_sd_nA))});
+}
+
+/// Referred to 25 C by the doubling law: value * 2^(-above / doubling).
+Outcome dark_current(const Run& run) {
+  Outcome outcome = dark_as_found(run);
+  if (!outcome.found) return outcome;
+  const TemperatureModel& t = run.model.temperature;
+  const double above_K = run.above_reference_K(run.captures.dark->temperature_C);
+  const double factor = std::exp2(-above_K / t.dark_doubling_K), ln2 = std::log(2.0);
+  Found& dark = *outcome.found;
+  dark.value *= factor;
+  for (Component& component : dark.components) component.standard_u *= factor;
+  const double per_K = std::abs(dark.value) * ln2 / t.dark_doubling_K;
+  dark.components.push_back({"temperature", per_K * t.temperature_u_K, Scope::common});
+  dark.components.push_back({"temperature_coefficient",
+                             per_K * std::abs(above_K) / t.dark_doubling_K * t.dark_doubling_K_u, Scope::per_probe});
+  return outcome;
+}
+
+// --- ratio response
+
+/// A converter code at either end of its 24 bits means that the amplifier was full.
+bool is_clipped(const PulseCapture& capture) {
+  constexpr std::int32_t most = (1 << 23) - 1;
+  const auto full = [](std::int32_t code) { return code >= most || code <= -most; };
+  for (const auto* train : {&capture.red, &capture.dark_a, &capture.infrared, &capture.dark_b})
+    if (std::any_of(train->begin(), train->end(), full)) return true;
+  return false;
+}
+
+Result<PerBand<Train>> trains_of(const PulseCapture& capture, double nA_per_code) {
+  const auto in_nA = [nA_per_code](const std::vector<std::int32_t>& codes) {
+    std::vector<double> out(codes.size());
+    std::transform(codes.begin(), codes.end(), out.begin(), [&](std::int32_t code) { return nA_per_code * code; });
+    return out;
+  };
+  std::vector<double> start_s(capture.red.size());
+  for (std::size_t i = 0; i < start_s.size(); ++i)
+    start_s[i] = capture.cycle_s * (static_cast<double>(capture.first_cycle) + static_cast<double>(i));
+  return subtract_dark(in_nA(capture.red), in_nA(capture.dark_a), in_nA(capture.infrared), in_nA(capture.dark_b),
+                       start_s, capture.cycle_s);
+}
+
+Result<Ratio> ratio_of_capture(const PulseCapture& capture, double nA_per_code) {
+  const auto trains = trains_of(capture, nA_per_code);
+  if (!trains) return trains.error();
+  const PulseRules rules{capture.modulator_Hz, false};
+  const auto red = fit_pulses(trains->red, rules), infrared = fit_pulses(trains->infrared, rules);
+  if (!red) return red.error();
+  if (!infrared) return infrared.error();
+  return ratio_of({*red, *infrared});
+}
+
+/// Deviation of R from its certificate at one set point, in %.
+Outcome ratio_deviation(const Run& run, double nominal) {
+  const PulseCapture* capture = run.captures.pulse(nominal);
+  if (capture == nullptr) return not_captured(run);
+  const CalibratedSetPoint* calibrated = run.certificates.phantom.set_point(nominal);
+  if (calibrated == nullptr) return none("not_certified");
+  if (is_clipped(*capture)) return none("clipped");
+  const auto ratio = ratio_of_capture(*capture, run.certificates.adapter.nA_per_code);
+  if (!ratio) return none(reason_of(ratio.error()));
+  return found(100.0 * (ratio->value / calibrated->ratio - 1.0), {noise(100.0 * ratio->noise_u / calibrated->ratio)});
+}
+Outcome ratio_0p4(const Run& run) { return ratio_deviation(run, 0.4); }
+Outcome ratio_1p0(const Run& run) { return ratio_deviation(run, 1.0); }
+Outcome ratio_1p6(const Run& run) { return ratio_deviation(run, 1.6); }
+
+// --- all checks
+
+/// How a check is computed and what its value means. The definition text is kept with each reading and compared as it
+/// stands: change a method or a parameter, and the version goes up.
+struct Method {
+  std::string_view check;
+  Outcome (*compute)(const Run&);
+  std::string_view definition;
+};
+
+constexpr std::array methods = std::to_array<Method>({
+    {"probe_present", probe_present, "presence;phantom and adapter;v1"},
+    {"id_resistance", id_resistance, "id-resistance;v1"},
+    {"id_deviation", id_deviation, "id-deviation;from=nearest coded value by ratio;v1"},
+    {"red_forward_voltage", forward_voltage<Band::red>, "forward-voltage;at=drive;ref=25C;v1"},
+    {"infrared_forward_voltage", forward_voltage<Band::infrared>, "forward-voltage;at=drive;ref=25C;v1"},
+    {"red_drive", drive<Band::red>, "drive-delivered;in=slot;v1"},
+    {"infrared_drive", drive<Band::infrared>, "drive-delivered;in=slot;v1"},
+    {"red_peak", peak<Band::red>, "peak;fit=cubic;top=0.2;window=605-785;ref=25C;v1"},
+    {"infrared_peak", peak<Band::infrared>, "peak;fit=cubic;top=0.2;window=800-1045;ref=25C;v1"},
+    {"red_centroid", centroid<Band::red>, "centroid;threshold=0.01;window=605-785;ref=25C;v1"},
+    {"infrared_centroid", centroid<Band::infrared>, "centroid;threshold=0.01;window=800-1045;ref=25C;v1"},
+    {"red_half_power_centre", half_power_centre<Band::red>,
+     "half-power-centre;fit=0.38-0.62;window=605-785;ref=25C;v1"},
+    {"infrared_half_power_centre", half_power_centre<Band::infrared>,
+     "half-power-centre;fit=0.38-0.62;window=800-1045;ref=25C;v1"},
+    {"red_width", width<Band::red>, "fwhm;fit=0.38-0.62;slit=removed;window=605-785;ref=25C;v1"},
+    {"infrared_width", width<Band::infrared>, "fwhm;fit=0.38-0.62;slit=removed;window=800-1045;ref=25C;v1"},
+    {"dark_current", dark_current, "dark-current;connected minus open;ref=25C;law=doubling;v1"},
+    {"dark_current_as_found", dark_as_found, "dark-current;connected minus open;as found;v1"},
+    {"ratio_deviation_0p4", ratio_0p4, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
+    {"ratio_deviation_1p0", ratio_1p0, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
+    {"ratio_deviation_1p6", ratio_1p6, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
+});
+
+/// Adds the model's budget for the check.
+void add_budget(const Model& model, std::string_view check, Found& found) {
+  const Budget* budget = model.budget(check);
+  if (budget == nullptr) return;
+  for (const BudgetItem& item : budget->items)
+    found.components.push_back({item.name, std::hypot(item.absolute, item.relative * found.value), item.scope});
+}
+
+double combined(const std::vector<Component>& components) {
+  double sum = 0.0;
+  for (const Component& component : components) sum += component.standard_u * component.standard_u;
+  return std::sqrt(sum);
+}
+
+Reading finished(const Model& model, const Method& method, Outcome outcome) {
+  Reading reading;
+  reading.check = method.check;
+  reading.definition = method.definition;
+  if (const Check* check = find_check(method.check)) reading.unit = check->unit;
+  if (!outcome.found) return reading.none_reason = std::move(outcome.reason), reading;
+  Found& found = *outcome.found;
+  const bool with_u = carries_uncertainty(method.check);
+  if (with_u) add_budget(model, method.check, found);
+  const double expanded = coverage_factor * combined(found.components);
+  if (!std::isfinite(found.value) || !std::isfinite(expanded)) return reading.none_reason = "not_a_number", reading;
+  reading.value = found.value == 0.0 ? 0.0 : found.value;  // never -0.0
+  if (with_u) reading.expanded_uncertainty = expanded;
+  reading.components = std::move(found.components);
+  return reading;
+}
+
+bool no_probe(const Run& run) {
+  const Outcome present = probe_present(run);
+  return present.found && present.found->value == 0.0;
+}
+
+}  // namespace
+
+std::span<const std::string_view> evaluated_checks() {
+  static const auto checks = [] {
+    std::array<std::string_view, methods.size()> slugs;
+    std::transform(methods.begin(), methods.end(), slugs.begin(), [](const Method& m) { return m.check; });
+    return slugs;
+  }();
+  return checks;
+}
+
+bool carries_uncertainty(std::string_view check) {
+  const Check* found = find_check(check);
+  return found != nullptr && found->dimension != Dimension::yes_no;
+}
+
+std::vector<Reading> evaluate(const Model& model, const Certificates& certificates, const Captures& captures) {
+  const Run run{
+      model,
+      certificates,
+      captures,
+      {line_of(model, certificates, captures, Band::red), line_of(model, certificates, captures, Band::infrared)}};
+  const bool absent = no_probe(run);
+  std::vector<Reading> readings;
+  for (const Method& method : methods) {
+    if (!model.has_check(method.check)) continue;
+    const bool blocked = absent && method.check != "probe_present";
+    readings.push_back(finished(model, method, blocked ? none("blocked_by:probe_present") : method.compute(run)));
+  }
+  return readings;
+}
+
+}  // namespace probewright::measure
