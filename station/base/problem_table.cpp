@@ -345,6 +345,30 @@ constexpr std::array rows = std::to_array<ProblemRow>({
      "choose such a name"},
     // --- trace
     // --- text
+    {"usage_unknown_option", refused_input, "there is no option {text} here", "see '{command} --help'"},
+    {"usage_unknown_option_near", refused_input, "there is no option {text} here",
+     "did you mean {nearest}? See '{command} --help'"},
+    {"usage_unknown_word", refused_input, "there is no place for \"{text}\" here", "see '{command} --help'"},
+    {"usage_unknown_word_near", refused_input, "there is no command \"{text}\" here",
+     "did you mean {nearest}? See '{command} --help'"},
+    {"usage_no_command", refused_input, "one of its commands is needed: {commands}", "see '{command} --help'"},
+    {"usage_missing", refused_input, "{what} is missing", "see '{command} --help'"},
+    {"usage_no_value", refused_input, "{option} needs a value", "see '{command} --help'"},
+    {"usage_together", refused_input, "{first} needs {second} too", "give both; see '{command} --help'"},
+    {"usage_not_a_number", refused_input, "\"{text}\" for {option} is not a number",
+     "write digits with a point for decimals, such as 2.5"},
+    {"usage_not_whole", refused_input, "\"{text}\" for {option} is not a whole number from 1 up",
+     "write digits only, such as 4"},
+    {"usage_word", refused_input, "{option} cannot be \"{text}\"", "choose one of {wanted}"},
+    {"usage_other", refused_input, "the command line cannot be read: {reason}", "see '{command} --help'"},
+    {"text_unexpected", our_bug, "something that this program does not expect: {reason}",
+     "report this as a mistake in the program, with what was asked of it"},
+    {"text_no_problem_named", our_bug, "a refusal without a reason", "report this as a mistake in the program"},
+    {"text_output_lost", our_bug, "not all of the answer could be written", "check the disk or pipe that it goes to"},
+    {"seal_malformed", refused_input, "\"{text}\" is not a seal",
+     "give the 64 hexadecimal digits as they stand on the report"},
+    {"serial_not_in_ledger", refused_input, "the ledger holds no run of the serial \"{serial}\"",
+     "check the serial, and whether another ledger has it (--ledger)"},
 });
 
 }  // namespace

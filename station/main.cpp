@@ -1,0 +1,72 @@
+#include <unistd.h>
+
+#include <csignal>
+#include <exception>
+#include <filesystem>
+#include <iostream>
+
+#include "commit_stamp.h"
+#include "station/main_options.h"
+#include "station/text/console.h"
+
+// Wires things together and nothing else: what was asked for, where it prints, what it ends with.
+namespace probewright {
+namespace {
+
+/// The configuration that came with the program: beside it where it was installed, in the sources where it was built.
+std::filesystem::path installed_configuration() {
+  std::error_code ignored;
+  const auto program = std::filesystem::read_symlink("/proc/self/exe", ignored);
+  const auto installed = program.parent_path().parent_path() / "share" / "probewright" / "configs";
+  return std::filesystem::is_directory(installed, ignored) ? installed : std::filesystem::path{PW_SOURCE_CONFIGS};
+}
+
+struct Dispatch {
+  text::Console& console;
+  int operator()(const ShowText& shown) const {
+    console.print_text(shown.text);
+    return text::done;
+  }
+  int operator()(const text::TestOptions& options) const { return text::test(options, console); }
+  int operator()(const text::CheckupOptions& options) const { return text::checkup(options, console); }
+  int operator()(const text::TraceOptions& options) const { return text::trace(options, console); }
+  int operator()(const text::LedgerVerifyOptions& options) const { return text::ledger_verify(options, console); }
+  int operator()(const text::LedgerSealOptions& options) const { return text::ledger_seal(options, console); }
+  int operator()(const text::LimitsCheckOptions& options) const { return text::limits_check(options, console); }
+  int operator()(const text::LimitsDiffOptions& options) const { return text::limits_diff(options, console); }
+  int operator()(const text::MeasureSpectrumOptions& options) const { return text::measure_spectrum(options, console); }
+  int operator()(const text::MeasurePulsesOptions& options) const { return text::measure_pulses(options, console); }
+};
+
+int run(int argc, const char* const* argv, text::Console& console) {
+  const text::Build build{PW_VERSION, PW_COMMIT, PW_COMPILER};
+  const auto line = read_command_line(argc, argv, build, installed_configuration());
+  if (!line) return console.refuse(line.error());
+  return std::visit(Dispatch{console}, line->request);
+}
+
+/// Whatever comes up here was not expected by any command; it is told and nothing is hidden.
+int run_guarded(int argc, const char* const* argv, text::Console& console) {
+  try {
+    return run(argc, argv, console);
+  } catch (const ProblemError& error) {
+    return console.refuse(error.problem());
+  } catch (const std::exception& error) {
+    return console.refuse(Problem{"text_unexpected", "probewright", {{"reason", error.what()}}});
+  }
+}
+
+}  // namespace
+}  // namespace probewright
+
+int main(int argc, char** argv) {
+  using namespace probewright;
+  std::ios::sync_with_stdio(false);
+  text::Console console{
+      std::cout, std::cerr, {wants_json(argc, argv), isatty(STDOUT_FILENO) == 1, isatty(STDERR_FILENO) == 1}};
+  const int status = run_guarded(argc, argv, console);
+  std::cout.flush();
+  if (std::cout) return status;
+  std::cerr << Problem{"text_output_lost", "standard output"}.text() << '\n';
+  return text::could_not;
+}

@@ -1,0 +1,344 @@
+#include "station/main_options.h"
+
+#include <CLI/CLI.hpp>
+#include <cstring>
+
+#include "station/base/numbers.h"
+#include "station/base/strict_yaml.h"
+#include "station/text/overview.h"
+
+// The only file that knows the library which takes command lines apart.
+namespace probewright {
+namespace {
+
+/// Carries a problem of one option's value out of the parser.
+struct Refused : CLI::ParseError {
+  explicit Refused(Problem problem_)
+      : CLI::ParseError("Refused", problem_.text(), CLI::ExitCodes::ValidationError), problem(std::move(problem_)) {}
+  Problem problem;
+};
+
+/// "probewright ledger verify"
+std::string full_name(const CLI::App& app) {
+  const CLI::App* parent = app.get_parent();
+  return parent ? full_name(*parent) + " " + app.get_name() : app.get_name();
+}
+
+Problem value_problem(std::string_view id, const CLI::App& app, const std::string& option, const std::string& text,
+                      const std::string& wanted) {
+  return {id, full_name(app), {{"option", option}, {"text", text}, {"wanted", wanted}, {"command", full_name(app)}}};
+}
+
+/// An option that takes a number; from_chars reads it, so no locale and no "nan" or "0x10".
+template <class Number>
+CLI::Option* add_number(CLI::App& app, const std::string& name, Number& into, const std::string& help) {
+  return app
+      .add_option_function<std::string>(
+          name,
+          [&app, &into, name](const std::string& text) {
+            const auto number = parse_double(text);
+            if (!number) throw Refused(value_problem("usage_not_a_number", app, name, text, ""));
+            into = *number;
+          },
+          help)
+      ->type_name("NUMBER");
+}
+
+template <class Integer>
+CLI::Option* add_whole(CLI::App& app, const std::string& name, Integer& into, const std::string& help) {
+  return app
+      .add_option_function<std::string>(
+          name,
+          [&app, &into, name](const std::string& text) {
+            const auto number = parse_integer(text);
+            if (!number || *number < 1 || *number > 1'000'000'000)
+              throw Refused(value_problem("usage_not_whole", app, name, text, ""));
+            into = static_cast<int>(*number);
+          },
+          help)
+      ->type_name("N");
+}
+
+/// An option whose value is one of a few words.
+CLI::Option* add_word(CLI::App& app, const std::string& name, const std::vector<std::string>& words,
+                      const std::function<void(const std::string&)>& take, const std::string& help) {
+  std::string listed;
+  for (const std::string& word : words) listed += (listed.empty() ? "" : ", ") + word;
+  return app
+      .add_option_function<std::string>(
+          name,
+          [&app, name, words, take, listed](const std::string& text) {
+            if (std::find(words.begin(), words.end(), text) == words.end())
+              throw Refused(value_problem("usage_word", app, name, text, listed));
+            take(text);
+          },
+          help + " (" + listed + ")")
+      ->type_name("WORD");
+}
+
+/// Builds the commands and keeps what was read. One object reads one command line.
+class Reader {
+ public:
+  Reader(const text::Build& build, const std::filesystem::path& installed);
+  Result<CommandLine> read(int argc, const char* const* argv);
+
+ private:
+  CLI::App& command(CLI::App& parent, const std::string& name, const std::string& what, const std::string& example);
+  CLI::App& group(const std::string& name, const std::string& what);
+  void add_json(CLI::App& app) { app.add_flag("--json", line_.json, "print the answer as JSON"); }
+  template <class Options>
+  void answers(CLI::App& app, Options& options);
+
+  void add_test();
+  void add_checkup();
+  void add_trace();
+  void add_ledger();
+  void add_limits();
+  void add_measure();
+
+  const CLI::App& innermost() const;
+  Problem unexpected(const std::string& text) const;
+  Problem missing(const std::string& what) const;
+
+  CLI::App app_{"Tests pulse-oximetry probes on a production station and keeps the evidence.", "probewright"};
+  text::Build build_;
+  text::StationChoice choice_;
+  bool version_ = false;
+  CommandLine line_;
+
+  text::TestOptions test_;
+  text::CheckupOptions checkup_;
+  text::TraceOptions trace_;
+  text::LedgerVerifyOptions verify_;
+  text::LedgerSealOptions seal_;
+  text::LimitsCheckOptions check_;
+  text::LimitsDiffOptions diff_;
+  text::MeasureSpectrumOptions spectrum_;
+  text::MeasurePulsesOptions pulses_;
+};
+
+Reader::Reader(const text::Build& build, const std::filesystem::path& installed) : build_(build) {
+  choice_.installed = installed;
+  app_.fallthrough();
+  app_.require_subcommand(0, 1);
+  app_.get_formatter()->column_width(32);
+  app_.set_help_flag("--help,-h", "say how this is used");
+  app_.add_flag("--version", version_, "print version, commit and compiler");
+  app_.add_option("--config", choice_.config, "folder of the configuration")->type_name("DIR");
+  app_.add_option("--station", choice_.station, "which station of the configuration")->type_name("NAME");
+  app_.footer("Ask a command for its options and an example: probewright test --help");
+  add_test();
+  add_checkup();
+  add_trace();
+  add_ledger();
+  add_limits();
+  add_measure();
+}
+
+CLI::App& Reader::command(CLI::App& parent, const std::string& name, const std::string& what,
+                          const std::string& example) {
+  CLI::App& app = *parent.add_subcommand(name, what);
+  app.footer("Example:\n  " + example);
+  return app;
+}
+
+CLI::App& Reader::group(const std::string& name, const std::string& what) {
+  CLI::App& app = *app_.add_subcommand(name, what);
+  app.require_subcommand(1);
+  app.footer("Ask for more: probewright " + name + " COMMAND --help");
+  return app;
+}
+
+/// What to hand on when this command was the one.
+template <class Options>
+void Reader::answers(CLI::App& app, Options& options) {
+  app.final_callback([this, &options] {
+    if constexpr (requires { options.choice; }) options.choice = choice_;
+    if constexpr (requires { options.build; }) options.build = build_;
+    line_.request = options;
+  });
+}
+
+void Reader::add_test() {
+  CLI::App& app = command(app_, "test", "test one probe in one nest",
+                          "probewright bench --nests 1 &\n  probewright test AQ20-048-00001 --hands");
+  app.add_option("serial", test_.serial, "serial number of the probe")->required()->type_name("SERIAL");
+  add_whole(app, "--nest", test_.nest, "nest that the probe goes into, 1 unless told");
+  add_word(
+      app, "--purpose", {"production", "engineering", "reference", "challenge", "gauge", "echo", "training", "return"},
+      [this](const std::string& word) { test_.purpose = word; }, "why the run is made, engineering unless told");
+  app.add_option("--ledger", test_.ledger, "ledger instead of the station's")->type_name("FILE");
+  app.add_option("--ports", test_.ports, "folder of the serial ports instead of the station's")->type_name("DIR");
+  add_number(app, "--speed", test_.speed, "speed of the emulated bench instead of the station's");
+  app.add_flag("--hands", test_.hands, "let the emulated bench seat the probe and take it out");
+  app.add_option("--control", test_.control, "control socket of the emulated bench, for --hands")->type_name("SOCKET");
+  app.add_option("--record", test_.record, "keep all bytes of the serial lines in this folder")->type_name("DIR");
+  add_json(app);
+  answers(app, test_);
+}
+
+void Reader::add_checkup() {
+  CLI::App& app = command(app_, "checkup", "say what is wrong with the station and how to mend it",
+                          "probewright checkup --station Quay-1");
+  app.add_option("--ledger", checkup_.ledger, "ledger instead of the station's")->type_name("FILE");
+  app.add_option("--ports", checkup_.ports, "folder of the serial ports instead of the station's")->type_name("DIR");
+  add_number(app, "--speed", checkup_.speed, "speed of the emulated bench instead of the station's");
+  add_json(app);
+  answers(app, checkup_);
+}
+
+void Reader::add_trace() {
+  CLI::App& app = command(app_, "trace", "print all that is known of one serial", "probewright trace AQ20-048-00001");
+  app.add_option("serial", trace_.serial, "serial number of the probe")->required()->type_name("SERIAL");
+  app.add_option("--ledger", trace_.ledger, "ledger instead of the station's")->type_name("FILE");
+  add_json(app);
+  answers(app, trace_);
+}
+
+void Reader::add_ledger() {
+  CLI::App& ledger = group("ledger", "check a ledger and print its seal");
+  CLI::App& verify = command(ledger, "verify", "walk a whole ledger and name the first place that does not agree",
+                             "probewright ledger verify ledger.db");
+  verify.add_option("file", verify_.file, "the ledger")->required()->type_name("FILE");
+  CLI::Option* seal = verify.add_option("--seal", verify_.seal, "a seal from an earlier report, 64 digits");
+  seal->type_name("HASH");
+  CLI::Option* entry = add_whole(verify, "--entry", verify_.entry, "the entry that the seal was printed for");
+  seal->needs(entry);
+  entry->needs(seal);
+  add_json(verify);
+  answers(verify, verify_);
+  CLI::App& newest =
+      command(ledger, "seal", "print number and hash of the newest entry", "probewright ledger seal ledger.db");
+  newest.add_option("file", seal_.file, "the ledger; the station's unless told")->type_name("FILE");
+  add_json(newest);
+  answers(newest, seal_);
+}
+
+void Reader::add_limits() {
+  CLI::App& limits = group("limits", "check and compare limit sheets");
+  CLI::App& check = command(limits, "check", "tell every fault of a limit sheet, or what it says",
+                            "probewright limits check configs/sheets/aq-20.yaml");
+  check.add_option("file", check_.file, "the limit sheet")->required()->type_name("FILE");
+  check.add_option("--model", check_.model, "hold it against this model too")->type_name("FILE");
+  add_json(check);
+  answers(check, check_);
+  CLI::App& diff = command(limits, "diff", "tell what changed between two sheets, and which way it moves",
+                           "probewright limits diff aq-20-3.yaml aq-20-4.yaml");
+  diff.add_option("before", diff_.before, "the earlier sheet")->required()->type_name("FILE");
+  diff.add_option("after", diff_.after, "the later sheet")->required()->type_name("FILE");
+  add_json(diff);
+  answers(diff, diff_);
+}
+
+void Reader::add_measure() {
+  CLI::App& measure = group("measure", "compute readings from a lab's own files");
+  CLI::App& spectrum = command(measure, "spectrum", "wavelengths of one LED from a CSV file with wavelength_nm,signal",
+                               "probewright measure spectrum red.csv --band red --slit-nm 2.5");
+  spectrum.add_option("file", spectrum_.file, "CSV file; columns dark and response are used if there")
+      ->required()
+      ->type_name("FILE");
+  add_word(
+      spectrum, "--band", {"red", "infrared"}, [this](const std::string& word) { spectrum_.band = word; },
+      "which LED; found from the light unless told");
+  add_number(spectrum, "--threshold", spectrum_.threshold,
+             "part of the peak where the centroid's run ends, 0.01 unless told; 0: the whole line window");
+  add_number(spectrum, "--temperature-C", spectrum_.temperature_C,
+             "temperature of the probe; the wavelengths are then referred to 25 degC");
+  add_number(spectrum, "--slit-nm", spectrum_.slit_nm,
+             "width of the spectrometer's slit, taken out of the line's width");
+  add_json(spectrum);
+  answers(spectrum, spectrum_);
+  CLI::App& pulses = command(measure, "pulses", "AC, DC, modulation and ratio of a pulse train from a CSV file",
+                             "probewright measure pulses slots.csv --rate-Hz 5 --cycle-s 0.001756");
+  pulses.add_option("file", pulses_.file, "CSV file: t_s,red,dark_a,infrared,dark_b or t_s,red,infrared")
+      ->required()
+      ->type_name("FILE");
+  add_number(pulses, "--rate-Hz", pulses_.rate_Hz, "rate of the modulation");
+  add_number(pulses, "--cycle-s", pulses_.cycle_s, "length of one cycle of four slots; needed with dark slots");
+  add_word(
+      pulses, "--frequency", {"known", "free"},
+      [this](const std::string& word) { pulses_.free_frequency = word == "free"; },
+      "whether the rate is known or fitted too");
+  add_json(pulses);
+  answers(pulses, pulses_);
+}
+
+/// The command that was being read when the parser stopped.
+const CLI::App& Reader::innermost() const {
+  const CLI::App* app = &app_;
+  for (auto within = app->get_subcommands(); !within.empty(); within = app->get_subcommands()) app = within.back();
+  return *app;
+}
+
+Problem Reader::unexpected(const std::string& text) const {
+  const CLI::App& app = innermost();
+  std::vector<std::string> known;
+  const bool is_option = text.starts_with("-");
+  for (const CLI::App* level = &app; level && is_option; level = level->get_parent())
+    for (const CLI::Option* option : level->get_options())
+      for (const std::string& name : option->get_lnames()) known.push_back("--" + name);
+  if (!is_option)
+    for (const CLI::App* command : app.get_subcommands({})) known.push_back(command->get_name());
+  const std::string nearest = yaml::nearest_word(text, known);
+  const std::string id =
+      std::string{is_option ? "usage_unknown_option" : "usage_unknown_word"} + (nearest.empty() ? "" : "_near");
+  return {id, full_name(app), {{"text", text}, {"nearest", nearest}, {"command", full_name(app)}}};
+}
+
+Problem Reader::missing(const std::string& what) const {
+  const CLI::App& app = innermost();
+  std::string commands;
+  for (const CLI::App* command : app.get_subcommands({}))
+    commands += (commands.empty() ? "" : ", ") + command->get_name();
+  if (!commands.empty())
+    return {"usage_no_command", full_name(app), {{"commands", commands}, {"command", full_name(app)}}};
+  return {"usage_missing", full_name(app), {{"what", what}, {"command", full_name(app)}}};
+}
+
+Result<CommandLine> Reader::read(int argc, const char* const* argv) {
+  try {
+    app_.parse(argc, argv);
+  } catch (const CLI::CallForHelp&) {
+    line_.request = ShowText{app_.help()};
+    return line_;
+  } catch (const Refused& refused) {
+    return refused.problem;
+  } catch (const CLI::ParseError& error) {
+    const auto left = app_.remaining(true);
+    const std::string name = full_name(innermost());
+    if (!left.empty()) return unexpected(left.front());
+    if (const auto* required = dynamic_cast<const CLI::RequiredError*>(&error)) {
+      const std::string what = required->what();
+      return missing(what.substr(0, what.find(" is required")));
+    }
+    const std::string what = error.what();
+    if (dynamic_cast<const CLI::ArgumentMismatch*>(&error) && what.starts_with("--"))
+      return Problem{"usage_no_value", name, {{"option", what.substr(0, what.find(':'))}, {"command", name}}};
+    if (dynamic_cast<const CLI::RequiresError*>(&error))
+      return Problem{
+          "usage_together",
+          name,
+          {{"first", what.substr(0, what.find(' '))}, {"second", what.substr(what.rfind(' ') + 1)}, {"command", name}}};
+    return Problem{"usage_other", name, {{"reason", what}, {"command", name}}};
+  }
+  if (version_)
+    line_.request = ShowText{text::version_words(build_)};
+  else if (app_.get_subcommands().empty())
+    line_.request = ShowText{text::overview()};
+  return line_;
+}
+
+}  // namespace
+
+bool wants_json(int argc, const char* const* argv) {
+  for (int i = 1; i < argc; ++i)
+    if (std::strcmp(argv[i], "--json") == 0) return true;
+  return false;
+}
+
+Result<CommandLine> read_command_line(int argc, const char* const* argv, const text::Build& build,
+                                      const std::filesystem::path& installed) {
+  return Reader{build, installed}.read(argc, argv);
+}
+
+}  // namespace probewright

@@ -1,0 +1,39 @@
+#pragma once
+#include <string>
+#include <variant>
+
+#include "station/base/result.h"
+#include "station/text/checkup.h"
+#include "station/text/choices.h"
+#include "station/text/ledger.h"
+#include "station/text/limits.h"
+#include "station/text/measure.h"
+#include "station/text/test.h"
+#include "station/text/trace.h"
+
+namespace probewright {
+
+/// Text that is the whole answer: help, overview, version.
+struct ShowText {
+  std::string text;
+};
+
+/// What was asked for: one type for each command.
+using Request = std::variant<ShowText, text::TestOptions, text::CheckupOptions, text::TraceOptions,
+                             text::LedgerVerifyOptions, text::LedgerSealOptions, text::LimitsCheckOptions,
+                             text::LimitsDiffOptions, text::MeasureSpectrumOptions, text::MeasurePulsesOptions>;
+
+struct CommandLine {
+  bool json = false;
+  Request request;
+};
+
+/// Whether --json stands anywhere, known even when the rest cannot be read.
+bool wants_json(int argc, const char* const* argv);
+
+/// Reads what was typed. `build` goes into --version and into runs; `installed` is the last place for a configuration.
+/// Errors: usage_... of the problem table, each with the command to ask for help.
+Result<CommandLine> read_command_line(int argc, const char* const* argv, const text::Build& build,
+                                      const std::filesystem::path& installed);
+
+}  // namespace probewright

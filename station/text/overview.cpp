@@ -1,0 +1,31 @@
+#include "station/text/overview.h"
+
+#include "station/text/cautions.h"
+
+namespace probewright::text {
+
+std::string overview() {
+  return std::string{
+             "probewright tests pulse-oximetry probes on a production station and keeps the evidence.\n"
+             "\n"
+             "  bench      emulated devices on pseudo-terminals, to work without hardware\n"
+             "  test       test one probe in one nest\n"
+             "  checkup    say what is wrong with the station and how to mend it\n"
+             "  trace      print all that is known of one serial\n"
+             "  ledger     verify, seal: check a ledger, print its newest hash\n"
+             "  limits     check, diff: faults of a limit sheet, what changed between two\n"
+             "  measure    spectrum, pulses: readings from a lab's own files\n"
+             "\n"
+             "Each command answers --help with an example. To begin without hardware:\n"
+             "\n"
+             "  probewright bench                                in one terminal\n"
+             "  probewright test AQ20-048-00001 --hands          in another\n"
+             "\n"} +
+         cautions + "\n";
+}
+
+std::string version_words(const Build& build) {
+  return "probewright " + build.version + "\ncommit " + build.commit + "\ncompiler " + build.compiler + "\n";
+}
+
+}  // namespace probewright::text
