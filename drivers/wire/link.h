@@ -121,7 +121,8 @@ class Link {
         cause = "no answer in time";
       } catch (const PortLost& lost) {
         lose(n, lost.what());
-      } catch (const DeviceLost&) {
+      } catch (const DeviceLost& lost) {
+        trouble_ = lost.problem();
         drop();
         throw;
       }
