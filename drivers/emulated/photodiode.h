@@ -1,0 +1,19 @@
+#pragma once
+
+namespace probewright::emulated {
+
+/// The detector of a probe.
+struct Photodiode {
+  double dark_nA_25C = 0.8;   ///< at 25 C and 5 V bias
+  double doubling_K = 10.0;   ///< temperature rise that doubles the dark current, this part's own
+  double slope_per_V = 0.02;  ///< relative growth of the dark current with bias, near 5 V
+};
+
+/// Dark current in nA at the temperature of the nest and a reverse bias >= 0 in V; none without bias.
+double dark_current_nA(const Photodiode& diode, double nest_degC, double bias_V);
+
+/// Responsivity of a silicon photodiode in A/W, 600 to 1050 nm: a smooth curve with about 0.43 at 660, 0.59 at 940 and
+/// 0.34 at 1050 nm (common data-sheet values).
+double silicon_responsivity_A_per_W(double wavelength_nm);
+
+}  // namespace probewright::emulated

@@ -1,0 +1,111 @@
+#include "drivers/emulated/truth.h"
+
+#include <cmath>
+
+#include "drivers/emulated/model_nominals.h"
+#include "drivers/emulated/modulator.h"
+
+namespace probewright::emulated {
+namespace {
+
+struct Window {
+  double low_nm, high_nm;
+};
+constexpr Window red_window{605.0, 785.0}, infrared_window{800.0, 1045.0};
+constexpr double centroid_threshold = 0.01;
+
+LedTruth led_truth(const Led& led, Wiring wiring, Window window) {
+  const Warmth warm{led.heating.die_rise_K, led.heating.package_rise_K};
+  const double drive = led.standard_drive_mA;
+  LedTruth truth;
+  truth.peak_nm = led.line.peak_nm;
+  truth.centroid_nm = centroid_above_nm(led.line, centroid_threshold, window.low_nm, window.high_nm);
+  truth.whole_centroid_nm = led.line.centroid_nm();
+  truth.half_power_centre_nm = led.line.half_centre_nm();
+  truth.width_nm = led.line.fwhm_nm();
+  truth.forward_voltage_V = forward_voltage_V(led, drive, 0.0);
+  const Warmth quarter = mean_warmth(led.heating, warm, 0.25, 0.020);
+  truth.voltage_rise_mV =
+      1e3 * (truth.forward_voltage_V - forward_voltage_V(led, 0.25 * drive, excess_K(led, 25.0, quarter)));
+  truth.drive_mA = drive;
+  truth.reverse_leakage_uA = wiring == Wiring::antiparallel ? 0.0 : reverse_leakage_uA(led, 5.0);
+  const Warmth early = warmed(led.heating, {}, 1.0, 0.005);
+  truth.warmup_mV = 1e3 * (forward_voltage_V(led, drive, excess_K(led, 25.0, early)) - truth.forward_voltage_V);
+  truth.transfer_nA_per_mA = led.transfer_nA_per_mA;
+  return truth;
+}
+
+/// Share of the red LED's power between 800 and 1000 nm: both lines, Simpson's rule on 0.5 nm.
+double secondary_share(const Probe& probe) {
+  const double red = (1.0 - probe.secondary_power) / probe.red.line.area_nm();
+  const double secondary = probe.secondary_power / probe.secondary_line.area_nm();
+  constexpr int intervals = 400;
+  constexpr double step_nm = 200.0 / intervals;
+  double sum = 0.0;
+  for (int i = 0; i <= intervals; ++i) {
+    const double weight = i == 0 || i == intervals ? 1.0 : (i % 2 == 1 ? 4.0 : 2.0);
+    const double wavelength = 800.0 + step_nm * i;
+    sum += weight * (red * probe.red.line.at(wavelength) + secondary * probe.secondary_line.at(wavelength));
+  }
+  return sum * step_nm / 3.0;
+}
+
+/// AC and DC of one slot from those of both LEDs' light.
+struct Wave {
+  double ac = 0.0, dc = 0.0;
+  double modulation() const { return ac / dc; }
+};
+Wave mixed(const Wave& own, const Wave& other, double share) {
+  return {own.ac + share * other.ac, own.dc + share * other.dc};
+}
+
+double percent_off(double value, double nominal) { return 100.0 * (value / nominal - 1.0); }
+
+RatioTruth ratio_truth(const Probe& probe, const StoredSetPoint& point) {
+  const double red_nA = probe.red.standard_drive_mA * probe.red.transfer_nA_per_mA;
+  const double infrared_nA = probe.infrared.standard_drive_mA * probe.infrared.transfer_nA_per_mA;
+  const double through = 1.0 - probe.direct_light;
+  const double red_depth =
+      (1.0 - probe.secondary_current) * point.depths.red + probe.secondary_current * point.depths.infrared;
+  const Wave red{red_nA * through * red_depth, red_nA};
+  const Wave infrared{infrared_nA * through * point.depths.infrared, infrared_nA};
+  RatioTruth truth;
+  truth.nominal = point.nominal_ratio;
+  truth.red_modulation = mixed(red, infrared, probe.slot_crosstalk).modulation();
+  truth.infrared_modulation = mixed(infrared, red, probe.slot_crosstalk).modulation();
+  truth.ratio = truth.red_modulation / truth.infrared_modulation;
+  truth.ratio_deviation_percent = percent_off(truth.ratio, point.nominal_ratio);
+  truth.red_modulation_deviation_percent = percent_off(truth.red_modulation, point.depths.red);
+  truth.infrared_modulation_deviation_percent = percent_off(truth.infrared_modulation, point.depths.infrared);
+  return truth;
+}
+
+double coded_ohm(const Probe& probe) {
+  for (const BinNominals& bin : all_bins()) {
+    if (bin.name == probe.coded_bin) return bin.id_ohm;
+  }
+  return probe.id_ohm;
+}
+
+}  // namespace
+
+Truth truth_of(const Probe& probe) {
+  Truth truth;
+  truth.probe = probe;
+  truth.red = led_truth(probe.red, probe.wiring, red_window);
+  truth.infrared = led_truth(probe.infrared, probe.wiring, infrared_window);
+  truth.secondary_emission_percent = 100.0 * secondary_share(probe);
+  truth.dark_current_nA = dark_current_nA(probe.photodiode, 25.0, 5.0);
+  truth.id_resistance_ohm = probe.id_ohm;
+  truth.id_deviation_percent = percent_off(probe.id_ohm, coded_ohm(probe));
+  truth.closed_path_light_percent = 100.0 * probe.direct_light;
+  truth.slot_crosstalk_percent = 100.0 * probe.slot_crosstalk;
+  truth.ambient_uptake_nA = probe.ambient_nA;
+  truth.mains_pickup_nA = probe.mains_pickup_nA;
+  for (std::size_t i = 0; i < stored_set_points.size(); ++i) {
+    truth.ratios[i] = ratio_truth(probe, stored_set_points[i]);
+  }
+  return truth;
+}
+
+}  // namespace probewright::emulated
