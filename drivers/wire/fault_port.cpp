@@ -16,7 +16,17 @@ FaultPort::FaultPort(std::unique_ptr<Port> port, std::vector<ByteFault> plan, Fa
       rate_(std::move(rate)),
       out_{0, {}, SeededEntropy{derived_seed(rate_.seed, 0)}},
       in_{0, {}, SeededEntropy{derived_seed(rate_.seed, 1)}} {
-  for (const ByteFault& fault : plan) (fault.direction == Direction::out ? out_ : in_).plan.emplace(fault.index, fault);
+  for (const ByteFault& fault : plan) add(fault);
+}
+
+void FaultPort::add(const ByteFault& fault) {
+  (fault.direction == Direction::out ? out_ : in_).plan.emplace(fault.index, fault);
+}
+
+void FaultPort::set_rate(FaultRate rate) {
+  rate_ = std::move(rate);
+  out_.entropy = SeededEntropy{derived_seed(rate_.seed, 0)};
+  in_.entropy = SeededEntropy{derived_seed(rate_.seed, 1)};
 }
 
 void FaultPort::heal() {
@@ -26,6 +36,7 @@ void FaultPort::heal() {
 }
 
 void FaultPort::add_rate_fault(Side& side, Direction direction) {
+  if (rate_.only && *rate_.only != direction) return;
   if (!(rate_.per_byte > 0.0) || rate_.kinds.empty() || unit_draw(side.entropy) >= rate_.per_byte) return;
   const auto kind = rate_.kinds[side.entropy.next() % rate_.kinds.size()];
   const auto flip = static_cast<std::uint8_t>(1 + side.entropy.next() % 255);

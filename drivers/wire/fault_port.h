@@ -2,6 +2,7 @@
 #include <cstdint>
 #include <map>
 #include <memory>
+#include <optional>
 #include <utility>
 #include <vector>
 
@@ -27,6 +28,7 @@ struct FaultRate {
   double per_byte = 0.0;
   std::vector<FaultKind> kinds{FaultKind::lose, FaultKind::change, FaultKind::twice};
   std::uint64_t seed = 0;
+  std::optional<Direction> only{};  ///< one direction; both when empty
 };
 
 /// A bad line: loses, changes or doubles bytes by plan, at a rate, or both, and counts all of them. One seed gives the
@@ -40,6 +42,10 @@ class FaultPort final : public ForwardingPort {
   std::uint64_t count(Direction direction) const { return side(direction).count; }
   /// Faults done so far.
   std::uint64_t faults() const { return faults_; }
+  /// One more planned fault; a byte that has passed already is past mending.
+  void add(const ByteFault& fault);
+  /// Another rate from the next byte on.
+  void set_rate(FaultRate rate);
   /// No faults from now on; counting goes on.
   void heal();
 
