@@ -38,6 +38,12 @@ class Reading {
     return std::move(configuration_);
   }
 
+  ResultOrFaults<Documented<StationFile>> read_station_alone(std::string_view station) {
+    read_station(station);
+    if (!faults_.empty()) return std::move(faults_);
+    return std::move(configuration_.station);
+  }
+
  private:
   /// Text and parsed value of one file, or nothing after its faults were noted.
   template <class Reader>
@@ -208,6 +214,10 @@ Result<fs::path> find_configuration(std::string_view chosen, const fs::path& ins
 
 ResultOrFaults<Configuration> read_configuration(const fs::path& folder, std::string_view station) {
   return Reading{folder}.read(station);
+}
+
+ResultOrFaults<Documented<StationFile>> read_station(const fs::path& folder, std::string_view station) {
+  return Reading{folder}.read_station_alone(station);
 }
 
 }  // namespace probewright::sequence
