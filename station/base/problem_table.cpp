@@ -356,6 +356,9 @@ constexpr std::array rows = std::to_array<ProblemRow>({
     {"in_force_past", refused_input, "{from} is past; a document's force never begins or ends in the past",
      "choose a time that is still to come"},
     // --- sequence
+    {"ledger_folder", ledger_trouble, "the ledger's folder cannot be made: {reason}", "check the path and its permissions"},
+    {"ledger_clock_behind", not_ready, "the clock stands {seconds} s behind the ledger's last entry",
+     "set the machine's clock right, then start again"},
     {"nest_connecting", not_ready, "the devices are being looked for", "wait, or check their cables and power"},
     {"nest_not_there", refused_input, "the station has no nest {nest}", "use one of the nests that its file names"},
     {"nest_idle", refused_input, "nothing is armed or running here", "there is nothing to stop"},

@@ -53,8 +53,8 @@ Result<std::filesystem::path> find_configuration(std::string_view chosen, const 
 /// is not there.
 ResultOrFaults<Configuration> read_configuration(const std::filesystem::path& folder, std::string_view station);
 
-/// The station file alone, chosen in the same way, for questions that need no model: a fault in a sheet does not keep an
-/// auditor from the ledger.
+/// The station file alone, chosen in the same way, for questions that need no model: a fault in a sheet does not keep
+/// an auditor from the ledger.
 ResultOrFaults<Documented<StationFile>> read_station(const std::filesystem::path& folder, std::string_view station);
 
 }  // namespace probewright::sequence

@@ -5,8 +5,6 @@
 #include <boost/asio/post.hpp>
 #include <boost/asio/use_awaitable.hpp>
 
-#include "db/error.h"
-
 namespace probewright::sequence {
 
 LedgerWriter::LedgerWriter(std::unique_ptr<db::Store> store, wire::Workers& workers, asio::any_io_executor line)
@@ -29,12 +27,12 @@ asio::awaitable<void> LedgerWriter::drained() {
 }
 
 void LedgerWriter::add(Waiting waiting) {
-  if (trouble_) return finish(std::move(waiting.done), std::make_exception_ptr(ProblemError{*trouble_}));
+  if (trouble_) return finish(std::move(waiting.done), *trouble_);
   queue_.push_back(std::move(waiting));
   if (pumping_) return;
   pumping_ = true;
   asio::co_spawn(line_, pump(), [](const std::exception_ptr& error) {
-    if (error) std::rethrow_exception(error);  // pump() catches all that the ledger throws: this is our own mistake
+    if (error) std::rethrow_exception(error);  // the ledger's problems are values: this is our own mistake
   });
 }
 
@@ -48,40 +46,30 @@ asio::awaitable<void> LedgerWriter::pump() {
     co_await write(std::move(group));
   }
   pumping_ = false;
-  for (Done& waiter : std::exchange(drain_waiters_, {})) finish(std::move(waiter), nullptr);
+  for (Done& waiter : std::exchange(drain_waiters_, {})) finish(std::move(waiter), {});
 }
 
 asio::awaitable<void> LedgerWriter::write(std::vector<Waiting> group) {
   std::vector<Job> jobs;
   for (Waiting& waiting : group) jobs.push_back(std::move(waiting.job));
-  std::vector<std::exception_ptr> outcomes(group.size());
-  std::exception_ptr lost;
-  try {
-    co_await workers_.run([&] { outcomes = store_->commit_group(jobs); });
-  } catch (...) {
-    lost = std::current_exception();
-  }
-  if (lost) note_trouble(lost);
+  std::vector<Result<void>> outcomes;
+  std::optional<Problem> stopped;
+  co_await workers_.run([&] {
+    outcomes = store_->commit_group(jobs);
+    stopped = store_->trouble();
+  });
+  if (stopped) trouble_ = stopped;
   for (std::size_t i = 0; i < group.size(); ++i) {
-    const std::exception_ptr error = lost ? lost : outcomes[i];
-    if (error && !lost && !group[i].done) note_trouble(error);  // nobody waits for it: the run must hear of it
-    finish(std::move(group[i].done), error);
+    // Nobody waits for what submit() brought: the run hears of it by the ledger's trouble.
+    if (!outcomes[i] && !group[i].done && !trouble_) trouble_ = outcomes[i].error();
+    finish(std::move(group[i].done), outcomes[i]);
   }
 }
 
-void LedgerWriter::note_trouble(const std::exception_ptr& error) {
-  if (trouble_) return;
-  try {
-    std::rethrow_exception(error);
-  } catch (const ProblemError& known) {
-    trouble_ = known.problem();
-  } catch (const std::exception& unknown) {
-    trouble_ = Problem{"ledger_unknown_trouble", "ledger", {{"what", unknown.what()}}};
-  }
-}
-
-void LedgerWriter::finish(Done done, std::exception_ptr error) {
+void LedgerWriter::finish(Done done, const Result<void>& outcome) {
   if (!done) return;
+  std::exception_ptr error;
+  if (!outcome) error = std::make_exception_ptr(ProblemError{outcome.error()});
   asio::post(line_, [done = std::move(done), error = std::move(error)]() mutable { std::move(done)(error); });
 }
 

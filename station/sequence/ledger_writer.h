@@ -28,8 +28,9 @@ class LedgerWriter {
   LedgerWriter(const LedgerWriter&) = delete;
   LedgerWriter& operator=(const LedgerWriter&) = delete;
 
-  /// Resumes when the job's work is on disk. Throws what the job threw (its work alone was undone), or ProblemError
-  /// with a problem of the ledger (nothing of the group is on disk). Not to be cancelled: what was asked is done.
+  /// Resumes when the job's work is on disk. Throws ProblemError: what the job ran into (its work alone was undone), or
+  /// a problem of the ledger (then trouble() says so too, and only the next start knows what is on disk). Not to be
+  /// cancelled: what was asked is done.
   asio::awaitable<void> commit(Job job);
   /// The same without waiting; a failure shows in trouble().
   void submit(Job job);
@@ -48,8 +49,7 @@ class LedgerWriter {
   void add(Waiting waiting);
   asio::awaitable<void> pump();
   asio::awaitable<void> write(std::vector<Waiting> group);
-  void note_trouble(const std::exception_ptr& error);
-  void finish(Done done, std::exception_ptr error);
+  void finish(Done done, const Result<void>& outcome);
 
   std::unique_ptr<db::Store> store_;
   wire::Workers& workers_;

@@ -1,0 +1,328 @@
+#include "station/sequence/nest.h"
+
+#include <boost/asio/bind_cancellation_slot.hpp>
+#include <boost/asio/co_spawn.hpp>
+#include <boost/asio/experimental/awaitable_operators.hpp>
+#include <boost/asio/this_coro.hpp>
+#include <boost/asio/use_awaitable.hpp>
+
+#include "station/base/numbers.h"
+
+namespace probewright::sequence {
+namespace {
+
+/// Between two looks at an idle nest, device time: at most 20 looks a second.
+constexpr Duration look_pause = std::chrono::milliseconds(50);
+/// How long a scan arms a nest, real time: a person puts the probe in.
+constexpr Duration armed_for = std::chrono::seconds(20);
+
+std::string nest_name(int nest) { return "nest " + std::to_string(nest); }
+
+wire::Expected expected_of(const measure::CertificateHead& head, const StationFile& station) {
+  wire::Expected expected;
+  expected.serial = head.device_serial;
+  expected.certificate = head.number;
+  expected.due = head.due;
+  expected.emulated = station.emulated;
+  return expected;
+}
+
+wire::LinkSettings link_of(const std::string& device, const StationFile& station) {
+  wire::LinkSettings link;
+  link.device = device;
+  link.baud = station.baud;
+  return link;
+}
+
+phantom::Settings phantom_settings(const measure::PhantomCertificate& certificate, const StationFile& station,
+                                   int nest) {
+  phantom::Settings settings;
+  settings.link = link_of("phantom of " + nest_name(nest), station);
+  settings.expected = expected_of(certificate.head, station);
+  settings.wavelength_nm = certificate.wavelength_nm;
+  return settings;
+}
+
+adapter::Settings adapter_settings(const measure::AdapterCertificate& certificate, const StationFile& station,
+                                   int nest) {
+  adapter::Settings settings;
+  settings.link = link_of("adapter of " + nest_name(nest), station);
+  settings.expected = expected_of(certificate.head, station);
+  return settings;
+}
+
+db::RunDevice device_of(std::string role, const wire::Identity& identity, const DocumentText& certificate) {
+  const std::string name = identity.maker + " " + identity.model + " " + identity.serial;
+  return {std::move(role), name, identity.firmware, identity.certificate, certificate.digest};
+}
+
+/// What a run that ends with this problem ends by. A lost device, a refusal, an odd answer: all a device's cause.
+Ending device_ending(const Problem& problem) { return {EndedBy::device, problem.id, problem.text()}; }
+
+std::uint32_t ceiling_uA(const measure::Model& model) {
+  return static_cast<std::uint32_t>(model.ceiling_mA * 1000.0 + 0.5);
+}
+
+}  // namespace
+
+Nest::Nest(const Configuration& configuration, const NestPlace& place, const PortOpener& ports, LineServices& services)
+    : configuration_(configuration),
+      place_(place),
+      services_(services),
+      phantom_certificate_(configuration.phantom_certificates.find(place.phantom.certificate)->second),
+      adapter_certificate_(configuration.adapter_certificates.find(place.adapter.certificate)->second),
+      phantom_(phantom_settings(phantom_certificate_.value, configuration.station.value, place.nest),
+               ports(place.phantom, place.nest, DeviceKind::phantom), services.clock, services.entropy),
+      adapter_(adapter_settings(adapter_certificate_.value, configuration.station.value, place.nest),
+               ports(place.adapter, place.nest, DeviceKind::adapter), services.clock, services.entropy) {
+  view_ = view_now();
+}
+
+asio::awaitable<void> Nest::live() {
+  using namespace asio::experimental::awaitable_operators;
+  co_await (phantom_.keep_connected() && adapter_.keep_connected() && watch());
+}
+
+asio::awaitable<void> Nest::watch() {
+  for (;;) {
+    co_await look();
+    if (armed_ && not_ready()) end_arming(*not_ready());
+    if (armed_ && seen_ && seen_->both() && seen_->phantom.lid_closed) {
+      Armed armed = *std::exchange(armed_, std::nullopt);
+      co_await run(std::move(armed));
+    } else if (armed_ && services_.clock.steady_now() >= armed_->until) {
+      end_arming({"arming_ended", nest_name(place_.nest), {{"serial", armed_->request.serial}}});
+    }
+    show();
+    co_await services_.clock.dwell(look_pause);
+  }
+}
+
+asio::awaitable<void> Nest::look() {
+  if (!phantom_.connected() || !adapter_.connected()) {
+    seen_.reset();
+    seen_empty_ = false;  // a probe may be exchanged while nobody looks
+    co_return;
+  }
+  try {
+    Seen seen;
+    seen.phantom = co_await phantom_.nest_state();
+    seen.adapter = co_await adapter_.presence();
+    if (!temperature_C_) temperature_C_ = co_await phantom_.temperature_degC();
+    if (!seen.any()) seen_empty_ = true;
+    seen_ = seen;
+  } catch (const ProblemError&) {
+    seen_.reset();  // the driver keeps the problem and looks for the device
+    seen_empty_ = false;
+  }
+}
+
+std::optional<Problem> Nest::certificate_ended(const measure::CertificateHead& head) const {
+  if (services_.zone.day(services_.clock.utc_now()) <= head.due) return std::nullopt;
+  return Problem{"certificate_ended", nest_name(place_.nest), {{"number", head.number}, {"due", head.due}}};
+}
+
+std::optional<Problem> Nest::not_ready() const {
+  if (services_.ledger.trouble()) return *services_.ledger.trouble();
+  if (auto ended = certificate_ended(phantom_certificate_.value.head)) return ended;
+  if (auto ended = certificate_ended(adapter_certificate_.value.head)) return ended;
+  if (phantom_.trouble()) return *phantom_.trouble();
+  if (adapter_.trouble()) return *adapter_.trouble();
+  if (!seen_) return Problem{"nest_connecting", nest_name(place_.nest)};
+  return std::nullopt;
+}
+
+Result<void> Nest::arm(const ArmNest& request) {
+  const std::string where = nest_name(place_.nest);
+  if (running()) return Problem{"nest_busy", where, {{"serial", view_.serial}}};
+  if (auto problem = not_ready()) return *problem;
+  // Production asks for an open lot, an opening check and signed documents; without them no run may call itself so.
+  if (request.purpose == Purpose::production) return Problem{"purpose_not_possible", where};
+  const auto* model = configuration_.model_of(request.serial);
+  if (!model) return Problem{"serial_unknown", where, {{"serial", request.serial}}};
+  if (seen_->any() || !seen_empty_) return Problem{"nest_occupied", where, {{"serial", request.serial}}};
+  const auto& sheet = configuration_.sheets.find(model->value.name)->second;
+  armed_ = Armed{request, model, &sheet, services_.clock.steady_now() + armed_for};
+  show();
+  return {};
+}
+
+bool Nest::stop(const std::string& who) {
+  if (armed_) {
+    end_arming({"arming_taken_back", nest_name(place_.nest), {{"serial", armed_->request.serial}, {"who", who}}});
+    return true;
+  }
+  if (!stop_run_) return false;
+  stopped_ = true;  // heard before the first device command, too
+  stopped_by_ = who;
+  stop_run_->emit(asio::cancellation_type::terminal);
+  return true;
+}
+
+void Nest::end_arming(Problem problem) {
+  const ArmingEnded ended{place_.nest, armed_->request.serial, std::move(problem)};
+  armed_.reset();
+  services_.tell(ended);
+  show();
+}
+
+std::string Nest::armed_words() const {
+  const std::string put = "put probe " + armed_->request.serial + " into " + nest_name(place_.nest);
+  if (!seen_ || !seen_->any()) return put;
+  if (!seen_->adapter.present) return "plug probe " + armed_->request.serial + " into the adapter";
+  if (!seen_->phantom.probe.present) return put;
+  return "close the lid";
+}
+
+NestView Nest::view_now() const {
+  NestView view = view_;
+  view.nest = place_.nest;
+  if (stop_run_) return view;  // the routine tells how far it is
+  view.doing.clear();
+  view.serial.clear();
+  view.stage = view.stages = 0;
+  if (const auto problem = not_ready()) {
+    view.state = NestState::not_ready;
+    view.words = problem->text();
+  } else if (armed_) {
+    view.state = NestState::armed;
+    view.serial = armed_->request.serial;
+    view.words = armed_words();
+  } else if (seen_->any() || !seen_empty_) {
+    view.state = NestState::occupied;
+    view.words = "take the probe out of " + nest_name(place_.nest);
+  } else {
+    view.state = NestState::empty;
+    view.words = "scan a probe";
+  }
+  return view;
+}
+
+void Nest::show() {
+  NestView view = view_now();
+  const bool same = view.state == view_.state && view.words == view_.words && view.serial == view_.serial &&
+                    view.stage == view_.stage;
+  view_ = std::move(view);
+  if (!same) services_.tell(NestChanged{view_});
+}
+
+db::RunOpened Nest::opening_of(const Armed& armed) const {
+  db::RunOpened opening;
+  opening.serial = armed.request.serial;
+  opening.purpose = slug(armed.request.purpose);
+  opening.emulated = phantom_.identity().emulated || adapter_.identity().emulated;
+  opening.lot = armed.request.lot;
+  opening.model = armed.model->value.name;
+  opening.nest = place_.nest;
+  opening.station = configuration_.station.value.station;
+  opening.operator_name = armed.request.operator_name;
+  opening.devices = {device_of("phantom", phantom_.identity(), phantom_certificate_.document),
+                     device_of("adapter", adapter_.identity(), adapter_certificate_.document)};
+  opening.software_version = services_.software.version;
+  opening.software_commit = services_.software.commit;
+  opening.compiler = services_.software.compiler;
+  opening.ambient_temperature_C = temperature_C_;
+  return opening;
+}
+
+/// From the opening entry to the verdict told. Nothing escapes but cancellation of the whole nest.
+asio::awaitable<void> Nest::run(Armed armed) {
+  const RunDocuments documents{configuration_.station, *armed.model, *armed.sheet, phantom_certificate_,
+                               adapter_certificate_};
+  RunBook book{services_.ledger, documents};
+  stop_run_ = std::make_unique<asio::cancellation_signal>();
+  stopped_ = false;
+  stopped_by_.clear();
+  seen_empty_ = false;
+  view_.state = NestState::running;
+  view_.serial = armed.request.serial;
+  view_.words = "testing " + armed.request.serial;
+  std::optional<Problem> unrecorded;
+  try {
+    co_await book.open(opening_of(armed));
+    services_.tell(RunStarted{place_.nest, armed.request.serial, book.run()});
+    const SteadyTime first_command = services_.clock.steady_now();
+    const wire::LineCounts phantom_before = phantom_.counts(), adapter_before = adapter_.counts();
+    Ending ending = co_await make_run(armed, book);
+    bool drive_off = false;
+    co_await make_dark(ending, drive_off);
+    if (services_.ledger.trouble()) throw ProblemError(*services_.ledger.trouble());
+    const auto asked_again = static_cast<std::int64_t>(phantom_.counts().asked_again - phantom_before.asked_again +
+                                                       adapter_.counts().asked_again - adapter_before.asked_again);
+    Body bench{Body::Object{
+        {"asked_again", asked_again},
+        {"drive_off_confirmed", drive_off},
+        {"fences", static_cast<std::int64_t>(phantom_.counts().fences - phantom_before.fences)},
+        {"stopped_by", stopped_by_},
+    }};
+    RunOutcome outcome = co_await book.close(std::move(ending), std::move(bench));
+    outcome.cycle = services_.clock.steady_now() - first_command;
+    outcome.asked_again = static_cast<int>(asked_again);
+    stop_run_.reset();
+    services_.tell(RunEnded{std::move(outcome)});
+  } catch (const ProblemError& error) {
+    unrecorded = error.problem();
+  }
+  stop_run_.reset();
+  temperature_C_.reset();  // read anew before the next run
+  if (unrecorded) not_recorded(armed, *unrecorded);
+}
+
+void Nest::not_recorded(const Armed& armed, const Problem& problem) {
+  services_.tell(RunNotRecorded{place_.nest, armed.request.serial, problem});
+}
+
+/// The boundary of a run: here every way that it can end becomes an Ending.
+asio::awaitable<Ending> Nest::make_run(const Armed& armed, RunBook& book) {
+  const auto executor = co_await asio::this_coro::executor;
+  Ending ending;
+  if (stopped_) co_return Ending{EndedBy::person_or_probe, "stopped_by_person", "stopped by " + stopped_by_};
+  try {
+    co_await asio::co_spawn(executor, gather(armed, book),
+                            asio::bind_cancellation_slot(stop_run_->slot(), asio::use_awaitable));
+  } catch (const Disturbed& disturbed) {
+    ending = {EndedBy::person_or_probe, disturbed.problem().id, disturbed.problem().text()};
+  } catch (const ProblemError& error) {
+    ending = device_ending(error.problem());
+  } catch (const boost::system::system_error& error) {
+    if (error.code() != asio::error::operation_aborted) throw;
+    ending = {EndedBy::person_or_probe, "stopped_by_person", "stopped by " + stopped_by_};
+  } catch (const std::exception& error) {
+    ending = device_ending({"our_bug", nest_name(place_.nest), {{"what", error.what()}}});
+  }
+  co_return ending;
+}
+
+asio::awaitable<void> Nest::gather(const Armed& armed, RunBook& book) {
+  const measure::Model& model = armed.model->value;
+  adapter_.set_ceiling({ceiling_uA(model), ceiling_uA(model)});
+  const auto slot_ns = static_cast<std::uint32_t>(model.slot_s * 1e9 + 0.5);
+  if (adapter_.slot_ns() != slot_ns) co_await adapter_.set_timing(slot_ns);
+  const Insertions insertions{seen_->phantom.probe.insertions, seen_->adapter.insertions};
+  Routine routine{{phantom_, adapter_},
+                  model,
+                  phantom_certificate_.value,
+                  insertions,
+                  services_.clock,
+                  book,
+                  [this](std::string_view doing, int stage, int stages) {
+                    view_.doing = doing;
+                    view_.stage = stage;
+                    view_.stages = stages;
+                    services_.tell(NestChanged{view_});
+                  }};
+  co_await routine.gather();
+}
+
+/// LEDs off however the run ended; after one that did not go through, the phantom back to its reset settings too.
+asio::awaitable<void> Nest::make_dark(Ending& ending, bool& drive_off) {
+  drive_off = co_await adapter_.drive_off();
+  if (ending.by == EndedBy::completion) co_return;
+  try {
+    if (phantom_.connected()) co_await phantom_.reset();
+  } catch (const ProblemError&) {
+    // The driver keeps the problem; connecting anew resets the device.
+  }
+}
+
+}  // namespace probewright::sequence
