@@ -297,6 +297,9 @@ Result<Line> find_line(const Spectrum& spectrum, const LineRules& rules) {
   const End last = all ? End{part->last, part->nm(part->last), true} : end_of_run(*part, smooth, top, level, 1);
   for (const End* end : {&first, &last})
     if (end->ended_by_axis) line.edge_level = std::max(line.edge_level, smooth[end->sample - part->first] / *highest);
+  // A level like this at the end of the axis is either the line itself or a dark level that was not subtracted.
+  constexpr double most_at_edge = 0.10;
+  if (!all && line.edge_level > most_at_edge) return problem("spectrum_cut_off");
   const Integral integral = integrate(*part, integral_weights(*part, first, last));
   if (!(integral.area > 0.0)) return problem("spectrum_no_peak");
   line.centroid_nm = integral.mean_nm;
