@@ -53,6 +53,10 @@ int Console::refuse(const Problem& problem, ExitStatus status) {
   return status;
 }
 
+void Console::say(std::string_view line) {
+  if (!json()) err_ << line << '\n' << std::flush;
+}
+
 void Console::warn(const Problem& problem) { err_ << problem.text() << '\n'; }
 
 Progress::Progress(Console& console, std::string_view what) : console_(console), what_(what) {}

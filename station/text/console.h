@@ -41,6 +41,8 @@ class Console {
   int refuse(const Problem& problem);
   int refuse(const Problems& problems);
   int refuse(const Problem& problem, ExitStatus status);
+  /// What is going on, for whoever waits; not part of the answer. Silent with JSON.
+  void say(std::string_view line);
   /// A problem that does not end the command.
   void warn(const Problem& problem);
 
