@@ -1,0 +1,161 @@
+#include "db/chain.h"
+
+#include <algorithm>
+#include <bit>
+
+#include "db/hex.h"
+#include "db/sha256.h"
+
+namespace probewright::db {
+namespace {
+
+constexpr std::array reading_fields = std::to_array<DigestedColumn>({
+    {"place", Field::integer},
+    {"check_slug", Field::text},
+    {"value", Field::maybe_real},
+    {"none_reason", Field::maybe_text},
+    {"expanded_uncertainty", Field::maybe_real},
+    {"unit", Field::text},
+    {"lower_limit", Field::maybe_real},
+    {"upper_limit", Field::maybe_real},
+    {"acceptance_lower", Field::maybe_real},
+    {"acceptance_upper", Field::maybe_real},
+    {"margin", Field::maybe_real},
+    {"conformance_probability", Field::maybe_real},
+    {"ok", Field::text},
+    {"definition", Field::text},
+    {"cut_short", Field::flag},
+});
+
+constexpr std::array capture_fields = std::to_array<DigestedColumn>({
+    {"number", Field::integer},
+    {"kind", Field::text},
+    {"set_label", Field::text},
+    {"packing", Field::text},
+    {"decoded_size", Field::integer},
+    {"stored_size", Field::integer},
+    {"decoded_digest", Field::digest},
+    {"stored_digest", Field::digest},
+});
+
+std::string select(std::span<const DigestedColumn> columns, std::string_view table) {
+  std::string sql = "SELECT ";
+  for (const DigestedColumn& column : columns) sql += std::string{column.name} + ", ";
+  sql.resize(sql.size() - 2);
+  return sql + " FROM " + std::string{table} + " WHERE run = ? ORDER BY " + columns.front().name;
+}
+
+template <class Unsigned>
+void put_big_endian(std::string& to, Unsigned value) {
+  for (int shift = 8 * int{sizeof value} - 8; shift >= 0; shift -= 8) to += static_cast<char>(value >> shift & 0xff);
+}
+
+void put_integer(std::string& to, std::int64_t value) { put_big_endian(to, static_cast<std::uint64_t>(value)); }
+
+void put_text(std::string& to, std::string_view text) {
+  put_big_endian(to, static_cast<std::uint32_t>(text.size()));
+  to += text;
+}
+
+/// Appends one column; false where its type or value cannot be there.
+bool put(std::string& to, const Row& row, int column, Field field) {
+  switch (field) {
+    case Field::integer:
+      if (!row.is_integer(column)) return false;
+      put_integer(to, row.integer(column));
+      return true;
+    case Field::text:
+      if (!row.is_text(column)) return false;
+      put_text(to, row.text_view(column));
+      return true;
+    case Field::maybe_text:
+      to += row.is_null(column) ? '\0' : '\1';
+      return row.is_null(column) || put(to, row, column, Field::text);
+    case Field::maybe_real:
+      to += row.is_null(column) ? '\0' : '\1';
+      if (row.is_null(column)) return true;
+      if (!row.is_real(column)) return false;
+      put_big_endian(to, std::bit_cast<std::uint64_t>(row.real(column)));
+      return true;
+    case Field::flag:
+      if (!row.is_integer(column) || (row.integer(column) != 0 && row.integer(column) != 1)) return false;
+      to += row.integer(column) != 0 ? '\1' : '\0';
+      return true;
+    case Field::digest:
+      if (!row.is_blob(column) || row.blob(column).size() != 32) return false;
+      to.append(reinterpret_cast<const char*>(row.blob(column).data()), 32);
+      return true;
+  }
+  return false;
+}
+
+Tag tag(std::string_view bytes) {
+  const Digest digest = sha256(bytes);
+  Tag first{};
+  std::copy_n(digest.begin(), first.size(), first.begin());
+  return first;
+}
+
+}  // namespace
+
+std::string entry_body(const EntryHead& head, const Body& data) {
+  return canonical(Body::Object{{"data", data},
+                                {"kind", head.kind},
+                                {"number", head.number},
+                                {"recipe", recipe},
+                                {"time", head.time},
+                                {"who", head.who}});
+}
+
+Digest entry_hash(const Digest& previous, std::string_view body) { return Sha256{}.add(previous).add(body).finish(); }
+
+std::span<const DigestedColumn> reading_columns() { return reading_fields; }
+
+std::span<const DigestedColumn> capture_columns() { return capture_fields; }
+
+const std::string& select_readings() {
+  static const std::string sql = select(reading_fields, "reading");
+  return sql;
+}
+
+const std::string& select_captures() {
+  static const std::string sql = select(capture_fields, "capture");
+  return sql;
+}
+
+int RowsDigest::add(const Row& row) {
+  std::string bytes;
+  for (std::size_t i = 0; i < columns_.size(); ++i) {
+    const std::size_t before = bytes.size();
+    if (!put(bytes, row, static_cast<int>(i), columns_[i].field)) return static_cast<int>(i);
+    column_bytes_[i].append(bytes, before);
+  }
+  row_tags_.push_back(tag(bytes));
+  bytes_ += bytes;
+  return -1;
+}
+
+std::vector<Tag> RowsDigest::column_tags() const {
+  std::vector<Tag> tags;
+  for (const std::string& bytes : column_bytes_) tags.push_back(tag(bytes));
+  return tags;
+}
+
+Digest run_proof(RunId run, const RowsDigest& readings, const RowsDigest& captures) {
+  std::string bytes;
+  put_integer(bytes, recipe);
+  put_integer(bytes, run.value);
+  put_integer(bytes, static_cast<std::int64_t>(readings.rows()));
+  bytes += readings.bytes();
+  put_integer(bytes, static_cast<std::int64_t>(captures.rows()));
+  bytes += captures.bytes();
+  return sha256(bytes);
+}
+
+std::string tags_text(std::span<const Tag> tags) {
+  std::string text;
+  for (const Tag& each : tags) text += hex(each);
+  return text;
+}
+
+}  // namespace probewright::db

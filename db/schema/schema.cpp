@@ -1,0 +1,65 @@
+#include "db/schema/schema.h"
+
+#include <map>
+#include <stdexcept>
+
+#include "db/sha256.h"
+#include "db/statement.h"
+
+namespace probewright::db {
+namespace {
+
+constexpr std::string_view step_1 =
+#include "db/schema/step_1.inc"
+    ;
+
+std::vector<SchemaObject> schema_of_steps() {
+  Connection scratch(":memory:", Access::create_read_write);
+  for (std::int64_t step = 1; step <= newest_step; ++step) scratch.run(std::string{schema_step(step)});
+  return schema_objects(scratch);
+}
+
+}  // namespace
+
+std::string_view schema_step(std::int64_t step) {
+  if (step == 1) return step_1;
+  throw std::logic_error("no such step of the layout");
+}
+
+std::vector<SchemaObject> schema_objects(Connection& connection) {
+  Statement statement(connection,
+                      "SELECT type, name, tbl_name, coalesce(sql, '') FROM sqlite_schema ORDER BY type, name");
+  std::vector<SchemaObject> objects;
+  for (Row row = statement.begin(); row.step();)
+    objects.push_back({row.text(0), row.text(1), row.text(2), row.text(3)});
+  return objects;
+}
+
+const std::vector<SchemaObject>& expected_schema() {
+  static const std::vector<SchemaObject> expected = schema_of_steps();
+  return expected;
+}
+
+Digest schema_digest(const std::vector<SchemaObject>& objects) {
+  const std::string_view end{"\0", 1};
+  Sha256 hash;
+  for (const auto& [type, name, table, sql] : objects)
+    hash.add(type).add(end).add(name).add(end).add(table).add(end).add(sql).add(end);
+  return hash.finish();
+}
+
+SchemaDifference schema_difference(Connection& connection) {
+  std::map<std::pair<std::string, std::string>, SchemaObject> found;
+  for (SchemaObject& object : schema_objects(connection)) found[{object.type, object.name}] = object;
+  for (const SchemaObject& expected : expected_schema()) {
+    const auto at = found.find({expected.type, expected.name});
+    if (at == found.end()) return {expected.name, expected.type + " is missing"};
+    if (at->second != expected) return {expected.name, expected.type + " has another text"};
+    found.erase(at);
+  }
+  if (found.empty()) return {};
+  const SchemaObject& extra = found.begin()->second;
+  return {extra.name, extra.type + " does not belong here"};
+}
+
+}  // namespace probewright::db

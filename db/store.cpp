@@ -1,0 +1,190 @@
+#include "db/store.h"
+
+#include <algorithm>
+
+#include "db/chain.h"
+#include "db/hex.h"
+#include "db/projection.h"
+#include "db/queries/seal.h"
+#include "db/schema/schema.h"
+#include "db/transaction.h"
+#include "db/verify.h"
+
+namespace probewright::db {
+namespace {
+
+constexpr std::int64_t recent_entries = 100;
+
+std::vector<Result<void>> all_failed(std::size_t count, const Problem& problem) {
+  std::vector<Result<void>> outcomes;
+  for (std::size_t i = 0; i < count; ++i) outcomes.emplace_back(problem);
+  return outcomes;
+}
+
+}  // namespace
+
+Result<std::unique_ptr<Store>> Store::open(const StoreOptions& options, const Clock& clock) {
+  std::optional<Lease> lease;
+  if (options.lease) {
+    auto taken = Lease::take(options.path);
+    if (!taken) return taken.error();
+    lease = std::move(*taken);
+  } else if (options.vfs.empty()) {
+    if (const std::string type = network_file_system_of(folder_of(options.path)); !type.empty())
+      return Problem{"ledger_network", options.path, {{"type", type}}};
+  }
+  try {
+    return std::unique_ptr<Store>(new Store(options, clock, std::move(lease)));
+  } catch (const ProblemError& error) {
+    return error.problem();
+  }
+}
+
+Store::Store(const StoreOptions& options, const Clock& clock, std::optional<Lease> lease)
+    : lease_(std::move(lease)),
+      clock_(clock),
+      connection_(options.path, options.create ? Access::create_read_write : Access::read_write, options.vfs) {
+  connection_.wait_for_locks(options.wait_for_locks_ms);
+  // Without shared memory the first read would already need a lock that lasts.
+  if (options.exclusive) connection_.demand("locking_mode", "EXCLUSIVE", "exclusive");
+  const bool fresh = is_fresh();
+  if (!fresh) refuse_foreign_file();  // before any setting could touch the file
+  if (fresh && !options.create)
+    throw ProblemError({"ledger_not_a_ledger", options.path, {{"reason", "an empty file"}, {"code", "26"}}});
+  if (fresh) connection_.run("PRAGMA auto_vacuum=INCREMENTAL");  // must come before the first page
+  set_modes(options);
+  if (fresh) begin_ledger(options);
+  prepare();
+  read_first_entry(options);
+  check_recent();
+  seal_ = newest_entry();
+  data_version_ = connection_.ask_number("PRAGMA data_version");
+}
+
+Store::~Store() = default;
+
+bool Store::is_fresh() {
+  return connection_.ask_number("PRAGMA application_id") == 0 && connection_.ask_number("PRAGMA user_version") == 0 &&
+         connection_.ask_number("SELECT count(*) FROM sqlite_schema") == 0;
+}
+
+void Store::refuse_foreign_file() { db::refuse_foreign_file(connection_); }
+
+void Store::set_modes(const StoreOptions& options) {
+  connection_.demand("journal_mode", "WAL", "wal");
+  connection_.demand("synchronous", "FULL", "2");
+  connection_.demand("foreign_keys", "ON", "1");
+  connection_.demand("recursive_triggers", "ON", "1");
+  connection_.demand("temp_store", "MEMORY", "2");
+  connection_.run("PRAGMA cell_size_check=ON");
+  connection_.ask("PRAGMA wal_autocheckpoint=" + std::to_string(options.checkpoint_pages));
+  // What an earlier process could not sync may lie in the log without being on the disk; nothing is built on top of it.
+  connection_.wait_for_locks(0);
+  connection_.ask("PRAGMA wal_checkpoint(TRUNCATE)");
+  connection_.wait_for_locks(options.wait_for_locks_ms);
+}
+
+void Store::begin_ledger(const StoreOptions& options) {
+  Transaction change{connection_};
+  if (!is_fresh()) return;  // another program was faster
+  for (std::int64_t step = 1; step <= newest_step; ++step) connection_.run(std::string{schema_step(step)});
+  connection_.run("PRAGMA application_id=" + std::to_string(application_id));
+  connection_.run("PRAGMA user_version=" + std::to_string(newest_step));
+  prepare();
+  Change first{*this, Seal{}};
+  first.append("ledger_begun", "station",
+               Body::Object{{"emulated", options.emulated},
+                            {"layout", newest_step},
+                            {"layout_digest", to_hex(schema_digest(expected_schema()))},
+                            {"previous_seal", nullptr},
+                            {"software_commit", options.program_commit},
+                            {"software_version", options.program_version},
+                            {"station", options.station},
+                            {"volume", 1}});
+  change.commit();
+  if (options.vfs.empty()) sync_folder(folder_of(options.path)).value();
+}
+
+void Store::prepare() {
+  insert_projected_.clear();
+  for (const ProjectedTable& table : projected_tables())
+    insert_projected_.push_back(std::make_unique<Statement>(connection_, insert_sql(table)));
+}
+
+void Store::read_first_entry(const StoreOptions& options) {
+  Row row = connection_.begin("SELECT body FROM entry WHERE number = 1");
+  const auto body = row.step() ? parse_body(row.text_view(0), "entry 1") : Result<Body>{Body{}};
+  const Body* data = body ? body->find("data") : nullptr;
+  const Body* emulated = data ? data->find("emulated") : nullptr;
+  if (!emulated || !emulated->boolean())
+    throw ProblemError(altered_problem(options.path, {1, "entry", "1", "body", "does not say how the ledger began"}));
+  emulated_ = *emulated->boolean();
+  station_ = data->text("station");
+  if (!options.station.empty() && station_ != options.station)
+    throw ProblemError({"ledger_other_station", options.path, {{"found", station_}, {"wanted", options.station}}});
+}
+
+void Store::check_recent() {
+  if (const auto difference = schema_difference(connection_); !difference.what.empty())
+    throw ProblemError({"ledger_layout_altered", path(), {{"name", difference.name}, {"what", difference.what}}});
+  if (const auto fault = recent_fault(connection_, recent_entries)) throw ProblemError(altered_problem(path(), *fault));
+}
+
+Seal Store::newest_entry() {
+  Reader reader{connection_};
+  return newest_seal(reader);
+}
+
+std::vector<Result<void>> Store::commit_group(std::span<const Job> jobs) {
+  if (trouble_) return all_failed(jobs.size(), {"ledger_failed", path(), {{"reason", trouble_->what()}}});
+  std::vector<Result<void>> outcomes;
+  try {
+    Transaction transaction{connection_};
+    Change change{*this, newest_entry()};
+    for (const Job& job : jobs) outcomes.push_back(attempt(change, job));
+    transaction.commit();
+    seal_ = change.seal();
+    return outcomes;
+  } catch (const Error& error) {
+    trouble_ = error.problem();
+    return all_failed(jobs.size(), error.problem());
+  }
+}
+
+Result<void> Store::commit(const Job& job) { return commit_group({&job, 1}).front(); }
+
+Result<void> Store::attempt(Change& change, const Job& job) {
+  Savepoint savepoint{connection_};
+  const Seal before = change.seal();
+  Problem problem;
+  try {
+    job(change);
+    savepoint.keep();
+    return {};
+  } catch (const Error& error) {
+    if (!error.refused()) throw;
+    problem = error.problem();
+  } catch (const ProblemError& error) {
+    problem = error.problem();
+  } catch (const std::exception& error) {
+    problem = {"ledger_job", path(), {{"reason", error.what()}}};
+  }
+  savepoint.take_back();
+  change.seal_ = before;
+  return problem;
+}
+
+bool Store::others_wrote() {
+  const std::int64_t version = connection_.ask_number("PRAGMA data_version");
+  return std::exchange(data_version_, version) != version;
+}
+
+std::chrono::microseconds Store::clock_behind() {
+  Row row = connection_.begin("SELECT time FROM entry ORDER BY number DESC LIMIT 1");
+  if (!row.step()) return std::chrono::microseconds{0};
+  const auto newest = parse_utc(row.text_view(0));
+  if (!newest) return std::chrono::microseconds{0};
+  return std::chrono::microseconds{std::max<std::int64_t>(0, newest->microseconds - clock_.utc_now().microseconds)};
+}
+
+}  // namespace probewright::db
