@@ -15,7 +15,8 @@ using sequence::RunVerdict;
 
 /// Digits so that the expanded uncertainty has two; six significant ones where there is none.
 std::string shown(double value, const std::optional<double>& expanded_uncertainty) {
-  const double scale = expanded_uncertainty && *expanded_uncertainty > 0.0 ? *expanded_uncertainty : std::abs(value) * 1e-4;
+  const double scale =
+      expanded_uncertainty && *expanded_uncertainty > 0.0 ? *expanded_uncertainty : std::abs(value) * 1e-4;
   if (!(scale > 0.0)) return shortest(value);
   const int decimals = 1 - static_cast<int>(std::floor(std::log10(scale)));
   return fixed(value, decimals < 0 ? 0 : decimals > 9 ? 9 : decimals);
