@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <functional>
 
+#include "limits/fixed_number.h"
 #include "limits/words.h"
 #include "station/base/numbers.h"
 
@@ -49,7 +50,7 @@ std::string guard_words(const Guard& guard) {
     case Guard::Kind::factor:
       return shortest(guard.amount) + " x U";
     case Guard::Kind::risk:
-      return "risk " + shortest(100.0 * guard.amount) + " %";
+      return "risk " + shortest(fixed_number(100.0 * guard.amount)) + " %";
   }
   return "none";
 }

@@ -3,15 +3,23 @@
 #include <algorithm>
 
 #include "limits/acceptance.h"
+#include "limits/fixed_number.h"
 #include "limits/words.h"
 #include "station/base/numbers.h"
 
 namespace probewright::limits {
 namespace {
 
-/// A number of the sheet as it stands, no digit dropped.
-std::string whole(double value, const CheckLine& line) {
-  return line.unit.empty() ? shortest(value) : shortest(value) + " " + line.unit;
+std::string joined(double value, const std::string& unit) {
+  return unit.empty() ? shortest(value) : shortest(value) + " " + unit;
+}
+
+/// A number of the sheet as it stands, no digit dropped. What "%" is of is said once a line.
+std::string whole(double value, const CheckLine& line) { return joined(value, short_unit(*find_check(line.check))); }
+
+std::string of_what(const CheckLine& line) {
+  const std::string of{find_check(line.check)->of};
+  return of.empty() ? of : " of " + of;
 }
 
 std::string window(const Limits& limits, const CheckLine& line) {
@@ -27,16 +35,18 @@ std::string guard_words(const Guard& guard, const CheckLine& line) {
     case Guard::Kind::factor:
       return "guard " + shortest(guard.amount) + " x U";
     case Guard::Kind::risk:
-      return "guard " + whole(line.guard_band, line) + " for a risk of " + shortest(100.0 * guard.amount) + " %";
+      return "guard " + whole(line.guard_band, line) + " for a risk of " +
+             shortest(fixed_number(100.0 * guard.amount)) + " %";
   }
   return {};
 }
 
 std::string judged_words(const CheckRule& rule, const CheckLine& line) {
   if (rule.must_be_yes) return "judged, must be yes";
-  std::string words = "judged, " + window(line.limits, line) + "; U " + whole(line.expanded_uncertainty, line) + ", " +
-                      guard_words(rule.guard, line) + "; accepted " + window(line.acceptance, line) +
-                      ", where at least " + fixed(100.0 * *line.conformance_at_acceptance, 1) + " % conform";
+  std::string words = "judged, " + window(line.limits, line) + of_what(line) + "; U " +
+                      whole(line.expanded_uncertainty, line) + ", " + guard_words(rule.guard, line) + "; accepted " +
+                      window(line.acceptance, line) + ", where at least " +
+                      fixed(100.0 * *line.conformance_at_acceptance, 1) + " % conform";
   if (rule.typical) words += "; typical " + whole(*rule.typical, line);
   if (rule.at_degC) words += "; at " + shortest(*rule.at_degC) + " degC";
   return words;
@@ -56,7 +66,7 @@ std::string words_of(const CheckRule& rule, const CheckLine& line) {
 
 void add_judged_numbers(const CheckRule& rule, CheckLine& line) {
   line.expanded_uncertainty = rule.expanded_uncertainty;
-  line.guard_band = guard_band(rule.guard, rule.expanded_uncertainty);
+  line.guard_band = fixed_number(guard_band(rule.guard, rule.expanded_uncertainty));
   line.conformance_at_acceptance = conformance_at_acceptance(rule.limits, rule.acceptance, rule.expanded_uncertainty);
 }
 

@@ -12,7 +12,7 @@ namespace {
 int decimals_beside(const CheckRule& rule, double value, bool beside_acceptance) {
   int decimals = decimals_for(rule.expanded_uncertainty, value);
   for (const auto& limit : {rule.limits.lower, rule.limits.upper})
-    if (limit) decimals = decimals_apart(value, *limit, decimals);
+    if (limit) decimals = decimals_apart(value, *limit, std::max(decimals, decimals_of(*limit)));
   if (beside_acceptance)
     for (const auto& limit : {rule.acceptance.lower, rule.acceptance.upper})
       if (limit) decimals = decimals_apart(value, *limit, decimals);
@@ -23,7 +23,7 @@ std::string within(const Check& check, const CheckRule& rule, double value) {
   const bool guarded = rule.acceptance != rule.limits;
   const int decimals = decimals_beside(rule, value, guarded);
   const Limits& shown = guarded ? rule.acceptance : rule.limits;
-  return with_unit(value, decimals, check) + ", inside " + window_words(shown, decimals, check);
+  return with_unit(value, decimals, check) + ", " + window_words(shown, decimals, check);
 }
 
 std::string beyond(const Check& check, const CheckRule& rule, double value) {
@@ -31,7 +31,7 @@ std::string beyond(const Check& check, const CheckRule& rule, double value) {
   const bool below = rule.limits.lower && value < *rule.limits.lower;
   const double limit = below ? *rule.limits.lower : *rule.limits.upper;
   return with_unit(value, decimals, check) + ", " + (below ? "below" : "above") + " the limit of " +
-         with_unit(limit, decimals, check);
+         with_short_unit(limit, decimals, check);
 }
 
 std::string too_close(const Check& check, const CheckRule& rule, double value) {
@@ -39,16 +39,16 @@ std::string too_close(const Check& check, const CheckRule& rule, double value) {
   const bool below = rule.acceptance.lower && value < *rule.acceptance.lower;
   const double limit = below ? *rule.limits.lower : *rule.limits.upper;
   const double accept = below ? *rule.acceptance.lower : *rule.acceptance.upper;
-  return with_unit(value, decimals, check) + ", inside the limit of " + with_unit(limit, decimals, check) +
+  return with_unit(value, decimals, check) + ", inside the limit of " + with_short_unit(limit, decimals, check) +
          ", too close for our uncertainty (accepted " + (below ? "from " : "up to ") +
-         with_unit(accept, decimals, check) + ")";
+         with_short_unit(accept, decimals, check) + ")";
 }
 
 std::string watched(const Check& check, const CheckRule& rule, double value, bool alert) {
   const double beyond_what = *rule.watch_beyond;
-  const int decimals = decimals_apart(value < 0.0 ? -value : value, beyond_what, decimals_for(0.0, value));
+  const int decimals = decimals_apart(value < 0.0 ? -value : value, beyond_what, decimals_of(beyond_what));
   return with_unit(value, decimals, check) + (alert ? ", further from 0 than the watched " : ", within the watched ") +
-         with_unit(beyond_what, decimals, check);
+         with_short_unit(beyond_what, decimals, check);
 }
 
 std::string recorded(const Check& check, double value, double expanded_uncertainty) {
@@ -62,7 +62,7 @@ std::string unusable(const Check& check, const CheckRule& rule, const Judgement&
   if (judgement.reason == "no_uncertainty") return "not usable, the reading came without an uncertainty";
   const int decimals = decimals_apart(own, rule.expanded_uncertainty, decimals_for(rule.expanded_uncertainty, own));
   return "not usable, the uncertainty of this reading is " + with_unit(own, decimals, check) + ", the sheet allows " +
-         with_unit(rule.expanded_uncertainty, decimals, check);
+         with_short_unit(rule.expanded_uncertainty, decimals, check);
 }
 
 std::string no_reading(const Judgement& judgement) {

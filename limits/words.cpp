@@ -10,10 +10,7 @@ namespace {
 
 constexpr int most_decimals = 12;
 
-std::string after_number(const Check& check) {
-  const std::string unit = unit_words(check);
-  return unit.empty() ? unit : " " + unit;
-}
+std::string joined(std::string number, const std::string& unit) { return unit.empty() ? number : number + " " + unit; }
 
 }  // namespace
 
@@ -24,15 +21,21 @@ std::string unit_words(const Check& check) {
   return std::string{check.unit} + " of " + std::string{check.of};
 }
 
+std::string short_unit(const Check& check) { return check.of.empty() ? unit_words(check) : std::string{check.unit}; }
+
 std::string with_unit(double value, int decimals, const Check& check) {
-  return fixed(value, decimals) + after_number(check);
+  return joined(fixed(value, decimals), unit_words(check));
+}
+
+std::string with_short_unit(double value, int decimals, const Check& check) {
+  return joined(fixed(value, decimals), short_unit(check));
 }
 
 std::string window_words(const Limits& limits, int decimals, const Check& check) {
-  if (limits.two_sided()) return fixed(*limits.lower, decimals) + " to " + with_unit(*limits.upper, decimals, check);
-  if (limits.upper) return "up to " + with_unit(*limits.upper, decimals, check);
-  if (limits.lower) return "from " + with_unit(*limits.lower, decimals, check) + " up";
-  return "no limit";
+  if (limits.two_sided())
+    return "inside " + fixed(*limits.lower, decimals) + " to " + with_short_unit(*limits.upper, decimals, check);
+  if (limits.upper) return "accepted up to " + with_short_unit(*limits.upper, decimals, check);
+  return "accepted from " + with_short_unit(limits.lower.value_or(0.0), decimals, check) + " up";
 }
 
 int decimals_for(double uncertainty, double value) {
@@ -52,7 +55,7 @@ int decimals_of(double value) {
 
 int decimals_apart(double value, double limit, int at_least) {
   constexpr int enough_for_any_double = 350;
-  int decimals = std::max(at_least, std::min(decimals_of(limit), 6));
+  int decimals = at_least;
   if (value == limit || !std::isfinite(value) || !std::isfinite(limit)) return decimals;
   while (decimals < enough_for_any_double && fixed(value, decimals) == fixed(limit, decimals)) ++decimals;
   return decimals;

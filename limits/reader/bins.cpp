@@ -70,9 +70,11 @@ std::optional<double> BinsReader::take(Map& map, const char* key, std::string_vi
 
 void BinsReader::one_bin_sane(const PlacedBin& placed, yaml::Place nominal) {
   const Bin& bin = placed.bin;
-  if (!(bin.lower < bin.upper))
+  if (!(bin.lower < bin.upper)) {
+    whole_ = false;  // gaps and overlaps mean nothing beside it
     return faults_.add(placed.lower, "sheet_bin_reversed",
                        {{"bin", bin.name}, {"lower", shown(bin.lower)}, {"upper", shown(bin.upper)}});
+  }
   if (bin.nominal < bin.lower || bin.nominal > bin.upper)
     faults_.add(nominal, "sheet_bin_nominal_outside", {{"bin", bin.name}, {"nominal", shown(bin.nominal)}});
   if (!(bin.resistor_ohm > 0.0))

@@ -73,7 +73,9 @@ ReadChecks read_checks(const Value& value, Faults& faults) {
     const Check* check = find_check(item.key);
     if (!check) {
       unknown_check(item, faults);
-      judges = true;  // it may have been the judged one; one fault is enough
+      read.named.push_back(
+          yaml::nearest_word(item.key, every_slug()));  // what was meant, so that nothing else complains
+      judges = true;                                    // it may have been the judged one; one fault is enough
       continue;
     }
     read.named.push_back(item.key);

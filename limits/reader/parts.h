@@ -17,8 +17,9 @@ using yaml::Map;
 using yaml::Value;
 
 struct ReadChecks {
-  std::vector<CheckRule> rules;    ///< those without a fault, in catalogue order
-  std::vector<std::string> named;  ///< every check of the catalogue that the sheet names
+  std::vector<CheckRule> rules;  ///< those without a fault, in catalogue order
+  std::vector<std::string>
+      named;  ///< every check that the sheet names, faulty or not; the nearest one for a misspelt name
 };
 ReadChecks read_checks(const Value& value, Faults& faults);
 

@@ -6,7 +6,8 @@
 
 namespace probewright::limits::statistics {
 
-/// How the true values of a product are spread: a density, and a range that holds all but a negligible part of it.
+/// How the true values of a product are spread: a density, smooth on the scale of a 32nd of the range, and
+/// a range that holds all but a negligible part of it.
 struct Process {
   std::function<double(double)> density;
   double from = 0.0, to = 0.0;
@@ -23,7 +24,7 @@ struct Risks {
   double accepted = 0.0;       ///< yield
 };
 
-/// Global risks with a normal measuring error, by adaptive numerical integration.
+/// Global risks with a normal measuring error, by numerical integration (Gauss-Legendre on fixed pieces).
 /// error_sd    standard deviation of the error, > 0, unit of the process
 /// tolerance   limits for the true value; acceptance: limits for the reading; each at least one side
 /// errors      risk_input (what is wrong, in words)
@@ -31,7 +32,7 @@ struct Risks {
 Result<Risks> global_risks(const Process& process, double error_sd, const Limits& tolerance, const Limits& acceptance);
 
 /// The narrowest guard band (>= 0, the same on each side of `tolerance`) that keeps the consumer's risk at or below
-/// `wanted`. Errors: as above; risk_not_reachable when even an empty acceptance window does not do it.
+/// `wanted`; at worst one that leaves no acceptance window. Errors: as above.
 Result<double> guard_band_for_consumer_risk(const Process& process, double error_sd, const Limits& tolerance,
                                             double wanted);
 
