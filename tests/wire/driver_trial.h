@@ -43,6 +43,7 @@ struct DriverBench {
   bool plugged = true;
   int opened = 0;                     ///< ports, also those that failed
   std::vector<wire::ByteFault> plan;  ///< of the first port
+  wire::FaultRate rate;               ///< of every port
   std::vector<std::shared_ptr<wire::Port>> device_ends;
   wire::FaultPort* port = nullptr;  ///< the station's end, newest; alive while the driver keeps it
 
@@ -54,7 +55,8 @@ struct DriverBench {
     asio::co_spawn(line.io, fake.serve(device_ends.back(), line.clock()), [](std::exception_ptr thrown) {
       if (thrown) std::rethrow_exception(thrown);
     });
-    auto faulty = std::make_unique<wire::FaultPort>(std::move(station), first ? plan : std::vector<wire::ByteFault>{});
+    auto faulty =
+        std::make_unique<wire::FaultPort>(std::move(station), first ? plan : std::vector<wire::ByteFault>{}, rate);
     port = faulty.get();
     co_return std::make_unique<wire::RecordingPort>(std::move(faulty), line.clock(), traffic);
   }
