@@ -1,11 +1,11 @@
 #include <unistd.h>
 
-#include <csignal>
 #include <exception>
 #include <filesystem>
 #include <iostream>
 
 #include "commit_stamp.h"
+#include "station/main_hands.h"
 #include "station/main_options.h"
 #include "station/text/console.h"
 
@@ -27,7 +27,14 @@ struct Dispatch {
     console.print_text(shown.text);
     return text::done;
   }
-  int operator()(const text::TestOptions& options) const { return text::test(options, console); }
+  int operator()(const emulated::RunBenchOptions& options) const {
+    const auto ended = emulated::run_bench(options, std::cout);
+    return ended ? text::done : console.refuse(ended.error());
+  }
+  int operator()(const text::TestOptions& options) const {
+    const auto hands = bench_hands(options);
+    return text::test(options, hands ? &*hands : nullptr, console);
+  }
   int operator()(const text::CheckupOptions& options) const { return text::checkup(options, console); }
   int operator()(const text::TraceOptions& options) const { return text::trace(options, console); }
   int operator()(const text::LedgerVerifyOptions& options) const { return text::ledger_verify(options, console); }

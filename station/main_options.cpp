@@ -5,6 +5,7 @@
 
 #include "station/base/numbers.h"
 #include "station/base/strict_yaml.h"
+#include "station/sequence/station_file.h"
 #include "station/text/overview.h"
 
 // The only file that knows the library which takes command lines apart.
@@ -53,7 +54,7 @@ CLI::Option* add_whole(CLI::App& app, const std::string& name, Integer& into, co
             const auto number = parse_integer(text);
             if (!number || *number < 1 || *number > 1'000'000'000)
               throw Refused(value_problem("usage_not_whole", app, name, text, ""));
-            into = static_cast<int>(*number);
+            into = static_cast<Integer>(*number);
           },
           help)
       ->type_name("N");
@@ -89,6 +90,7 @@ class Reader {
   template <class Options>
   void answers(CLI::App& app, Options& options);
 
+  void add_bench();
   void add_test();
   void add_checkup();
   void add_trace();
@@ -106,6 +108,7 @@ class Reader {
   bool version_ = false;
   CommandLine line_;
 
+  emulated::RunBenchOptions bench_;
   text::TestOptions test_;
   text::CheckupOptions checkup_;
   text::TraceOptions trace_;
@@ -127,6 +130,7 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   app_.add_option("--config", choice_.config, "folder of the configuration")->type_name("DIR");
   app_.add_option("--station", choice_.station, "which station of the configuration")->type_name("NAME");
   app_.footer("Ask a command for its options and an example: probewright test --help");
+  add_bench();
   add_test();
   add_checkup();
   add_trace();
@@ -159,20 +163,47 @@ void Reader::answers(CLI::App& app, Options& options) {
   });
 }
 
+void Reader::add_bench() {
+  CLI::App& app = command(app_, "bench", "emulate the devices of a station on pseudo-terminals until it is interrupted",
+                          "probewright bench --nests 2 --truth truth.json");
+  add_whole(app, "--nests", bench_.bench.nests, "how many nests, 1 unless told");
+  add_number(app, "--speed", bench_.bench.speed,
+             "how fast its time goes, 1 unless told; the station's must be the same");
+  add_whole(app, "--seed", bench_.bench.seed, "what its probes, errors and noise are drawn from, 1 unless told");
+  app.add_flag("--perfect", bench_.bench.perfect, "its certificates are exactly true");
+  add_number(app, "--ambient-C", bench_.bench.ambient_degC, "temperature of the room, 25 unless told");
+  add_number(app, "--mains-Hz", bench_.bench.mains_Hz, "mains frequency, 50 unless told");
+  app.add_option("--ports", bench_.folder, "folder for the ports nest1-phantom, nest1-adapter ...")->type_name("DIR");
+  app.add_option("--attach", bench_.attach, "use terminals that stand in this folder instead of making some")
+      ->type_name("DIR");
+  app.add_option("--control", bench_.control, "socket that takes the place of hands at the bench")->type_name("SOCKET");
+  app.add_option("--truth", bench_.truth_file, "write what the probes really are to this file")->type_name("FILE");
+  app.add_option("--seat", bench_.seats, "a probe that sits there from the start; may stand several times")
+      ->type_name("NEST:SERIAL")
+      ->expected(1)
+      ->take_all();
+  app.final_callback([this] {
+    if (bench_.folder.empty()) bench_.folder = sequence::runtime_port_folder();
+    line_.request = bench_;
+  });
+}
+
 void Reader::add_test() {
-  CLI::App& app = command(app_, "test", "test one probe in one nest",
-                          "probewright bench --nests 1 &\n  probewright test AQ20-048-00001 --hands");
+  CLI::App& app =
+      command(app_, "test", "test one probe in one nest",
+              "probewright bench                    (in another terminal)\n  probewright test AQ20-048-00001");
   app.add_option("serial", test_.serial, "serial number of the probe")->required()->type_name("SERIAL");
   add_whole(app, "--nest", test_.nest, "nest that the probe goes into, 1 unless told");
   add_word(
       app, "--purpose", {"production", "engineering", "reference", "challenge", "gauge", "echo", "training", "return"},
       [this](const std::string& word) { test_.purpose = word; }, "why the run is made, engineering unless told");
+  app.add_option("--operator", test_.operator_name, "who tests; kept with the run")->type_name("NAME");
   app.add_option("--ledger", test_.ledger, "ledger instead of the station's")->type_name("FILE");
   app.add_option("--ports", test_.ports, "folder of the serial ports instead of the station's")->type_name("DIR");
   add_number(app, "--speed", test_.speed, "speed of the emulated bench instead of the station's");
-  app.add_flag("--hands", test_.hands, "let the emulated bench seat the probe and take it out");
-  app.add_option("--control", test_.control, "control socket of the emulated bench, for --hands")->type_name("SOCKET");
-  app.add_option("--record", test_.record, "keep all bytes of the serial lines in this folder")->type_name("DIR");
+  app.add_flag("--hands,!--no-hands", test_.hands,
+               "let the emulated bench seat the probe and take it out, or not; unless told, where it can be asked");
+  app.add_option("--control", test_.control, "control socket of the emulated bench")->type_name("SOCKET");
   add_json(app);
   answers(app, test_);
 }
@@ -280,8 +311,8 @@ Problem Reader::unexpected(const std::string& text) const {
   if (!is_option)
     for (const CLI::App* command : app.get_subcommands({})) known.push_back(command->get_name());
   const std::string nearest = yaml::nearest_word(text, known);
-  const std::string id =
-      std::string{is_option ? "usage_unknown_option" : "usage_unknown_word"} + (nearest.empty() ? "" : "_near");
+  const char* id = is_option ? (nearest.empty() ? "usage_unknown_option" : "usage_unknown_option_near")
+                             : (nearest.empty() ? "usage_unknown_word" : "usage_unknown_word_near");
   return {id, full_name(app), {{"text", text}, {"nearest", nearest}, {"command", full_name(app)}}};
 }
 

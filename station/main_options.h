@@ -2,6 +2,7 @@
 #include <string>
 #include <variant>
 
+#include "drivers/emulated/run_bench.h"
 #include "station/base/result.h"
 #include "station/text/checkup.h"
 #include "station/text/choices.h"
@@ -19,9 +20,10 @@ struct ShowText {
 };
 
 /// What was asked for: one type for each command.
-using Request = std::variant<ShowText, text::TestOptions, text::CheckupOptions, text::TraceOptions,
-                             text::LedgerVerifyOptions, text::LedgerSealOptions, text::LimitsCheckOptions,
-                             text::LimitsDiffOptions, text::MeasureSpectrumOptions, text::MeasurePulsesOptions>;
+using Request =
+    std::variant<ShowText, emulated::RunBenchOptions, text::TestOptions, text::CheckupOptions, text::TraceOptions,
+                 text::LedgerVerifyOptions, text::LedgerSealOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
+                 text::MeasureSpectrumOptions, text::MeasurePulsesOptions>;
 
 struct CommandLine {
   bool json = false;

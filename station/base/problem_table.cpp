@@ -455,6 +455,8 @@ constexpr std::array rows = std::to_array<ProblemRow>({
     {"usage_not_above_zero", refused_input, "{value} is not above 0", "give a value above 0"},
     {"usage_rate_needed", refused_input, "the rate of the modulation is not known",
      "give --rate-Hz, or --frequency free to fit it"},
+    {"hands_refused", refused_input, "the emulated bench did not do \"{command}\": {reply}",
+     "mend what it says, or seat the probe by hand with --no-hands"},
     {"usage_other", refused_input, "the command line cannot be read: {reason}", "see '{command} --help'"},
     {"text_unexpected", our_bug, "something that this program does not expect: {reason}",
      "report this as a mistake in the program, with what was asked of it"},

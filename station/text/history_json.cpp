@@ -26,7 +26,7 @@ Json json_of(const db::ReadingRow& reading) {
   json.set("expanded_uncertainty", reading.expanded_uncertainty);
   json.set("none_reason", reading.none_reason.empty() ? Json{} : Json{reading.none_reason});
   json.set("lower", reading.lower).set("upper", reading.upper);
-  json.set("accept_lower", reading.acceptance_lower).set("accept_upper", reading.acceptance_upper);
+  json.set("acceptance_lower", reading.acceptance_lower).set("acceptance_upper", reading.acceptance_upper);
   json.set("margin", reading.margin).set("conformance_probability", reading.conformance_probability);
   json.set("state", trace::slug(trace::standing_of(reading)));
   json.set("definition", reading.definition).set("cut_short", reading.cut_short);

@@ -19,7 +19,7 @@ std::string overview() {
              "Each command answers --help with an example. To begin without hardware:\n"
              "\n"
              "  probewright bench                                in one terminal\n"
-             "  probewright test AQ20-048-00001 --hands          in another\n"
+             "  probewright test AQ20-048-00001                  in another\n"
              "\n"} +
          cautions + "\n";
 }

@@ -50,7 +50,7 @@ Json json_of(const CheckRule& rule, const CheckLine& line) {
   json.set("check", rule.check).set("use", slug(rule.use)).set("unit", find_check(rule.check)->unit);
   json.set("must_be_yes", rule.must_be_yes);
   json.set("lower", rule.limits.lower).set("upper", rule.limits.upper);
-  json.set("accept_lower", rule.acceptance.lower).set("accept_upper", rule.acceptance.upper);
+  json.set("acceptance_lower", rule.acceptance.lower).set("acceptance_upper", rule.acceptance.upper);
   json.set("expanded_uncertainty", number ? Json{rule.expanded_uncertainty} : Json{});
   json.set("guard", json_of(rule.guard, line.guard_band));
   json.set("typical", rule.typical).set("at_degC", rule.at_degC).set("watch_beyond", rule.watch_beyond);

@@ -206,6 +206,8 @@ int test(const TestOptions& options, const BenchHands* hands, Console& console) 
   if (nests.empty())
     return console.refuse(
         Problem{"nest_not_there", configuration->station.document.file, {{"nest", std::to_string(options.nest)}}});
+  // A real probe is put in by a person, whatever bench may also be running on this machine.
+  if (!configuration->station.value.emulated) hands = nullptr;
   return TestRun{options, hands, std::move(*configuration), *purpose, console}.run();
 }
 

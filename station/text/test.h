@@ -19,8 +19,9 @@ struct TestOptions {
   std::string ports;            ///< folder for port names that are no full paths; empty: the station file's
   std::optional<double> speed;  ///< of the emulated bench; empty: the station file's
   std::string operator_name;    ///< who tests; kept with the run
-  bool hands = false;           ///< the probe is seated and taken out through the bench's control socket
-  std::string control;          ///< that socket; empty: the bench's usual one
+  /// The probe is seated and taken out through the bench's control socket; empty: where such a socket is.
+  std::optional<bool> hands;
+  std::string control;  ///< that socket; empty: the bench's usual one
 };
 
 /// The emulated bench's hands, for those who do not sit at it: made by main, since only it knows the bench.

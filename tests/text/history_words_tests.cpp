@@ -27,7 +27,7 @@ db::ReadingRow dark_current(double value) {
 trace::History one_run(std::vector<db::ReadingRow> readings, std::string verdict = "pass") {
   db::RunRecord run;
   run.run = {8};
-  run.opened_at = {1796105772123456};
+  run.opened_at = {1796103372123456};
   run.opened.serial = "AQ20-048-00001";
   run.opened.station = "Quay-1";
   run.opened.operator_name = "Imre Vasko";
@@ -39,7 +39,7 @@ trace::History one_run(std::vector<db::ReadingRow> readings, std::string verdict
   run.readings = std::move(readings);
   db::ClosingRecord closing;
   closing.entry = 9;
-  closing.closed_at = {1796105775623456};
+  closing.closed_at = {1796103375623456};
   closing.verdict = std::move(verdict);
   closing.bench = Body{Body::Object{{"lid_openings", 0}, {"words", "calm"}}};
   run.closing = closing;
@@ -111,7 +111,7 @@ TEST(HistoryJson, CarriesEverythingUnrounded) {
   const auto& reading = run["readings"][0];
   EXPECT_EQ(reading["value"].get<double>(), 0.1 + 0.2);
   EXPECT_TRUE(reading["lower"].is_null());
-  EXPECT_EQ(reading["accept_upper"], 4.8);
+  EXPECT_EQ(reading["acceptance_upper"], 4.8);
   EXPECT_EQ(reading["state"], "ok");
 }
 

@@ -22,7 +22,7 @@ class HandClock final : public Clock {
   SteadyTime steady_now() const override { return {std::chrono::microseconds{now_.microseconds}}; }
 
  private:
-  mutable UtcTime now_{1796105772000000};  // 2026-12-01T05:36:12Z
+  mutable UtcTime now_{1796103372000000};  // 2026-12-01T05:36:12Z
 };
 
 db::ReadingRow centroid(double value) {

@@ -1,0 +1,12 @@
+#pragma once
+#include <optional>
+
+#include "station/text/test.h"
+
+namespace probewright {
+
+/// The hands of an emulated bench, over its control socket. Wanted, they are there whether or not a bench answers (it
+/// is then said at the first seating); left open, only where the socket is; refused, never.
+std::optional<text::BenchHands> bench_hands(const text::TestOptions& options);
+
+}  // namespace probewright
