@@ -22,7 +22,10 @@ std::string_view why_unusable(const CheckRule& rule, const Reading& reading) {
   if (rule.must_be_yes) return reading.value == 0.0 || reading.value == 1.0 ? "" : "not_yes_or_no";
   // No measurement is without uncertainty; a zero is one that somebody forgot.
   if (!(reading.expanded_uncertainty > 0.0) || !std::isfinite(reading.expanded_uncertainty)) return "no_uncertainty";
-  if (reading.expanded_uncertainty > rule.expanded_uncertainty) return "uncertainty_above_declared";
+  // Outside a limit a reading is not ok however uncertain it is, and the limit is what a person must hear of: the
+  // uncertainty of a dark current of 500 nA is large because the current is.
+  const bool too_uncertain = reading.expanded_uncertainty > rule.expanded_uncertainty;
+  if (too_uncertain && rule.limits.contain(reading.value)) return "uncertainty_above_declared";
   return {};
 }
 

@@ -12,9 +12,9 @@ namespace probewright::limits {
 /// What became of one reading.
 enum class Outcome {
   ok,           ///< inside the acceptance limits, or on one of them
-  not_ok,       ///< outside a limit
+  not_ok,       ///< outside a limit, however uncertain
   too_close,    ///< inside the limit, too close for our uncertainty; not a proof of nonconformity, counts as not ok
-  unusable,     ///< not a number, or with an uncertainty that is missing or larger than declared; counts as not ok
+  unusable,     ///< not a number, or without an uncertainty, or inside the limits with one larger than declared
   no_reading,   ///< could not be had; counts as not ok
   watch_ok,     ///< watched, inside
   watch_alert,  ///< watched, outside: alerts, no verdict

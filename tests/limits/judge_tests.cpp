@@ -86,6 +86,13 @@ TEST(Judge, AnUncertaintyAboveTheDeclaredOneIsNeverOk) {
   EXPECT_FALSE(j.lets_pass());
 }
 
+TEST(Judge, OutsideALimitTheLimitIsToldHoweverUncertainTheReading) {
+  const Judgement j = judged("dark_current", 500.0, 7.0);
+  EXPECT_EQ(j.outcome, Outcome::not_ok);
+  EXPECT_EQ(j.words, "dark current: 500.00 nA, above the limit of 5.00 nA");
+  EXPECT_LT(*j.margin, 0.0);
+}
+
 TEST(Judge, AMissingUncertaintyIsNeverOk) {
   for (const double own : {0.0, -0.1, not_a_number, infinite}) {
     const Judgement j = judged("red_centroid", 660.0, own);
