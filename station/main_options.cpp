@@ -77,6 +77,13 @@ CLI::Option* add_word(CLI::App& app, const std::string& name, const std::vector<
       ->type_name("WORD");
 }
 
+/// A flag that decides something one way; its opposite is another flag.
+CLI::Option* add_choice(CLI::App& app, const std::string& name, std::optional<bool>& into, bool value,
+                        const std::string& help) {
+  return app.add_flag_function(
+      name, [&into, value](std::int64_t) { into = value; }, help);
+}
+
 /// Builds the commands and keeps what was read. One object reads one command line.
 class Reader {
  public:
@@ -125,6 +132,12 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   app_.fallthrough();
   app_.require_subcommand(0, 1);
   app_.get_formatter()->column_width(32);
+  app_.get_formatter()->label("REQUIRED", "(needed)");
+  app_.get_formatter()->label("Needs", "with");
+  app_.get_formatter()->label("Excludes", "not with");
+  app_.get_formatter()->label("SUBCOMMAND", "COMMAND");
+  app_.get_formatter()->label("Subcommands", "Commands");
+  app_.get_formatter()->label("OPTIONS", "OPTION...");
   app_.set_help_flag("--help,-h", "say how this is used");
   app_.add_flag("--version", version_, "print version, commit and compiler");
   app_.add_option("--config", choice_.config, "folder of the configuration")->type_name("DIR");
@@ -192,7 +205,7 @@ void Reader::add_test() {
   CLI::App& app =
       command(app_, "test", "test one probe in one nest",
               "probewright bench                    (in another terminal)\n  probewright test AQ20-048-00001");
-  app.add_option("serial", test_.serial, "serial number of the probe")->required()->type_name("SERIAL");
+  app.add_option("SERIAL", test_.serial, "serial number of the probe")->required()->type_name("");
   add_whole(app, "--nest", test_.nest, "nest that the probe goes into, 1 unless told");
   add_word(
       app, "--purpose", {"production", "engineering", "reference", "challenge", "gauge", "echo", "training", "return"},
@@ -201,8 +214,9 @@ void Reader::add_test() {
   app.add_option("--ledger", test_.ledger, "ledger instead of the station's")->type_name("FILE");
   app.add_option("--ports", test_.ports, "folder of the serial ports instead of the station's")->type_name("DIR");
   add_number(app, "--speed", test_.speed, "speed of the emulated bench instead of the station's");
-  app.add_flag("--hands,!--no-hands", test_.hands,
-               "let the emulated bench seat the probe and take it out, or not; unless told, where it can be asked");
+  CLI::Option* hands = add_choice(app, "--hands", test_.hands, true,
+                                  "let the emulated bench seat the probe; so unless told, where one runs");
+  add_choice(app, "--no-hands", test_.hands, false, "wait for a person to seat it")->excludes(hands);
   app.add_option("--control", test_.control, "control socket of the emulated bench")->type_name("SOCKET");
   add_json(app);
   answers(app, test_);
@@ -220,7 +234,7 @@ void Reader::add_checkup() {
 
 void Reader::add_trace() {
   CLI::App& app = command(app_, "trace", "print all that is known of one serial", "probewright trace AQ20-048-00001");
-  app.add_option("serial", trace_.serial, "serial number of the probe")->required()->type_name("SERIAL");
+  app.add_option("SERIAL", trace_.serial, "serial number of the probe")->required()->type_name("");
   app.add_option("--ledger", trace_.ledger, "ledger instead of the station's")->type_name("FILE");
   add_json(app);
   answers(app, trace_);
@@ -230,7 +244,7 @@ void Reader::add_ledger() {
   CLI::App& ledger = group("ledger", "check a ledger and print its seal");
   CLI::App& verify = command(ledger, "verify", "walk a whole ledger and name the first place that does not agree",
                              "probewright ledger verify ledger.db");
-  verify.add_option("file", verify_.file, "the ledger")->required()->type_name("FILE");
+  verify.add_option("FILE", verify_.file, "the ledger")->required()->type_name("");
   CLI::Option* seal = verify.add_option("--seal", verify_.seal, "a seal from an earlier report, 64 digits");
   seal->type_name("HASH");
   CLI::Option* entry = add_whole(verify, "--entry", verify_.entry, "the entry that the seal was printed for");
@@ -240,7 +254,7 @@ void Reader::add_ledger() {
   answers(verify, verify_);
   CLI::App& newest =
       command(ledger, "seal", "print number and hash of the newest entry", "probewright ledger seal ledger.db");
-  newest.add_option("file", seal_.file, "the ledger; the station's unless told")->type_name("FILE");
+  newest.add_option("FILE", seal_.file, "the ledger; the station's unless told")->type_name("");
   add_json(newest);
   answers(newest, seal_);
 }
@@ -249,14 +263,14 @@ void Reader::add_limits() {
   CLI::App& limits = group("limits", "check and compare limit sheets");
   CLI::App& check = command(limits, "check", "tell every fault of a limit sheet, or what it says",
                             "probewright limits check configs/sheets/aq-20.yaml");
-  check.add_option("file", check_.file, "the limit sheet")->required()->type_name("FILE");
+  check.add_option("FILE", check_.file, "the limit sheet")->required()->type_name("");
   check.add_option("--model", check_.model, "hold it against this model too")->type_name("FILE");
   add_json(check);
   answers(check, check_);
   CLI::App& diff = command(limits, "diff", "tell what changed between two sheets, and which way it moves",
                            "probewright limits diff aq-20-3.yaml aq-20-4.yaml");
-  diff.add_option("before", diff_.before, "the earlier sheet")->required()->type_name("FILE");
-  diff.add_option("after", diff_.after, "the later sheet")->required()->type_name("FILE");
+  diff.add_option("BEFORE", diff_.before, "the earlier sheet")->required()->type_name("");
+  diff.add_option("AFTER", diff_.after, "the later sheet")->required()->type_name("");
   add_json(diff);
   answers(diff, diff_);
 }
@@ -265,9 +279,9 @@ void Reader::add_measure() {
   CLI::App& measure = group("measure", "compute readings from a lab's own files");
   CLI::App& spectrum = command(measure, "spectrum", "wavelengths of one LED from a CSV file with wavelength_nm,signal",
                                "probewright measure spectrum red.csv --band red --slit-nm 2.5");
-  spectrum.add_option("file", spectrum_.file, "CSV file; columns dark and response are used if there")
+  spectrum.add_option("FILE", spectrum_.file, "CSV file; columns dark and response are used if there")
       ->required()
-      ->type_name("FILE");
+      ->type_name("");
   add_word(
       spectrum, "--band", {"red", "infrared"}, [this](const std::string& word) { spectrum_.band = word; },
       "which LED; found from the light unless told");
@@ -281,9 +295,9 @@ void Reader::add_measure() {
   answers(spectrum, spectrum_);
   CLI::App& pulses = command(measure, "pulses", "AC, DC, modulation and ratio of a pulse train from a CSV file",
                              "probewright measure pulses slots.csv --rate-Hz 5 --cycle-s 0.001756");
-  pulses.add_option("file", pulses_.file, "CSV file: t_s,red,dark_a,infrared,dark_b or t_s,red,infrared")
+  pulses.add_option("FILE", pulses_.file, "CSV file: t_s,red,dark_a,infrared,dark_b or t_s,red,infrared")
       ->required()
-      ->type_name("FILE");
+      ->type_name("");
   add_number(pulses, "--rate-Hz", pulses_.rate_Hz, "rate of the modulation");
   add_number(pulses, "--cycle-s", pulses_.cycle_s, "length of one cycle of four slots; needed with dark slots");
   add_word(
