@@ -86,13 +86,15 @@ class Line {
 
 class VirtualLine final : public Line {
  public:
+  explicit VirtualLine(double speed = 1.0) : clock_(epoch, speed) {}
   wire::VirtualClock& clock() override { return clock_; }
   bool run_until_done(const Started& started) override {
     return clock_.run_until(io, [&] { return started.done; }) == wire::VirtualClock::Ended::reached;
   }
 
  private:
-  wire::VirtualClock clock_{UtcTime{1'796'103'372'000'000}};  // 2026-12-01T05:36:12Z
+  static constexpr UtcTime epoch{1'796'103'372'000'000};  // 2026-12-01T05:36:12Z
+  wire::VirtualClock clock_;
 };
 
 class RealLine final : public Line {
