@@ -430,8 +430,6 @@ constexpr std::array rows = std::to_array<ProblemRow>({
      "write 'speed: 1', or 'emulated: yes' with the bench's own speed"},
     {"station_baud", refused_input, "{baud} is no usual rate of a serial line",
      "use the rate of the devices, 921600 as a rule"},
-    {"station_zone", refused_input, "no time zone is called '{zone}'",
-     "use a name of the tz database, e.g. Europe/Amsterdam"},
     {"station_name", refused_input, "a station's name has 1 to 40 letters, digits, '-', '_' or '.'",
      "choose such a name"},
     // --- trace

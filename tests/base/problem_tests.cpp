@@ -56,26 +56,31 @@ bool is_slug(std::string_view word) {
   return !word.empty() && word.find_first_not_of("abcdefghijklmnopqrstuvwxyz0123456789_") == std::string_view::npos;
 }
 
-/// All words in quotation marks that look like an id.
-std::vector<std::string> quoted_slugs(std::string_view statement) {
+/// The words in quotation marks that look like an id and stand in no braces: those in braces are arguments.
+std::vector<std::string> bare_slugs(std::string_view statement) {
   std::vector<std::string> slugs;
-  for (auto open = statement.find('"'); open != std::string_view::npos; open = statement.find('"', open)) {
-    const auto close = statement.find('"', open + 1);
-    if (close == std::string_view::npos) break;
-    const std::string_view word = statement.substr(open + 1, close - open - 1);
-    if (is_slug(word)) slugs.emplace_back(word);
-    open = close + 1;
+  int depth = 0;
+  for (std::size_t at = 0; at < statement.size(); ++at) {
+    if (statement[at] == '{') ++depth;
+    if (statement[at] == '}') --depth;
+    if (statement[at] != '"') continue;
+    const auto close = std::min(statement.find('"', at + 1), statement.size());
+    const std::string_view word = statement.substr(at + 1, close - at - 1);
+    if (depth == 0 && is_slug(word)) slugs.emplace_back(word);
+    at = close;
   }
   return slugs;
 }
 
-/// The quoted words of every statement that makes a problem or tells a fault. One of them must be an id of the table;
-/// the others name arguments.
+/// Those words of every statement that makes a problem or tells a fault, where it names its id: one of them must be in
+/// the table.
 std::vector<std::vector<std::string>> tellings(std::string_view text) {
   std::vector<std::vector<std::string>> all;
-  for (const std::string_view maker : {"Problem{\"", "faults.add(", "faults_.add("})
+  for (const std::string_view maker : {"Problem{", "faults.add(", "faults_.add("})
     for (auto at = text.find(maker); at != std::string_view::npos; at = text.find(maker, at + 1)) {
-      auto slugs = quoted_slugs(text.substr(at, text.find(';', at) - at));
+      const auto start = at + maker.size();
+      const auto end = text.find_first_of(maker == "Problem{" ? ";}" : ";", start);
+      auto slugs = bare_slugs(text.substr(start, end - start));
       if (!slugs.empty()) all.push_back(std::move(slugs));
     }
   return all;
@@ -92,9 +97,10 @@ TEST(ProblemTable, KnowsEveryIdThatTheSourcesTell) {
 // The search works on text that is known.
 TEST(ProblemTable, TheSearchFindsWhatIsTold) {
   const auto all = tellings(
-      "if (x) return Problem{\"one_id\", where, {{\"key\", \"A b\"}}}; faults.add(of(\"drive\"), \"two_id\");");
+      "if (x) return Problem{\"one_id\", where, {{\"key\", \"A b\"}}}; faults.add(of(\"drive\"), \"two_id\"); "
+      "faults.add(place, id, {{\"key\", \"a\"}});");
   ASSERT_EQ(all.size(), 2u);
-  EXPECT_EQ(all[0], (std::vector<std::string>{"one_id", "key"}));
+  EXPECT_EQ(all[0], (std::vector<std::string>{"one_id"}));
   EXPECT_EQ(all[1], (std::vector<std::string>{"drive", "two_id"}));
 }
 

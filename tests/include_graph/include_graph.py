@@ -60,7 +60,9 @@ def allowed_folders(name):
         return None if layer is None else LAYERS[layer] | {layer}
     layer = tested_layer(name)
     own = {"/".join(name.split("/")[:2])}
-    return own | TEST_EXTRAS | {"station/base"} | (LAYERS[layer] | {layer} if layer else set())
+    layers = LAYERS[layer] | {layer} if layer else set()
+    helpers = {"tests/" + below.rpartition("/")[2] for below in layers}
+    return own | helpers | TEST_EXTRAS | {"station/base"} | layers
 
 
 def folder_of_include(name):
@@ -79,6 +81,9 @@ def arrow_faults(root, sources):
             yield f"{source.name}:1: the folder is none of rules.py"
             continue
         for line, name in source.ours:
+            beside = source.path.parent / name
+            if source.name.startswith("tests/") and beside.is_file():
+                continue  # a helper of one test folder
             if name not in sources and not (root / name).is_file():
                 yield f"{source.name}:{line}: there is no {name}; includes are written from the top folder"
             elif folder_of_include(name) not in allowed:
@@ -96,7 +101,7 @@ def library_faults(sources):
                 continue
             if library.folders is not None and place not in library.folders and not (is_test and place is None):
                 yield f"{source.name}:{line}: <{name}> is not for this folder: {library.why}"
-            if source.is_header and not library.headers:
+            if source.is_header and not library.headers and (library.in_tests_too or not is_test):
                 yield f"{source.name}:{line}: <{name}> is not for headers: {library.why}"
             if not is_test:
                 users[library].add(source.name)

@@ -57,6 +57,11 @@ class IncludeGraph(unittest.TestCase):
     def test_a_test_knows_only_what_its_layer_knows(self):
         self.expect({"tests/measure/x.cpp": '#include "db/store.h"\n'}, "tests/measure/x.cpp:1: db/store.h lies on no arrow")
 
+    def test_helpers_of_tests(self):
+        self.expect({"tests/phantom/trial.h": "#pragma once\n", "tests/phantom/x.cpp": '#include "trial.h"\n'})
+        self.expect({"tests/wire/trial.h": "#pragma once\n", "tests/phantom/x.cpp": '#include "tests/wire/trial.h"\n'})
+        self.expect({"tests/db/trial.h": "#pragma once\n", "tests/limits/x.cpp": '#include "tests/db/trial.h"\n'}, "lies on no arrow")
+
     def test_an_include_that_is_not_written_from_the_top(self):
         self.expect({"db/x.cpp": '#include "store.h"\n'}, "db/x.cpp:1: there is no store.h")
 
@@ -65,6 +70,7 @@ class IncludeGraph(unittest.TestCase):
 
     def test_asio_whole_in_a_header(self):
         self.expect({"drivers/wire/x.h": "#pragma once\n#include <boost/asio.hpp>\n"}, "drivers/wire/x.h:2: <boost/asio.hpp> is not for headers")
+        self.expect({"tests/wire/x.h": "#pragma once\n#include <boost/asio.hpp>\n"}, "tests/wire/x.h:2: <boost/asio.hpp> is not for headers")
 
     def test_asio_whole_in_too_many_files(self):
         many = {f"drivers/wire/x{i}.cpp": "#include <boost/asio.hpp>\n" for i in range(8)}
