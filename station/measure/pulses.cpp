@@ -239,7 +239,7 @@ Result<PulseFit> fit_pulses(const Train& train, const PulseRules& rules) {
 Result<Ratio> ratio_of(const PerBand<PulseFit>& fits) {
   for (const PulseFit* fit : {&fits.red, &fits.infrared}) {
     if (!(fit->dc > 10.0 * fit->dc_u)) return problem("pulses_too_dark");
-    if (!(fit->ac > 3.0 * fit->ac_u)) return problem("pulses_no_modulation");
+    if (!(fit->ac > 3.0 * fit->ac_u) || !(fit->ac > 1e-9 * fit->dc)) return problem("pulses_no_modulation");
   }
   const double red = fits.red.modulation_u / fits.red.modulation;
   const double infrared = fits.infrared.modulation_u / fits.infrared.modulation;

@@ -146,18 +146,45 @@ Peak parabola_peak(const Part& part, std::size_t top) {
   return {nm, noise / (std::abs(bend) * (x2 - x0)), power, noise};
 }
 
+/// Value at `x` of a quartic over the same samples as the peak's cubic, and its standard uncertainty for samples of
+/// this variance. The cubic is right in place but too low by 0.3 %: it cannot follow how the top of a line rounds off.
+struct Height {
+  double value = 0.0, u = 0.0;
+};
+std::optional<Height> quartic_height(std::span<const double> positions, std::span<const double> values, double variance,
+                                     double x) {
+  constexpr std::size_t p = 5;
+  if (positions.size() < p) return std::nullopt;
+  std::vector<double> design;
+  for (const double at : positions)
+    for (std::size_t k = 0; k < p; ++k) design.push_back(std::pow(at, static_cast<double>(k)));
+  const auto fit = fit_linear(design, p, values);
+  if (!fit) return std::nullopt;
+  Height out;
+  double spread = 0.0;
+  for (std::size_t i = 0; i < p; ++i) {
+    out.value += fit->coefficients[i] * std::pow(x, static_cast<double>(i));
+    for (std::size_t j = 0; j < p; ++j) spread += std::pow(x, static_cast<double>(i + j)) * fit->covariance_of(i, j);
+  }
+  // Five samples fit without residuals; the height is then as uncertain as one of them.
+  const double scale = fit->noise_sd > 0.0 ? variance / (fit->noise_sd * fit->noise_sd) : 0.0;
+  out.u = fit->noise_sd > 0.0 ? std::sqrt(std::max(0.0, scale * spread)) : std::sqrt(variance);
+  return out;
+}
+
 /// Cubic over the contiguous samples whose smooth is at least 80 % of the smooth's maximum.
 /// A parabola there is 0.2 nm off for the skewed line of an LED.
 Peak cubic_peak(const Part& part, std::span<const double> smooth, std::size_t top) {
   const double level = 0.8 * smooth[top - part.first];
   const std::size_t first = end_of_run(part, smooth, top, level, -1).sample;
   const std::size_t last = end_of_run(part, smooth, top, level, 1).sample;
-  if (last - first + 1 < 6) return parabola_peak(part, top);
+  if (last - first + 1 < 5) return parabola_peak(part, top);
   const double middle = 0.5 * (part.nm(first) + part.nm(last)), half = 0.5 * (part.nm(last) - part.nm(first));
-  std::vector<double> design, values;
+  std::vector<double> design, positions, values;
   double variance = 0.0;
   for (std::size_t i = first; i <= last; ++i) {
     const double x = (part.nm(i) - middle) / half;
+    positions.push_back(x);
     for (const double term : {1.0, x, x * x, x * x * x}) design.push_back(term);
     values.push_back(part.power(i));
     variance += part.variance(i) / static_cast<double>(last - first + 1);
@@ -174,15 +201,13 @@ Peak cubic_peak(const Part& part, std::span<const double> smooth, std::size_t to
   // The fit's covariance belongs to its residuals, which hold misfit as well as noise: scaled to the noise of the
   // samples unless the residuals are larger.
   const double scale = fit->noise_sd > 0.0 ? std::max(1.0, variance / (fit->noise_sd * fit->noise_sd)) : 0.0;
-  const double slope_terms[4] = {0.0, 1.0, 2.0 * x, 3.0 * x * x}, value_terms[4] = {1.0, x, x * x, x * x * x};
-  double slope_variance = 0.0, value_variance = 0.0;
+  const double slope_terms[4] = {0.0, 1.0, 2.0 * x, 3.0 * x * x};
+  double slope_variance = 0.0;
   for (std::size_t i = 0; i < 4; ++i)
-    for (std::size_t j = 0; j < 4; ++j) {
-      slope_variance += slope_terms[i] * slope_terms[j] * fit->covariance_of(i, j);
-      value_variance += value_terms[i] * value_terms[j] * fit->covariance_of(i, j);
-    }
-  return {middle + half * x, half * std::sqrt(scale * slope_variance) / bend, c[0] + x * (c[1] + x * (c[2] + x * c[3])),
-          std::sqrt(scale * value_variance)};
+    for (std::size_t j = 0; j < 4; ++j) slope_variance += slope_terms[i] * slope_terms[j] * fit->covariance_of(i, j);
+  const Height height = quartic_height(positions, values, variance, x)
+                            .value_or(Height{c[0] + x * (c[1] + x * (c[2] + x * c[3])), std::sqrt(variance)});
+  return {middle + half * x, half * std::sqrt(scale * slope_variance) / bend, height.value, height.u};
 }
 
 struct HalfPower {
@@ -190,59 +215,88 @@ struct HalfPower {
   double nm_per_level = 0.0;  ///< slope of the flank, for the error of the peak's level
 };
 
-/// Where a flank crosses half of the peak: wavelength fitted against level from 38 to 62 %; between two samples where
-/// the axis is too coarse for that. Nothing when the axis ends before the flank does.
-std::optional<HalfPower> half_power(const Part& part, std::span<const double> smooth, std::size_t top,
-                                    double peak_power, int direction) {
-  const End low = end_of_run(part, smooth, top, 0.30 * peak_power, direction);
-  const std::size_t outside = low.ended_by_axis ? low.sample : (direction < 0 ? low.sample - 1 : low.sample + 1);
-  const std::size_t from = std::min(top, outside), to = std::max(top, outside);
-  std::vector<double> levels, wavelengths;
-  double variance = 0.0;
+/// Samples of one flank with levels within `reach` of half the peak.
+struct Flank {
+  std::vector<double> levels, wavelengths_nm;  ///< levels less 0.5
+  double variance = 0.0;                       ///< mean, of the levels
+
+  bool crosses() const {
+    if (levels.size() < 3) return false;
+    const auto [least, most] = std::minmax_element(levels.begin(), levels.end());
+    return *least <= 0.0 && *most >= 0.0;
+  }
+};
+
+Flank flank_of(const Part& part, std::size_t from, std::size_t to, double peak_power, double reach) {
+  Flank flank;
   for (std::size_t i = from; i <= to; ++i) {
-    const double level = part.power(i) / peak_power;
-    if (level < 0.38 || level > 0.62) continue;
-    levels.push_back(level - 0.5), wavelengths.push_back(part.nm(i));
-    variance += part.variance(i);
+    const double level = part.power(i) / peak_power - 0.5;
+    if (std::abs(level) > reach) continue;
+    flank.levels.push_back(level), flank.wavelengths_nm.push_back(part.nm(i));
+    flank.variance += part.variance(i) / (peak_power * peak_power);
   }
-  const bool above = std::any_of(levels.begin(), levels.end(), [](double l) { return l >= 0.0; });
-  const bool below = std::any_of(levels.begin(), levels.end(), [](double l) { return l <= 0.0; });
-  const std::size_t n = levels.size();
-  if (n >= 3 && above && below) {
-    const std::size_t p = n >= 5 ? 3 : 2;
-    std::vector<double> design;
-    for (const double l : levels) {
-      design.push_back(1.0), design.push_back(l);
-      if (p == 3) design.push_back(l * l);
-    }
-    const double nm_middle = wavelengths[n / 2];
-    for (double& nm : wavelengths) nm -= nm_middle;
-    if (const auto fit = fit_linear(design, p, wavelengths)) {
-      const double level_sd = std::sqrt(variance / static_cast<double>(n)) / peak_power;
-      const double slope = fit->coefficients[1];
-      // Spread of the fit for noise of the level, which the slope turns into noise of the wavelength.
-      const double gain =
-          fit->noise_sd > 0.0 ? std::sqrt(fit->variance(0)) / fit->noise_sd : 1.0 / std::sqrt(double(n));
-      return HalfPower{nm_middle + fit->coefficients[0], gain * std::abs(slope) * level_sd, slope};
-    }
+  if (!flank.levels.empty()) flank.variance /= static_cast<double>(flank.levels.size());
+  return flank;
+}
+
+/// Wavelength as a quadratic of the level, at half the peak. A straight line would be 0.02 nm off on each side.
+std::optional<HalfPower> fit_flank(const Flank& flank) {
+  const std::size_t n = flank.levels.size();
+  const double middle_nm = flank.wavelengths_nm[n / 2];
+  std::vector<double> design, wavelengths;
+  for (std::size_t i = 0; i < n; ++i) {
+    for (const double term : {1.0, flank.levels[i], flank.levels[i] * flank.levels[i]}) design.push_back(term);
+    wavelengths.push_back(flank.wavelengths_nm[i] - middle_nm);
   }
+  const auto fit = fit_linear(design, 3, wavelengths);
+  if (!fit) return std::nullopt;
+  // The noise is one of levels, which the slope turns into one of wavelengths; of the fit only its gain is used.
+  const double gain = fit->noise_sd > 0.0 ? std::sqrt(fit->variance(0)) / fit->noise_sd : 1.0;
+  const double slope = fit->coefficients[1];
+  return HalfPower{middle_nm + fit->coefficients[0], gain * std::abs(slope) * std::sqrt(flank.variance), slope};
+}
+
+/// The straight line between the two samples around the crossing, for axes that hold no more.
+std::optional<HalfPower> between_samples(const Part& part, std::size_t top, std::size_t outside, double peak_power) {
   for (std::size_t i = top; i != outside;) {
-    const std::size_t next = direction < 0 ? i - 1 : i + 1;
+    const std::size_t next = outside < top ? i - 1 : i + 1;
     const double here = part.power(i) / peak_power, there = part.power(next) / peak_power;
     if (here >= 0.5 && there < 0.5) {
       const double slope = (part.nm(next) - part.nm(i)) / (there - here);
-      return HalfPower{part.nm(i) + slope * (0.5 - here), std::abs(slope) * std::sqrt(part.variance(i)) / peak_power,
-                       slope};
+      const double noise = std::sqrt(part.variance(i)) / peak_power;
+      return HalfPower{part.nm(i) + slope * (0.5 - here), std::abs(slope) * noise, slope};
     }
     i = next;
   }
   return std::nullopt;
 }
 
+/// Where a flank crosses half of the peak: wavelength fitted against level from 38 to 62 %, wider only where the axis
+/// is too coarse to put three samples there. Nothing when the axis ends before the flank does.
+std::optional<HalfPower> half_power(const Part& part, std::span<const double> smooth, std::size_t top,
+                                    double peak_power, int direction) {
+  const End low = end_of_run(part, smooth, top, 0.2 * peak_power, direction);
+  const std::size_t outside = low.ended_by_axis ? low.sample : (direction < 0 ? low.sample - 1 : low.sample + 1);
+  for (const double reach : {0.12, 0.18, 0.25, 0.32}) {
+    const Flank flank = flank_of(part, std::min(top, outside), std::max(top, outside), peak_power, reach);
+    if (flank.crosses()) return fit_flank(flank);
+  }
+  return between_samples(part, top, outside, peak_power);
+}
+
 double mean_noise(const Part& part) {
   double sum = 0.0;
   for (std::size_t i = part.first; i <= part.last; ++i) sum += part.variance(i);
   return std::sqrt(sum / static_cast<double>(part.size()));
+}
+
+/// What noise of the smooth does to the centroid by moving one end of the run: the end moves by noise / slope, and
+/// carries the light of the threshold's level with it. Slope at that level as that of a Gaussian of the line's width.
+double end_noise(const Part& part, const End& end, const Line& line, const Integral& integral, double threshold) {
+  if (end.ended_by_axis) return 0.0;
+  const double sigma_nm = line.width_nm / 2.3548200450309493, noise = std::sqrt(part.variance(end.sample) / 3.0);
+  const double light_per_noise = sigma_nm / std::sqrt(-2.0 * std::log(threshold));
+  return std::abs(end.crossing_nm - integral.mean_nm) * light_per_noise * noise / integral.area;
 }
 
 double response_at(const std::vector<ResponsePoint>& table, double nm) {
@@ -271,7 +325,7 @@ Result<Line> find_line(const Spectrum& spectrum, const LineRules& rules) {
   const auto highest = std::max_element(smooth.begin(), smooth.end());
   const std::size_t top = part->first + static_cast<std::size_t>(highest - smooth.begin());
   if (!(*highest > 5.0 * mean_noise(*part)) || !(*highest > 0.0)) return problem("spectrum_no_peak");
-  if (top == part->first || top == part->last) return problem("spectrum_no_peak");
+  if (top == part->first || top == part->last) return problem("spectrum_cut_off");
 
   const Peak peak = cubic_peak(*part, smooth, top);
   const auto left = half_power(*part, smooth, top, peak.power, -1);
@@ -303,7 +357,10 @@ Result<Line> find_line(const Spectrum& spectrum, const LineRules& rules) {
   const Integral integral = integrate(*part, integral_weights(*part, first, last));
   if (!(integral.area > 0.0)) return problem("spectrum_no_peak");
   line.centroid_nm = integral.mean_nm;
-  line.centroid_u = std::sqrt(integral.mean_variance);
+  const double end_u = all ? 0.0
+                           : std::hypot(end_noise(*part, first, line, integral, rules.threshold),
+                                        end_noise(*part, last, line, integral, rules.threshold));
+  line.centroid_u = std::sqrt(integral.mean_variance + end_u * end_u);
   return line;
 }
 

@@ -47,7 +47,7 @@ struct Line {
 /// The run of samples is decided on a smooth over five samples (fewer where five span more than 2.5 nm), so that noise
 /// does not end it; its values are the raw ones, the threshold is not subtracted, and the run ends where the smooth
 /// crosses the threshold, between samples. Half-power points: a local fit of wavelength against level from 38 to 62 %.
-/// Errors: spectrum_no_peak (nothing above the noise, or no maximum inside the window), spectrum_cut_off (the axis or the window ends
+/// Errors: spectrum_no_peak (nothing above the noise), spectrum_cut_off (the axis or the window ends
 /// inside the line), spectrum_axis (lengths differ, axis not rising, under 8 samples in the window).
 /// Source: definitions of peak, centroid and half-intensity centre as in CIE 127:2007 (from memory); trapezoid rule.
 Result<Line> find_line(const Spectrum& spectrum, const LineRules& rules);

@@ -134,7 +134,8 @@ TEST(Model, ABrokenOrEmptyTextIsRefusedNotFatal) {
   for (const char* text : {"", "[]", "model", "model: {", "\xff\xfe", "a: b\na: c"})
     EXPECT_FALSE(read_model(text, "m.yaml")) << text;
   const std::string good = aq_20_text();
-  for (std::size_t n = 0; n < good.size(); n += 97) EXPECT_FALSE(read_model(good.substr(0, n), "m.yaml")) << n;
+  for (std::size_t n = 0; n < good.find("\nroutine:"); n += 97)
+    EXPECT_FALSE(read_model(good.substr(0, n), "m.yaml")) << n;
 }
 
 TEST(Certificate, TheDemonstrationsCertificatesAreRead) {

@@ -150,7 +150,7 @@ TEST(LabSpectrum, WhatCannotBeUsedIsRefused) {
   EXPECT_EQ(problem_of(measure_spectrum(zero, {})), "spectrum_response");
   EXPECT_EQ(
       problem_of(measure_spectrum(read_csv("wavelength_nm,signal\n600,1\n", lab_spectrum_columns(), "x").value(), {})),
-      "spectrum_no_peak");
+      "spectrum_axis");
 }
 
 // Whole counts on a fine grid give equal samples at the top of a good line: that is no clipping.

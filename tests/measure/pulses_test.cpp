@@ -157,15 +157,18 @@ TEST(DarkSubtraction, TwoNeighboursLeaveLittleFlicker) {
     signal.dc_nA = {0.0, 0.0}, signal.cycle_s = c.cycle_s, signal.cycles = 3200;
     signal.ambient = [](double t) { return 1000.0 * std::sin(2 * pi * 100.0 * t); };
     const PulseCapture capture = pulse_capture(signal, nA_per_code);
-    double one = 0.0, two = 0.0;
-    for (const double level : trains_of(capture).red.level) two = std::max(two, std::abs(level));
-    for (std::size_t i = 0; i < capture.red.size(); ++i)
-      one = std::max(one, std::abs(nA_per_code * (capture.red[i] - capture.dark_a[i])));
+    double one = 0.0, two = 0.0;  // sums of squares: a sine's amplitude is sqrt(2) times its root mean square
+    const auto red = trains_of(capture).red.level;
+    for (const double level : red) two += 2.0 * level * level / static_cast<double>(red.size());
+    for (std::size_t i = 0; i < capture.red.size(); ++i) {
+      const double left = nA_per_code * (capture.red[i] - capture.dark_a[i]);
+      one += 2.0 * left * left / static_cast<double>(capture.red.size());
+    }
     const double x = 2 * pi * 100.0 * c.cycle_s / 4;
     expect_within(2 * std::sin(x / 2), c.one, 5e-4);
     expect_within(1 - std::cos(x), c.two, 5e-4);
-    expect_relative(one / 1000.0, c.one, 0.01);
-    expect_relative(two / 1000.0, c.two, 0.01);
+    expect_relative(std::sqrt(one) / 1000.0, c.one, 0.005);
+    expect_relative(std::sqrt(two) / 1000.0, c.two, 0.005);
   }
 }
 

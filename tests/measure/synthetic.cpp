@@ -48,8 +48,9 @@ std::string text_of(const std::string& path) {
 Model aq_20() { return read_model(text_of(source_path("configs/models/aq-20.yaml")), "aq-20.yaml").value(); }
 
 Certificates certificates() {
-  return {read_phantom_certificate(text_of(source_path("configs/certificates/phantoms/PH-01.yaml")), "PH-01.yaml").value(),
-          read_adapter_certificate(text_of(source_path("configs/certificates/adapters/AD-01.yaml")), "AD-01.yaml").value()};
+  return {
+      read_phantom_certificate(text_of(source_path("configs/certificates/phantoms/PH-01.yaml")), "PH-01.yaml").value(),
+      read_adapter_certificate(text_of(source_path("configs/certificates/adapters/AD-01.yaml")), "AD-01.yaml").value()};
 }
 
 SpectrumCapture spectrum_capture(const Shape& shape, Band band, double level, int frames, std::uint64_t seed) {
