@@ -10,7 +10,9 @@ namespace {
 
 constexpr int most_decimals = 12;
 
-std::string joined(std::string number, const std::string& unit) { return unit.empty() ? number : number + " " + unit; }
+std::string joined(const std::string& number, const std::string& unit) {
+  return unit.empty() ? number : number + " " + unit;
+}
 
 }  // namespace
 

@@ -9,7 +9,6 @@ namespace {
 
 using reader::Faults;
 using reader::Map;
-using reader::Value;
 
 std::string need_text(Map& map, const char* key, Faults& faults) {
   const auto value = map.need(key, faults);
