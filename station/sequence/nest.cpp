@@ -1,8 +1,10 @@
 #include "station/sequence/nest.h"
 
+#include <array>
 #include <boost/asio/bind_cancellation_slot.hpp>
 #include <boost/asio/co_spawn.hpp>
-#include <boost/asio/experimental/awaitable_operators.hpp>
+#include <boost/asio/deferred.hpp>
+#include <boost/asio/experimental/parallel_group.hpp>
 #include <boost/asio/this_coro.hpp>
 #include <boost/asio/use_awaitable.hpp>
 
@@ -79,8 +81,15 @@ Nest::Nest(const Configuration& configuration, const NestPlace& place, const Por
 }
 
 asio::awaitable<void> Nest::live() {
-  using namespace asio::experimental::awaitable_operators;
-  co_await (phantom_.keep_connected() && adapter_.keep_connected() && watch());
+  const auto executor = co_await asio::this_coro::executor;
+  const auto [order, phantom_ended, adapter_ended, watch_ended] =
+      co_await asio::experimental::make_parallel_group(
+          asio::co_spawn(executor, phantom_.keep_connected(), asio::deferred),
+          asio::co_spawn(executor, adapter_.keep_connected(), asio::deferred),
+          asio::co_spawn(executor, watch(), asio::deferred))
+          .async_wait(asio::experimental::wait_for_one(), asio::use_awaitable);
+  // None of them returns: the first that ended tells why the nest ends.
+  std::rethrow_exception(std::array{phantom_ended, adapter_ended, watch_ended}[order[0]]);
 }
 
 asio::awaitable<void> Nest::watch() {

@@ -84,10 +84,7 @@ asio::awaitable<void> RunBook::open(db::RunOpened opening) {
   });
 }
 
-void RunBook::add(measure::AnyCapture capture) {
-  if (auto taken = measure::add_capture(captures_, capture); !taken) throw ProblemError(taken.error());
-  unsaved_.push_back(std::move(capture));
-}
+void RunBook::add(measure::AnyCapture capture) { stage_.push_back(std::move(capture)); }
 
 JudgedReading RunBook::judged(const measure::Reading& reading) const {
   return {reading, limits::judge(documents_.sheet.value, reading.check, reading.value,
@@ -127,8 +124,10 @@ Stage stage_of(const std::vector<measure::AnyCapture>& captures, const std::vect
 }  // namespace
 
 void RunBook::stage_done() {
-  const Stage stage = stage_of(unsaved_, fresh_readings(false));
-  unsaved_.clear();
+  for (const measure::AnyCapture& capture : stage_)
+    if (auto taken = measure::add_capture(captures_, capture); !taken) throw ProblemError(taken.error());
+  const Stage stage = stage_of(stage_, fresh_readings(false));
+  stage_.clear();
   ledger_.submit([stage, run = run_, lost = stage_lost_](db::Change& change) {
     *lost = true;  // until it went well
     stage.write(change, run);
@@ -168,8 +167,7 @@ RunOutcome RunBook::outcome_of(const Ending& ending) const {
 }
 
 asio::awaitable<RunOutcome> RunBook::close(Ending ending, Body bench) {
-  const Stage stage = stage_of(unsaved_, fresh_readings(true));
-  unsaved_.clear();
+  const Stage stage = stage_of({}, fresh_readings(true));  // what a stage that never ended took is not to be trusted
   RunOutcome outcome = outcome_of(ending);
   db::RunClosed closing;
   closing.run = run_;

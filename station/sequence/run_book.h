@@ -43,7 +43,8 @@ class RunBook {
   /// Puts the opening entry and the documents that the ledger lacks on disk. Throws ProblemError; then no device
   /// command may follow.
   asio::awaitable<void> open(db::RunOpened opening);
-  /// Notes a capture; it goes to the ledger with the next stage.
+  /// Notes a capture of the stage that goes on. It counts from stage_done() on: a probe that is taken out in mid-stage
+  /// leaves nothing of it.
   void add(measure::AnyCapture capture);
   /// The check after whose hard fault the rest was left out.
   void block(std::string check) { captures_.blocked_by = std::move(check); }
@@ -67,7 +68,7 @@ class RunBook {
   RunDocuments documents_;
   measure::Certificates certificates_;
   measure::Captures captures_;
-  std::vector<measure::AnyCapture> unsaved_;
+  std::vector<measure::AnyCapture> stage_;  ///< of the stage that goes on
   std::vector<JudgedReading> readings_;
   db::RunOpened opening_;
   db::RunId run_;
