@@ -108,12 +108,13 @@ struct Model {
 ///   model_set_point_ratio   nominal ratio and depths do not agree
 ///   model_not_rising        set points or bins are not in rising order
 ///   model_bins_too_close    two coded resistances differ by less than 15 %
-///   model_unknown_check     a slug that the catalogue lacks
+///   model_unknown_check     a slug that the catalogue lacks (model_unknown_check_near: and which one is near)
 ///   model_check_not_made    a check that evaluate() cannot compute
 ///   model_check_twice, model_check_order
 ///   model_set_point_missing a ratio check without its set point
 ///   model_budget_missing    a check of the routine that carries an uncertainty has no budget
 ///   model_bad_pattern       the serial-number pattern is not a regular expression
+///   model_capture_short, model_id_kind, model_bins_missing, model_budget_empty, model_routine_empty, model_unknown_word
 ResultOrFaults<Model> read_model(std::string_view text, std::string_view file);
 
 }  // namespace probewright::measure
