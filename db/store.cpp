@@ -4,6 +4,7 @@
 
 #include "db/chain.h"
 #include "db/hex.h"
+#include "db/log_file.h"
 #include "db/projection.h"
 #include "db/queries/seal.h"
 #include "db/schema/schema.h"
@@ -51,7 +52,7 @@ Store::Store(const StoreOptions& options, const Clock& clock, std::optional<Leas
   if (!fresh) refuse_foreign_file();  // before any setting could touch the file
   if (fresh && !options.create)
     throw ProblemError({"ledger_not_a_ledger", options.path, {{"reason", "an empty file"}, {"code", "26"}}});
-  if (fresh) connection_.run("PRAGMA auto_vacuum=INCREMENTAL");  // must come before the first page
+  if (fresh) prepare_new_file();
   set_modes(options);
   if (fresh) begin_ledger(options);
   prepare();
@@ -70,6 +71,13 @@ bool Store::is_fresh() {
 
 void Store::refuse_foreign_file() { db::refuse_foreign_file(connection_); }
 
+void Store::prepare_new_file() {
+  connection_.run("PRAGMA auto_vacuum=INCREMENTAL");  // must come before the first page
+  // Until the log is in use the file is made with a rollback journal. Without EXTRA its removal is not synced: it could
+  // come back after a power cut and undo what was written since.
+  connection_.run("PRAGMA synchronous=EXTRA");
+}
+
 void Store::set_modes(const StoreOptions& options) {
   connection_.demand("journal_mode", "WAL", "wal");
   connection_.demand("synchronous", "FULL", "2");
@@ -78,7 +86,7 @@ void Store::set_modes(const StoreOptions& options) {
   connection_.demand("temp_store", "MEMORY", "2");
   connection_.run("PRAGMA cell_size_check=ON");
   connection_.ask("PRAGMA wal_autocheckpoint=" + std::to_string(options.checkpoint_pages));
-  // What an earlier process could not sync may lie in the log without being on the disk; nothing is built on top of it.
+  save_log_again(connection_);
   connection_.wait_for_locks(0);
   connection_.ask("PRAGMA wal_checkpoint(TRUNCATE)");
   connection_.wait_for_locks(options.wait_for_locks_ms);
@@ -140,7 +148,7 @@ std::vector<Result<void>> Store::commit_group(std::span<const Job> jobs) {
   std::vector<Result<void>> outcomes;
   try {
     Transaction transaction{connection_};
-    Change change{*this, newest_entry()};
+    Change change{*this, notice(newest_entry())};
     for (const Job& job : jobs) outcomes.push_back(attempt(change, job));
     transaction.commit();
     seal_ = change.seal();
@@ -175,8 +183,15 @@ Result<void> Store::attempt(Change& change, const Job& job) {
 }
 
 bool Store::others_wrote() {
+  // data_version also moves when another program only copies the log into the file, so the newest entry decides.
   const std::int64_t version = connection_.ask_number("PRAGMA data_version");
-  return std::exchange(data_version_, version) != version;
+  if (std::exchange(data_version_, version) != version) seal_ = notice(newest_entry());
+  return std::exchange(others_wrote_, false);
+}
+
+Seal Store::notice(const Seal& newest) {
+  others_wrote_ = others_wrote_ || newest != seal_;
+  return newest;
 }
 
 std::chrono::microseconds Store::clock_behind() {

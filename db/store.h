@@ -122,7 +122,7 @@ class Store {
   const std::optional<Problem>& trouble() const { return trouble_; }
   /// The newest entry that this store knows to be on the disk.
   const Seal& seal() const { return seal_; }
-  /// True once after another program added to the ledger (data_version).
+  /// True once after another program added entries to the ledger.
   bool others_wrote();
   /// How far the clock stands behind the newest entry; 0 where it does not.
   std::chrono::microseconds clock_behind();
@@ -137,12 +137,14 @@ class Store {
   Store(const StoreOptions& options, const Clock& clock, std::optional<Lease> lease);
   bool is_fresh();
   void refuse_foreign_file();
+  void prepare_new_file();
   void set_modes(const StoreOptions& options);
   void begin_ledger(const StoreOptions& options);
   void read_first_entry(const StoreOptions& options);
   void check_recent();
   void prepare();
   Seal newest_entry();
+  Seal notice(const Seal& newest);
   Result<void> attempt(Change& change, const Job& job);
 
   std::optional<Lease> lease_;  // goes last: the connection is closed before another line may begin
@@ -153,6 +155,7 @@ class Store {
   std::optional<Problem> trouble_;
   std::string station_;
   bool emulated_ = false;
+  bool others_wrote_ = false;
   std::int64_t data_version_ = 0;
 };
 
