@@ -136,7 +136,6 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   app_.get_formatter()->label("Needs", "with");
   app_.get_formatter()->label("Excludes", "not with");
   app_.get_formatter()->label("SUBCOMMAND", "COMMAND");
-  app_.get_formatter()->label("Subcommands", "Commands");
   app_.get_formatter()->label("OPTIONS", "OPTION...");
   app_.set_help_flag("--help,-h", "say how this is used");
   app_.add_flag("--version", version_, "print version, commit and compiler");
@@ -154,13 +153,13 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
 
 CLI::App& Reader::command(CLI::App& parent, const std::string& name, const std::string& what,
                           const std::string& example) {
-  CLI::App& app = *parent.add_subcommand(name, what);
+  CLI::App& app = *parent.add_subcommand(name, what)->group("Commands");
   app.footer("Example:\n  " + example);
   return app;
 }
 
 CLI::App& Reader::group(const std::string& name, const std::string& what) {
-  CLI::App& app = *app_.add_subcommand(name, what);
+  CLI::App& app = *app_.add_subcommand(name, what)->group("Commands");
   app.require_subcommand(1);
   app.footer("Ask for more: probewright " + name + " COMMAND --help");
   return app;

@@ -57,7 +57,7 @@ class Reading {
     }
     auto value = reader(std::string_view{*text}, std::string_view{file.string()});
     if (!value) {
-      faults_.insert(faults_.end(), value.error().begin(), value.error().end());
+      add(value.error());
       return documented;
     }
     documented = Documented<Value>{std::move(*value), {}};

@@ -33,10 +33,13 @@ int decimals_of(const db::ReadingRow& reading) {
   return decimals;
 }
 
-std::string window(const std::optional<double>& lower, const std::optional<double>& upper, int decimals) {
-  if (lower && upper) return fixed(*lower, decimals) + " to " + fixed(*upper, decimals);
-  if (upper) return "up to " + fixed(*upper, decimals);
-  if (lower) return "from " + fixed(*lower, decimals) + " up";
+/// A limit as it was applied, no digit dropped.
+std::string whole(double limit) { return fixed(limit, limits::decimals_of(limit)); }
+
+std::string window(const std::optional<double>& lower, const std::optional<double>& upper) {
+  if (lower && upper) return whole(*lower) + " to " + whole(*upper);
+  if (upper) return "up to " + whole(*upper);
+  if (lower) return "from " + whole(*lower) + " up";
   return "";
 }
 
@@ -70,8 +73,8 @@ std::vector<std::string> cells_of(const db::ReadingRow& reading) {
           fixed(*reading.value, decimals),
           reading.expanded_uncertainty ? fixed(*reading.expanded_uncertainty, decimals) : "",
           reading.unit == "1" ? "" : reading.unit,
-          window(reading.lower, reading.upper, decimals),
-          guarded ? window(reading.acceptance_lower, reading.acceptance_upper, decimals) : "",
+          window(reading.lower, reading.upper),
+          guarded ? window(reading.acceptance_lower, reading.acceptance_upper) : "",
           reading.margin ? fixed(*reading.margin, limits::decimals_apart(*reading.margin, 0.0, 2)) : "",
           standing + (reading.cut_short ? ", cut short" : "")};
 }

@@ -16,7 +16,8 @@ std::optional<limits::Sheet> read_sheet(const std::string& file, Problems& fault
   }
   auto sheet = limits::read_sheet(*text, file);
   if (sheet) return *std::move(sheet);
-  faults.insert(faults.end(), sheet.error().begin(), sheet.error().end());
+  const Problems found = sheet.error();
+  faults.insert(faults.end(), found.begin(), found.end());
   return std::nullopt;
 }
 
