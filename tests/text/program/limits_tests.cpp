@@ -88,6 +88,7 @@ TEST_F(Limits, ADifferenceIsToldInWordsWithItsDirection) {
   EXPECT_THAT(told.out, HasSubstr("red_centroid"));
   EXPECT_THAT(told.out, HasSubstr("looser"));
   const auto back = run(folder, {"limits", "diff", wider, sheet, "--json"}).json();
+  ASSERT_TRUE(back.contains("changes")) << back;
   EXPECT_EQ(back["changes"][0]["subject"], "red_centroid");
   EXPECT_EQ(back["changes"][0]["move"], "tighter");
   EXPECT_THAT(run(folder, {"limits", "diff", sheet, sheet}).out, HasSubstr("no difference"));

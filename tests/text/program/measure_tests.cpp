@@ -2,14 +2,17 @@
 #include <gtest/gtest.h>
 
 #include <cmath>
+#include <locale>
 #include <numbers>
 #include <sstream>
 
 #include "program.h"
+#include "station/base/numbers.h"
 #include "tests/support/expect.h"
 
 namespace {
 
+using probewright::shortest;
 using program::Folder;
 using program::run;
 using testing::AllOf;
@@ -32,6 +35,7 @@ constexpr LineShape red{661.5, 19.0, -0.15}, infrared{942.8, 46.0, -0.10};
 
 std::string csv_of(const LineShape& shape, double scale = 30000.0) {
   std::ostringstream text;
+  text.imbue(std::locale::classic());
   text.precision(17);
   text << "wavelength_nm,signal\n";
   for (int i = 0; i < 1024; ++i) text << 600.0 + 0.44 * i << ',' << scale * shape.at(600.0 + 0.44 * i) << '\n';
@@ -93,8 +97,8 @@ TEST_F(MeasureSpectrum, ASpectrumThatCannotBeUsedIsAnAnswerNotAnAccident) {
   std::string dark = "wavelength_nm,signal\n", clipped = dark;
   for (int i = 0; i < 1024; ++i) {
     const double nm = 600.0 + 0.44 * i;
-    dark += std::to_string(nm) + "," + std::to_string(i % 2) + "\n";
-    clipped += std::to_string(nm) + "," + std::to_string(std::min(20000.0, 65000.0 * red.at(nm))) + "\n";
+    dark += shortest(nm) + "," + std::to_string(i % 2) + "\n";
+    clipped += shortest(nm) + "," + shortest(std::min(20000.0, 65000.0 * red.at(nm))) + "\n";
   }
   for (const std::string& csv : {dark, clipped}) {
     const auto json = ask(csv, {"--band", "red", "--json"});
@@ -135,6 +139,7 @@ double level(double dc, double depth, double phase, double t) {
 /// Slots as an adapter takes them, each at its own moment of the cycle, over a dark level that drifts.
 std::string slots() {
   std::ostringstream text;
+  text.imbue(std::locale::classic());
   text.precision(17);
   text << "t_s,red,dark_a,infrared,dark_b\n";
   const auto dark = [](double t) { return 5.0 + 2.0 * t; };
@@ -174,6 +179,7 @@ TEST_F(MeasurePulses, FitsTheRateTooWhenAsked) {
 
 TEST_F(MeasurePulses, TakesTrainsThatAreDarkCorrectedAlready) {
   std::ostringstream text;
+  text.imbue(std::locale::classic());
   text << "t_s,red,infrared\n";
   text.precision(17);
   for (int k = 0; k < 600; ++k)
