@@ -244,15 +244,19 @@ asio::awaitable<bool> Driver::drive_off() {
   co_return false;
 }
 
+asio::awaitable<void> Driver::require_drive() {
+  const auto turn = co_await link_.turn();
+  link_.require_ready();
+  co_await check_drive_in_turn();
+}
+
 asio::awaitable<void> Driver::dwell_driven(Duration physical) {
   wire::LineClock& clock = link_.clock();
   const auto scaled = [&clock](Duration d) { return from_seconds(seconds(d) / clock.speed()); };
   const SteadyTime end = clock.steady_now() + scaled(physical);
   while (clock.steady_now() < end) {
     co_await clock.wait_until(std::min(end, clock.steady_now() + scaled(feeding_interval)));
-    const auto turn = co_await link_.turn();
-    link_.require_ready();
-    co_await check_drive_in_turn();
+    co_await require_drive();
   }
 }
 

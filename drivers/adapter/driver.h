@@ -58,6 +58,8 @@ class Driver {
   /// Waits `physical` time (over the speed) while it keeps the device's watchdog fed, and makes sure at the end that
   /// the drive is still as set. Throws ProblemError drive_lost when it is not.
   asio::awaitable<void> dwell_driven(Duration physical);
+  /// Makes sure that the drive is still as set, now. Throws ProblemError drive_lost, wire::DeviceReset.
+  asio::awaitable<void> require_drive();
 
   asio::awaitable<void> set_timing(std::uint32_t slot_ns);
   /// Voltage of an LED as it is driven now. t = 20 ms.

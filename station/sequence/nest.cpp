@@ -8,7 +8,7 @@
 #include <boost/asio/this_coro.hpp>
 #include <boost/asio/use_awaitable.hpp>
 
-#include "station/base/numbers.h"
+#include "station/sequence/device_settings.h"
 
 namespace probewright::sequence {
 namespace {
@@ -17,41 +17,6 @@ namespace {
 constexpr Duration look_pause = std::chrono::milliseconds(50);
 /// How long a scan arms a nest, real time: a person puts the probe in.
 constexpr Duration armed_for = std::chrono::seconds(20);
-
-std::string nest_name(int nest) { return "nest " + std::to_string(nest); }
-
-wire::Expected expected_of(const measure::CertificateHead& head, const StationFile& station) {
-  wire::Expected expected;
-  expected.serial = head.device_serial;
-  expected.certificate = head.number;
-  expected.due = head.due;
-  expected.emulated = station.emulated;
-  return expected;
-}
-
-wire::LinkSettings link_of(const std::string& device, const StationFile& station) {
-  wire::LinkSettings link;
-  link.device = device;
-  link.baud = station.baud;
-  return link;
-}
-
-phantom::Settings phantom_settings(const measure::PhantomCertificate& certificate, const StationFile& station,
-                                   int nest) {
-  phantom::Settings settings;
-  settings.link = link_of("phantom of " + nest_name(nest), station);
-  settings.expected = expected_of(certificate.head, station);
-  settings.wavelength_nm = certificate.wavelength_nm;
-  return settings;
-}
-
-adapter::Settings adapter_settings(const measure::AdapterCertificate& certificate, const StationFile& station,
-                                   int nest) {
-  adapter::Settings settings;
-  settings.link = link_of("adapter of " + nest_name(nest), station);
-  settings.expected = expected_of(certificate.head, station);
-  return settings;
-}
 
 db::RunDevice device_of(std::string role, const wire::Identity& identity, const DocumentText& certificate) {
   const std::string name = identity.maker + " " + identity.model + " " + identity.serial;

@@ -19,6 +19,8 @@ using measure::Band;
 constexpr int most_exposures = 4;
 /// How often the lid is looked at while the phantom has nothing else to do.
 constexpr Duration lid_pause = std::chrono::milliseconds(100);
+/// Device time that no run takes, however often it has to ask again.
+constexpr Duration longest_run = std::chrono::minutes(10);
 
 constexpr std::uint32_t microamperes(double mA) { return static_cast<std::uint32_t>(mA * 1000.0 + 0.5); }
 constexpr std::uint16_t thousandths(double value) { return static_cast<std::uint16_t>(value * 1000.0 + 0.5); }
@@ -44,6 +46,25 @@ asio::awaitable<void> Routine::gather() {
   begin_stage("contact, ID and dark current");
   co_await take_contact_and_dark();
   begin_stage("forward voltages");
+  co_await devices_.adapter.drive({microamperes(model_.drive_mA.red), microamperes(model_.drive_mA.infrared)});
+  co_await driven(gather_lit());
+}
+
+/// Runs `work` while something keeps asking the adapter whether the LEDs are driven: an exchange with the phantom that
+/// must be tried again takes longer than the adapter's watchdog. Whichever ends first ends the other.
+asio::awaitable<void> Routine::driven(asio::awaitable<void> work) {
+  const auto executor = co_await asio::this_coro::executor;
+  const auto [order, work_error, keeper_error] =
+      co_await asio::experimental::make_parallel_group(
+          asio::co_spawn(executor, std::move(work), asio::deferred),
+          asio::co_spawn(executor, devices_.adapter.dwell_driven(longest_run), asio::deferred))
+          .async_wait(asio::experimental::wait_for_one(), asio::use_awaitable);
+  const std::exception_ptr& error = order[0] == 0 ? work_error : keeper_error;
+  if (error) std::rethrow_exception(error);
+  if (order[0] != 0) throw ProblemError({"run_too_long", "nest"});
+}
+
+asio::awaitable<void> Routine::gather_lit() {
   co_await warm_up();
   const bool lights = co_await take_voltages();
   co_await finish_stage();
@@ -70,6 +91,7 @@ void Routine::begin_stage(std::string_view doing) {
 
 /// Readings of a stage count as made only when the probe was in its place, in the dark, up to its end.
 asio::awaitable<void> Routine::finish_stage() {
+  if (stage_ > 1) co_await devices_.adapter.require_drive();
   co_await still_right();
   book_.stage_done();
 }
@@ -113,15 +135,13 @@ asio::awaitable<void> Routine::take_contact_and_dark() {
   book_.add(dark);
 }
 
-/// Both LEDs in the standard drive until they are warm, in pieces short enough to see the lid.
+/// Until both LEDs are warm, in pieces short enough to see the lid.
 asio::awaitable<void> Routine::warm_up() {
-  co_await devices_.adapter.drive({microamperes(model_.drive_mA.red), microamperes(model_.drive_mA.infrared)});
   const SteadyTime until = clock_.steady_now() + from_seconds(model_.warmup_s / clock_.speed());
   while (clock_.steady_now() < until) {
     co_await lid_stays_closed();
-    const Duration left = until - clock_.steady_now();
-    const Duration piece = std::min(left, from_seconds(seconds(lid_pause) / clock_.speed()));
-    if (piece > Duration{0}) co_await devices_.adapter.dwell_driven(from_seconds(seconds(piece) * clock_.speed()));
+    co_await clock_.wait_until(
+        std::min(until, clock_.steady_now() + from_seconds(seconds(lid_pause) / clock_.speed())));
   }
 }
 

@@ -45,6 +45,8 @@ class Routine {
   asio::awaitable<void> gather();
 
  private:
+  asio::awaitable<void> gather_lit();
+  asio::awaitable<void> driven(asio::awaitable<void> work);
   asio::awaitable<void> take_contact_and_dark();
   asio::awaitable<void> warm_up();
   asio::awaitable<bool> take_voltages();

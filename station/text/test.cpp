@@ -6,12 +6,12 @@
 #include <csignal>
 
 #include "drivers/wire/asio_clock.h"
-#include "drivers/wire/serial_port.h"
 #include "drivers/wire/thread_workers.h"
 #include "station/base/numbers.h"
 #include "station/sequence/ledger_start.h"
 #include "station/sequence/line.h"
 #include "station/text/run_text.h"
+#include "station/text/serial_source.h"
 #include "station/text/station_choice.h"
 
 namespace probewright::text {
@@ -23,15 +23,6 @@ using namespace sequence;
 /// How long the nest may take to become ready, and a probe to be taken out, real time.
 constexpr Duration patience = std::chrono::seconds(20);
 constexpr Duration look_pause = std::chrono::milliseconds(20);
-
-wire::PortSource serial_source(asio::any_io_executor executor, const wire::LineClock& clock, std::string path,
-                               unsigned baud) {
-  return [executor, &clock, path, baud]() -> asio::awaitable<std::unique_ptr<wire::Port>> {
-    auto port = wire::open_serial(executor, clock, path, static_cast<int>(baud));
-    if (!port) throw ProblemError(port.error());
-    co_return std::move(*port);
-  };
-}
 
 /// One run in one nest, from the scan to the verdict on disk. Everything it needs stands in the order in which it
 /// may go: the context last.

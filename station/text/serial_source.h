@@ -1,0 +1,14 @@
+#pragma once
+#include <boost/asio/any_io_executor.hpp>
+#include <string>
+
+#include "drivers/wire/line_clock.h"
+#include "drivers/wire/link.h"
+
+namespace probewright::text {
+
+/// Opens a serial port whenever a driver asks for it. The clock must outlive what comes out.
+wire::PortSource serial_source(boost::asio::any_io_executor executor, const wire::LineClock& clock, std::string path,
+                               unsigned baud);
+
+}  // namespace probewright::text
