@@ -415,4 +415,23 @@ TEST(PhantomDriver, WaitsLongerAtLowSpeedOfTheLine) {
   EXPECT_EQ(bench.phantom().counts().misses, 0u);
 }
 
+// The device is 20 times as fast, and so is the wait for it; the margin for hiccups of the machine is not.
+TEST(PhantomDriver, DeadlinesScaleWithTheSpeedOfTheBench) {
+  PhantomBench bench{PhantomBench::expected_device(), 20.0};
+  bench.fake.identity = "Alder Quay Sensors,PHANTOM,PH-01,1.0.0-emulated-x20";
+  bench.connect();
+  const double before_s = bench.seconds_now();
+  answer<Spectrum>(bench, [&] { return bench.phantom().spectrum({2000000, 1, Shutter::open}); });
+  EXPECT_NEAR(bench.seconds_now() - before_s, 0.1001, 0.001);
+  bench.fake.spoil = [](const std::string& message, std::string line) {
+    return message == "SPEC:READ?" ? std::string{} : line;
+  };
+  const auto problem = bench.problem_of([&]() -> asio::awaitable<void> {
+    co_await bench.phantom().spectrum({2000000, 1, Shutter::open});
+  });
+  ASSERT_TRUE(problem);
+  // Three readings of 0.1 s, each with the margin of 0.5 s; the fences in between are answered at once.
+  EXPECT_NEAR(bench.seconds_now() - before_s, 0.1 + 3 * 0.6, 0.05);
+}
+
 }  // namespace

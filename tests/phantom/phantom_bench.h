@@ -5,7 +5,8 @@
 
 /// The driver before the fake phantom on a virtual line.
 struct PhantomBench : trial::DriverBench<probewright::phantom::Driver, FakePhantom> {
-  explicit PhantomBench(probewright::phantom::Settings settings = expected_device()) {
+  explicit PhantomBench(probewright::phantom::Settings settings = expected_device(), double speed = 1.0)
+      : DriverBench(speed) {
     driver.emplace(std::move(settings), source(), line.clock(), entropy);
   }
   static probewright::phantom::Settings expected_device() {

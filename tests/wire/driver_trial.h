@@ -15,7 +15,7 @@
 /// What the tests of both drivers share: a driver on a virtual line before a fake device that can be unplugged.
 namespace trial {
 
-/// Everything that went over the line, in order.
+/// Everything that went over the line, in order; one piece for each write and read.
 struct Traffic final : wire::TrafficSink {
   struct Piece {
     wire::Direction direction;
@@ -23,9 +23,7 @@ struct Traffic final : wire::TrafficSink {
   };
   std::vector<Piece> pieces;
   void bytes(wire::Direction direction, SteadyTime, std::span<const std::byte> bytes) override {
-    if (bytes.empty()) return;
-    if (pieces.empty() || pieces.back().direction != direction) pieces.push_back({direction, {}});
-    pieces.back().bytes.insert(pieces.back().bytes.end(), bytes.begin(), bytes.end());
+    if (!bytes.empty()) pieces.push_back({direction, {bytes.begin(), bytes.end()}});
   }
 };
 
@@ -33,6 +31,8 @@ struct Traffic final : wire::TrafficSink {
 /// `asio::awaitable<void> serve(std::shared_ptr<wire::Port>, wire::LineClock&)`, which ends when its port is lost.
 template <class Driver, class Fake>
 struct DriverBench {
+  explicit DriverBench(double speed = 1.0) : line(speed) {}
+
   // The order matters: coroutines go with the line, and what they use goes after them.
   Fake fake;
   SeededEntropy entropy{7};
