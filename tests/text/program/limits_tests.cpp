@@ -82,14 +82,14 @@ TEST_F(Limits, ASheetThatLacksACheckOfTheRoutineDoesNotFitItsModel) {
 }
 
 TEST_F(Limits, ADifferenceIsToldInWordsWithItsDirection) {
-  const std::string wider = folder.write("wider.yaml", with(text_of(sheet), "upper: 665", "upper: 667"));
+  const std::string wider = folder.write("wider.yaml", with(text_of(sheet), "upper: 948.3", "upper: 949.3"));
   const auto told = run(folder, {"limits", "diff", sheet, wider});
   EXPECT_EQ(told.status, 0) << told.err;
-  EXPECT_THAT(told.out, HasSubstr("red_centroid"));
+  EXPECT_THAT(told.out, HasSubstr("infrared_centroid"));
   EXPECT_THAT(told.out, HasSubstr("looser"));
   const auto back = run(folder, {"limits", "diff", wider, sheet, "--json"}).json();
   ASSERT_TRUE(back.contains("changes")) << back;
-  EXPECT_EQ(back["changes"][0]["subject"], "red_centroid");
+  EXPECT_EQ(back["changes"][0]["subject"], "infrared_centroid");
   EXPECT_EQ(back["changes"][0]["move"], "tighter");
   EXPECT_THAT(run(folder, {"limits", "diff", sheet, sheet}).out, HasSubstr("no difference"));
 }

@@ -46,9 +46,9 @@ std::vector<char*> pointers(std::vector<std::string>& texts) {
   return all;
 }
 
-pid_t start(const Folder& folder, const std::vector<std::string>& arguments,
+pid_t start(const std::string& program, const Folder& folder, const std::vector<std::string>& arguments,
             const std::map<std::string, std::string>& more, const std::string& out, const std::string& err) {
-  std::vector<std::string> words{PW_PROGRAM};
+  std::vector<std::string> words{program};
   words.insert(words.end(), arguments.begin(), arguments.end());
   std::vector<std::string> environment = environment_of(folder, more);
   posix_spawn_file_actions_t files;
@@ -59,15 +59,17 @@ pid_t start(const Folder& folder, const std::vector<std::string>& arguments,
   posix_spawn_file_actions_addopen(&files, STDERR_FILENO, err.c_str(), fresh, 0600);
   pid_t process = -1;
   const int failed =
-      posix_spawn(&process, PW_PROGRAM, &files, nullptr, pointers(words).data(), pointers(environment).data());
+      posix_spawnp(&process, program.c_str(), &files, nullptr, pointers(words).data(), pointers(environment).data());
   posix_spawn_file_actions_destroy(&files);
-  if (failed != 0) throw std::runtime_error("the program does not start: " + std::string{PW_PROGRAM});
+  if (failed != 0) throw std::runtime_error("the program does not start: " + program);
   return process;
 }
 
 int status_of(int waited) { return WIFEXITED(waited) ? WEXITSTATUS(waited) : 128 + WTERMSIG(waited); }
 
 }  // namespace
+
+const std::string probewright = PW_PROGRAM;
 
 nlohmann::json Ran::json() const {
   try {
@@ -101,14 +103,15 @@ Ran run(const Folder& folder, const std::vector<std::string>& arguments,
         const std::map<std::string, std::string>& environment) {
   const std::string out = folder.file(".out"), err = folder.file(".err");
   int waited = 0;
-  waitpid(start(folder, arguments, environment, out, err), &waited, 0);
+  waitpid(start(probewright, folder, arguments, environment, out, err), &waited, 0);
   return {status_of(waited), text_of(out), text_of(err)};
 }
 
-Beside::Beside(const Folder& folder, const std::vector<std::string>& arguments, const std::string& name)
+Beside::Beside(const Folder& folder, const std::vector<std::string>& arguments, const std::string& name,
+               const std::string& program)
     : out_file_(folder.file("." + name + ".out")),
       err_file_(folder.file("." + name + ".err")),
-      process_(start(folder, arguments, {}, out_file_, err_file_)) {}
+      process_(start(program, folder, arguments, {}, out_file_, err_file_)) {}
 
 Beside::~Beside() { end(); }
 

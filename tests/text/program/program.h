@@ -33,10 +33,14 @@ class Folder {
 Ran run(const Folder& folder, const std::vector<std::string>& arguments,
         const std::map<std::string, std::string>& environment = {});
 
+/// The program that is tested.
+extern const std::string probewright;
+
 /// A program that goes on beside the test; asked to end (SIGTERM) and waited for when this goes.
 class Beside {
  public:
-  Beside(const Folder& folder, const std::vector<std::string>& arguments, const std::string& name);
+  Beside(const Folder& folder, const std::vector<std::string>& arguments, const std::string& name,
+         const std::string& program = probewright);
   ~Beside();
   Beside(const Beside&) = delete;
   /// Waits until its output holds `text`; false when it ended or `seconds` have passed.

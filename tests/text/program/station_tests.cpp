@@ -1,7 +1,10 @@
 #include <gmock/gmock.h>
 #include <gtest/gtest.h>
 
+#include <chrono>
 #include <fstream>
+#include <memory>
+#include <thread>
 
 #include "db/statement.h"
 #include "program.h"
@@ -31,9 +34,9 @@ class OneRun : public testing::Test {
  protected:
   static void SetUpTestSuite() {
     folder = new Folder;
-    Beside bench{*folder, {"bench", "--truth", folder->file("truth.json")}, "bench"};
+    Beside bench{*folder, {"bench", "--speed", "10", "--truth", folder->file("truth.json")}, "bench"};
     ASSERT_TRUE(bench.says("ready\n", 10)) << bench.err();
-    tested = run(*folder, {"test", serial, "--operator", "Imre Vasko", "--json"});
+    tested = run(*folder, {"test", serial, "--speed", "10", "--operator", "Imre Vasko", "--json"});
     EXPECT_EQ(bench.end(), 0) << "a bench that is asked to end has done its work: " << bench.err();
   }
   static void TearDownTestSuite() {
@@ -150,19 +153,65 @@ TEST_F(OneRun, AFileThatIsNoLedgerIsNotCalledOne) {
   EXPECT_EQ(ask({"trace", serial, "--ledger", noise}).status, 3);
 }
 
-TEST_F(Station, ASecondRunIsAddedAndABenchMayRunFaster) {
-  // Another station file: the same nest at ten times the speed.
-  const std::string configs = folder.file("configs");
-  std::filesystem::copy(std::string{PW_SOURCE_DIR} + "/configs", configs, std::filesystem::copy_options::recursive);
+// The commands of the overview and of README, as they stand there, at the speed of real devices.
+TEST_F(Station, ABenchInOneTerminalAndATestInAnother) {
+  Beside bench{folder, {"bench"}, "bench"};
+  ASSERT_TRUE(bench.says("ready\n", 10)) << bench.err();
+  const auto told = ask({"test", serial});
+  EXPECT_EQ(told.status, 0) << told.out << told.err;
+  EXPECT_THAT(told.out, AllOf(HasSubstr("AQ20-048-00001: PASS"), HasSubstr("seal ")));
+  EXPECT_EQ(ask({"ledger", "verify", ledger()}).status, 0);
+  EXPECT_EQ(ask({"trace", serial}).status, 0);
+}
+
+TEST_F(Station, RunsAreAddedToOneLedger) {
   Beside bench{folder, {"bench", "--speed", "10", "--ports", folder.file("ports")}, "bench"};
   ASSERT_TRUE(bench.says("ready\n", 10)) << bench.err();
-  for (int i = 1; i <= 2; ++i) {
-    const auto told = ask({"test", "AQ20-048-0000" + std::to_string(i), "--config", configs, "--speed", "10", "--ports",
-                           folder.file("ports")});
+  for (int i = 1; i <= 3; ++i) {
+    const std::string probe = "AQ20-048-0000" + std::to_string(i % 2);
+    const auto told = ask({"test", probe, "--speed", "10", "--ports", folder.file("ports")});
     EXPECT_LE(told.status, 1) << told.err;
-    EXPECT_THAT(told.out, HasSubstr("AQ20-048-0000" + std::to_string(i) + ": "));
+    EXPECT_THAT(told.out, HasSubstr(probe + ": "));
   }
-  EXPECT_EQ(ask({"ledger", "verify", ledger(), "--json"}).json()["runs"], 2);
+  const auto json = ask({"ledger", "verify", ledger(), "--json"}).json();
+  EXPECT_EQ(json["runs"], 3);
+  EXPECT_EQ(json["ok"], true);
+  EXPECT_EQ(ask({"trace", serial, "--json"}).json()["runs"].size(), 2u);
+}
+
+// Nothing may depend on who opened the pseudo-terminals: socat makes them, and bench and station each take one end.
+TEST_F(Station, PseudoTerminalsThatAnotherProgramMadeServeAsWell) {
+  std::filesystem::create_directories(folder.file("bench-end"));
+  std::filesystem::create_directories(folder.file("station-end"));
+  std::vector<std::unique_ptr<Beside>> cables;
+  for (const std::string& device : {"nest1-phantom", "nest1-adapter"}) {
+    const std::vector<std::string> ends{"pty,raw,echo=0,link=" + folder.file("bench-end/" + device),
+                                        "pty,raw,echo=0,link=" + folder.file("station-end/" + device)};
+    cables.push_back(std::make_unique<Beside>(folder, ends, device, "socat"));
+  }
+  const auto there = [&](const std::string& end) { return std::filesystem::exists(folder.file(end)); };
+  for (int tries = 0; tries < 400 && !(there("station-end/nest1-phantom") && there("station-end/nest1-adapter"));
+       ++tries)
+    std::this_thread::sleep_for(std::chrono::milliseconds{10});
+  Beside bench{folder, {"bench", "--speed", "4", "--attach", folder.file("bench-end")}, "bench"};
+  ASSERT_TRUE(bench.says("ready\n", 10)) << bench.err() << cables[0]->err();
+  const auto told = ask({"test", serial, "--speed", "4", "--ports", folder.file("station-end"), "--control",
+                         folder.file("run/probewright-bench/control")});
+  EXPECT_EQ(told.status, 0) << told.out << told.err;
+  EXPECT_EQ(ask({"ledger", "verify", ledger()}).status, 0);
+}
+
+TEST_F(Station, ARunThatIsInterruptedIsClosedOnDisk) {
+  Beside bench{folder, {"bench"}, "bench"};
+  ASSERT_TRUE(bench.says("ready\n", 10)) << bench.err();
+  Beside test{folder, {"test", serial}, "test"};
+  for (int tries = 0; tries < 1000 && test.err().find("2/5") == std::string::npos; ++tries)
+    std::this_thread::sleep_for(std::chrono::milliseconds{5});
+  EXPECT_NE(test.end(), 0);
+  const auto run = ask({"trace", serial, "--json"}).json()["runs"][0];
+  EXPECT_TRUE(run["verdict"] == "void" || run["verdict"] == "fail") << run;
+  EXPECT_FALSE(run["cause_words"].get<std::string>().empty());
+  EXPECT_EQ(ask({"ledger", "verify", ledger(), "--json"}).json()["open_runs"], 0);
 }
 
 TEST_F(Station, WithoutABenchTheTestSaysWhatIsMissing) {
