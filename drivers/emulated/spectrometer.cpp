@@ -48,6 +48,10 @@ double sensitivity_e_per_s() {
   return Spectrometer::nominal_peak_e / 0.020 / (density * at_peak);
 }
 
+/// A narrower line falls between the pixels if it is taken there before the slit blurs it; it takes the slit's own
+/// shape.
+constexpr double narrow_nm = 1.5;
+
 double clipped(double counts) { return std::clamp(counts, 0.0, Spectrometer::full_counts); }
 
 }  // namespace
@@ -67,14 +71,14 @@ Spectrometer::Spectrometer(const StationErrors& errors, std::uint64_t seed)
   }
 }
 
-void Spectrometer::add_line(const SpectralLine& line, PixelLight& light) const {
-  if (!(line.power > 0.0)) return;
+void Spectrometer::add_line(const LineShape& shape, double power, PixelLight& light) const {
+  if (!(power > 0.0)) return;
   constexpr double nothing = 1e-9;  // of the peak: far below one electron
-  const double low = line.shape.edge_nm(nothing, -1), high = line.shape.edge_nm(nothing, +1);
-  const double density = line.power / line.shape.area_nm();
+  const double low = shape.edge_nm(nothing, -1), high = shape.edge_nm(nothing, +1);
+  const double density = power / shape.area_nm();
   const auto first = std::lower_bound(wavelength_nm_.begin(), wavelength_nm_.end(), low) - wavelength_nm_.begin();
   for (auto i = static_cast<std::size_t>(first); i < pixel_count && wavelength_nm_[i] < high; ++i) {
-    light[i] += density * line.shape.at(wavelength_nm_[i]);
+    light[i] += density * shape.at(wavelength_nm_[i]);
   }
 }
 
@@ -95,9 +99,17 @@ PixelLight Spectrometer::blurred(const PixelLight& light) const {
 
 Spectrum Spectrometer::expose(const std::vector<SpectralLine>& lines, double background_e_per_s, double exposure_s,
                               int frames, Deviates& noise) const {
-  PixelLight light{};
-  for (const SpectralLine& line : lines) add_line(line, light);
-  light = blurred(light);
+  PixelLight wide{}, narrow{};
+  for (const SpectralLine& line : lines) {
+    const double fwhm_nm = line.shape.fwhm_nm();
+    if (fwhm_nm > narrow_nm) {
+      add_line(line.shape, line.power, wide);
+    } else {
+      add_line(line_of(line.shape.centroid_nm(), std::hypot(fwhm_nm, certificate::slit_nm), 0.0), line.power, narrow);
+    }
+  }
+  PixelLight light = blurred(wide);
+  for (std::size_t i = 0; i < pixel_count; ++i) light[i] += narrow[i];
   double total_e = 0.0;
   for (std::size_t i = 0; i < pixel_count; ++i) {
     light[i] = light[i] * pixel_gain_[i] * exposure_s;

@@ -57,7 +57,7 @@ class Spectrometer {
   double wavelength_nm(std::size_t pixel) const { return wavelength_nm_[pixel]; }
 
  private:
-  void add_line(const SpectralLine& line, PixelLight& light) const;
+  void add_line(const LineShape& shape, double power, PixelLight& light) const;
   PixelLight blurred(const PixelLight& light) const;
 
   PixelLight wavelength_nm_{};
