@@ -114,6 +114,10 @@ double cut_off_u(const Line& line) {
   return lost / area * line.width_nm / std::sqrt(3.0);
 }
 
+bool spans(const Spectrum& spectrum, Window window) {
+  return spectrum.wavelength_nm.front() <= window.from_nm && spectrum.wavelength_nm.back() >= window.to_nm;
+}
+
 double step_u(const Spectrum& spectrum, double nm) {
   const auto& axis = spectrum.wavelength_nm;
   const auto above = std::lower_bound(axis.begin() + 1, axis.end() - 1, nm);
@@ -146,7 +150,9 @@ Result<LabSpectrum> measure_spectrum(const CsvTable& table, const LabSpectrumOpt
   const double shift_nm = options.centroid_nm_per_K.of(out.band) * above_K;
   const double growth_nm = options.width_nm_per_K.of(out.band) * above_K;
   const GridError grid = grid_error(*spectrum, rules);
-  const double cut_nm = options.threshold > 0.0 ? cut_off_u(*line) : 0.0;
+  // With threshold 0 the window's ends belong to the definition; those of the axis do not.
+  const bool defined_by_window = options.threshold <= 0.0 && spans(*spectrum, line_window(out.band));
+  const double cut_nm = defined_by_window ? 0.0 : cut_off_u(*line);
   const auto figure = [&](double Line::*value, double Line::*u, double shift, double cut) {
     double grid_u = grid.of(value, *line);
     if (grid.halves.empty()) grid_u = step_u(*spectrum, line->centroid_nm);  // too few samples to tell: the step itself

@@ -324,7 +324,10 @@ Result<Line> find_line(const Spectrum& spectrum, const LineRules& rules) {
   const auto smooth = smooth_of(*part);
   const auto highest = std::max_element(smooth.begin(), smooth.end());
   const std::size_t top = part->first + static_cast<std::size_t>(highest - smooth.begin());
-  if (!(*highest > 5.0 * mean_noise(*part)) || !(*highest > 0.0)) return problem("spectrum_no_peak");
+  // A thousandth of what shines elsewhere is the foot of another line, not a line.
+  const double brightest = *std::max_element(spectrum.power.begin(), spectrum.power.end());
+  if (!(*highest > 5.0 * mean_noise(*part)) || !(*highest > 1e-3 * brightest) || !(*highest > 0.0))
+    return problem("spectrum_no_peak");
   if (top == part->first || top == part->last) return problem("spectrum_cut_off");
 
   const Peak peak = cubic_peak(*part, smooth, top);

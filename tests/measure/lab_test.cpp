@@ -153,6 +153,28 @@ TEST(LabSpectrum, WhatCannotBeUsedIsRefused) {
       "spectrum_axis");
 }
 
+// An axis that ends at 985 nm, where the infrared line still stands at 3 % of its peak: the whole line's centroid
+// moves, and the figure says so.
+TEST(LabSpectrum, ACutTailIsToldAsUncertainty) {
+  Lab lab;
+  lab.to_nm = 985.0;
+  LabSpectrumOptions options;
+  options.threshold = 0.0;
+  const Figure cut = measure_spectrum(csv_of(nominal_infrared, lab), options).value().centroid_nm;
+  const Figure whole = measure_spectrum(csv_of(nominal_infrared), options).value().centroid_nm;
+  EXPECT_GT(std::abs(cut.value - nominal_infrared.centroid_nm()), 0.1);
+  expect_within(cut.value, nominal_infrared.centroid_nm(), cut.expanded_uncertainty);
+  EXPECT_LT(whole.expanded_uncertainty, 0.05);
+}
+
+// The foot of a Gaussian red line reaches into the infrared window as numbers above 0, but is no infrared line.
+TEST(LabSpectrum, TheFootOfAnotherLineIsNoLine) {
+  LabSpectrumOptions options;
+  options.band = Band::infrared;
+  const auto gaussian = [](double nm) { return std::exp(-0.5 * std::pow((nm - 660.0) / 30.0, 2)); };
+  EXPECT_EQ(problem_of(measure_spectrum(csv_of(gaussian), options)), "spectrum_no_peak");
+}
+
 // Whole counts on a fine grid give equal samples at the top of a good line: that is no clipping.
 TEST(LabSpectrum, RoundingIsNotClipping) {
   Lab lab;
