@@ -12,10 +12,13 @@ namespace probewright {
 namespace {
 
 constexpr std::size_t max_faults = 50;
+constexpr std::size_t max_columns = 1000;
 
+/// A cell knows its place by offsets; a column in characters is counted only when a fault asks for it, since counting
+/// for every cell of a long line would take the square of its length.
 struct Cell {
   std::string text;
-  std::size_t line, column;  ///< 1-based, in characters
+  std::size_t line, line_start, at;
 };
 using Record = std::vector<Cell>;
 
@@ -27,7 +30,12 @@ std::string_view trimmed(std::string_view text) {
 
 class FaultList {
  public:
-  explicit FaultList(std::string_view file) : file_(file) {}
+  FaultList(std::string_view file, std::string_view text) : file_(file), text_(text) {}
+  void add(const Cell& cell, std::string_view id,
+           std::initializer_list<std::pair<std::string, std::string>> arguments = {}) {
+    if (full()) return;
+    add(cell.line, 1 + count_characters(text_.substr(cell.line_start, cell.at - cell.line_start)), id, arguments);
+  }
   void add(std::size_t line, std::size_t column, std::string_view id,
            std::initializer_list<std::pair<std::string, std::string>> arguments = {}) {
     if (full()) return;
@@ -39,7 +47,13 @@ class FaultList {
 
  private:
   std::string file_;
+  std::string_view text_;
   Problems faults_;
+};
+
+/// Thrown at a line with more cells than any table has; the rest is not read.
+struct TooWide {
+  Cell cell;
 };
 
 /// Splits text into records by RFC 4180; knows the place of every cell.
@@ -61,7 +75,7 @@ class Splitter {
 
  private:
   char peek() const { return at_ < text_.size() ? text_[at_] : '\0'; }
-  std::size_t column() const { return 1 + count_characters(text_.substr(line_start_, at_ - line_start_)); }
+  Cell here() const { return {{}, line_, line_start_, at_}; }
 
   /// Steps over an end of line, LF or CRLF, if one stands here.
   bool line_ends() {
@@ -83,6 +97,7 @@ class Splitter {
     Record cells;
     for (;;) {
       cells.push_back(peek() == '"' ? quoted() : plain());
+      if (cells.size() > max_columns) throw TooWide{cells.back()};
       if (at_ >= text_.size() || line_ends()) return cells;
       ++at_;  // the comma
     }
@@ -94,21 +109,21 @@ class Splitter {
   }
 
   Cell plain() {
-    Cell cell{{}, line_, column()};
+    Cell cell = here();
     bool told = false;
     while (!cell_ends()) {
-      if (peek() == '"' && !told) faults_.add(line_, column(), "csv_quote"), told = true;
+      if (peek() == '"' && !told) faults_.add(here(), "csv_quote"), told = true;
       cell.text += text_[at_++];
     }
     return cell;
   }
 
   Cell quoted() {
-    Cell cell{{}, line_, column()};
+    Cell cell = here();
     ++at_;
     for (;;) {
       if (at_ >= text_.size()) {
-        faults_.add(cell.line, cell.column, "csv_quote");  // opened here, never closed
+        faults_.add(cell, "csv_quote");  // opened here, never closed
         return cell;
       }
       if (text_.substr(at_).starts_with("\"\"")) {
@@ -122,7 +137,7 @@ class Splitter {
       }
     }
     ++at_;
-    if (!cell_ends()) faults_.add(line_, column(), "csv_quote");
+    if (!cell_ends()) faults_.add(here(), "csv_quote");
     while (!cell_ends()) ++at_;
     return cell;
   }
@@ -155,10 +170,10 @@ void read_header(const Record& record, const CsvRules& rules, CsvTable& table, F
   std::set<std::string> seen;
   for (const Cell& cell : record) {
     std::string name{trimmed(cell.text)};
-    if (!seen.insert(name).second) faults.add(cell.line, cell.column, "csv_duplicate_column", {{"column", name}});
+    if (!seen.insert(name).second) faults.add(cell, "csv_duplicate_column", {{"column", name}});
     const bool known =
         rules.any_column || holds(rules.needed, name) || holds(rules.optional, name) || holds(rules.text_columns, name);
-    if (!known) faults.add(cell.line, cell.column, "csv_unknown_column", {{"column", name}});
+    if (!known) faults.add(cell, "csv_unknown_column", {{"column", name}});
     table.header.push_back(std::move(name));
   }
   for (const std::string& name : rules.needed)
@@ -179,8 +194,7 @@ void read_row(Record record, const CsvRules& rules, CsvTable& table, FaultList& 
   for (std::size_t i = 0; i < record.size(); ++i) {
     const auto number = parse_double(trimmed(record[i].text));
     if (!number && must_be_number(table.header[i], rules))
-      faults.add(record[i].line, record[i].column, "csv_not_a_number",
-                 {{"text", record[i].text}, {"column", table.header[i]}});
+      faults.add(record[i], "csv_not_a_number", {{"text", record[i].text}, {"column", table.header[i]}});
     table.columns[i].push_back(number.value_or(std::numeric_limits<double>::quiet_NaN()));
     table.texts[i].push_back(std::move(record[i].text));
   }
@@ -211,9 +225,13 @@ ResultOrFaults<CsvTable> read_csv(std::string_view text, const CsvRules& rules, 
     return Problems{
         {"file_too_large", file, {{"size", std::to_string(text.size())}, {"bound", std::to_string(rules.max_bytes)}}}};
   if (text.starts_with("\xEF\xBB\xBF")) text.remove_prefix(3);  // the mark that spreadsheets put before UTF-8
-  FaultList faults{file};
+  FaultList faults{file, text};
   CsvTable table;
-  if (is_text(text, faults)) read_table(text, rules, table, faults);
+  try {
+    if (is_text(text, faults)) read_table(text, rules, table, faults);
+  } catch (const TooWide& too_wide) {
+    faults.add(too_wide.cell, "csv_too_wide", {{"bound", std::to_string(max_columns)}});
+  }
   if (!faults.empty()) return faults.take();
   return table;
 }

@@ -27,8 +27,9 @@ struct CsvRules {
 /// Reads RFC 4180 text (comma, quotes, CRLF or LF, UTF-8 BOM allowed); lines that start with '#' are comments.
 /// `file` names the text in faults. Errors, all of them with line and column (at most 50): csv_missing_column,
 /// csv_unknown_column, csv_duplicate_column, csv_ragged, csv_not_a_number (also nan and inf), csv_empty, csv_quote,
-/// text_not_utf8, text_control_character; file_too_large. Blanks around numbers and column names do not count.
-/// A cell that need not be a number (text columns, columns that no rule names) is NaN in `columns` when it is none.
+/// csv_too_wide (over 1000 columns), text_not_utf8, text_control_character; file_too_large.
+/// Blanks around numbers and column names do not count. A cell that need not be a number (text columns, columns that no
+/// rule names) is NaN in `columns` when it is none.
 ResultOrFaults<CsvTable> read_csv(std::string_view text, const CsvRules& rules, std::string_view file);
 
 }  // namespace probewright

@@ -16,42 +16,37 @@ namespace {
 
 constexpr std::size_t max_depth = 64;
 
-/// Finds places in a text: yaml-cpp counts bytes from 0, people count characters from 1.
+/// Finds places in a text: yaml-cpp counts bytes from 0, people count characters from 1. Characters are counted once,
+/// at the start: a file of one long line would otherwise be counted anew for each of its values.
 class Places {
  public:
-  explicit Places(std::string_view text) : text_(text) {
-    for (std::size_t at = 0; at != std::string_view::npos && at <= text.size();) {
-      line_starts_.push_back(at);
-      const auto end = text.find('\n', at);
-      at = end == std::string_view::npos ? end : end + 1;
+  explicit Places(std::string_view text) : text_(text), line_starts_{0}, characters_before_{0} {
+    for (std::size_t at = 0; at < text.size(); ++at) {
+      characters_before_.push_back(characters_before_.back() + static_cast<int>(count_characters(text.substr(at, 1))));
+      if (text[at] == '\n') line_starts_.push_back(at + 1);
     }
   }
 
   /// The text from a mark on.
-  std::string_view from(const YAML::Mark& mark) const {
-    if (mark.line < 0 || static_cast<std::size_t>(mark.line) >= line_starts_.size()) return {};
-    const std::size_t offset = line_starts_[static_cast<std::size_t>(mark.line)];
-    return text_.substr(std::min(offset + static_cast<std::size_t>(std::max(mark.column, 0)), text_.size()));
-  }
+  std::string_view from(const YAML::Mark& mark) const { return text_.substr(offset_of(mark)); }
 
-  Place of(const YAML::Mark& mark) const {
-    if (mark.line < 0 || static_cast<std::size_t>(mark.line) >= line_starts_.size()) return {mark.line + 1, 1};
-    const auto line = static_cast<std::size_t>(mark.line);
-    const std::string_view before =
-        text_.substr(line_starts_[line], static_cast<std::size_t>(std::max(mark.column, 0)));
-    return {mark.line + 1, static_cast<int>(1 + count_characters(before))};
-  }
+  Place of(const YAML::Mark& mark) const { return of_offset(offset_of(mark)); }
 
   Place of_offset(std::size_t offset) const {
     const auto after = std::upper_bound(line_starts_.begin(), line_starts_.end(), offset);
-    const auto line = static_cast<std::size_t>(after - line_starts_.begin()) - 1;
-    const std::string_view before = text_.substr(line_starts_[line], offset - line_starts_[line]);
-    return {static_cast<int>(line + 1), static_cast<int>(1 + count_characters(before))};
+    const int column = 1 + characters_before_[offset] - characters_before_[*std::prev(after)];
+    return {static_cast<int>(after - line_starts_.begin()), column};
   }
 
  private:
+  std::size_t offset_of(const YAML::Mark& mark) const {
+    const std::size_t line = std::min(static_cast<std::size_t>(std::max(mark.line, 0)), line_starts_.size() - 1);
+    return std::min(line_starts_[line] + static_cast<std::size_t>(std::max(mark.column, 0)), text_.size());
+  }
+
   std::string_view text_;
-  std::vector<std::size_t> line_starts_;
+  std::vector<std::size_t> line_starts_;  ///< offsets
+  std::vector<int> characters_before_;    ///< of each offset
 };
 
 /// Reads a text in place; std::istringstream would copy it.

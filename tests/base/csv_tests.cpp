@@ -88,6 +88,11 @@ TEST(Csv, RefusesWhatIsNoText) {
   EXPECT_EQ(read_csv("a\n1\n", CsvRules{{}, {}, {}, true, 3}, "f").error()[0].id, "file_too_large");
 }
 
+// A file of one endless line once took the square of its length, for the place of each cell.
+TEST(Csv, AnEndlessLineIsRefusedAtOnce) {
+  EXPECT_EQ(faults_of(std::string(1'000'000, ','), anything), (Told{"csv_too_wide@1:1001"}));
+}
+
 TEST(Csv, TellsAtMostFiftyFaults) {
   std::string text = "wavelength_nm,signal\n";
   for (int i = 0; i < 1000; ++i) text += "x,y\n";

@@ -154,6 +154,11 @@ TEST(StrictYaml, OneDocumentAFile) {
   EXPECT_EQ(faults_of("~\n"), (Told{"yaml_empty@1:1"}));
 }
 
+// A list in one endless line once took minutes: the place of each value was counted from the start of the line.
+TEST(StrictYaml, AnEndlessLineTakesNoLongerThanManyLines) {
+  EXPECT_EQ(faults_of("[" + std::string(100'000, ',')).size(), 1u);
+}
+
 TEST(StrictYaml, BoundsSizeAndDepth) {
   const auto nested = [](int depth) { return std::string(depth, '[') + "1" + std::string(depth, ']'); };
   EXPECT_EQ(faults_of(nested(64)), Told{});
