@@ -64,7 +64,12 @@ void Connection::run(const std::string& sql) {
 std::string Connection::ask(const std::string& sql) {
   Statement statement(*this, sql);
   Row row = statement.begin();
-  return row.step() ? row.text(0) : std::string{};
+  std::string answer;
+  if (!row.step()) return answer;
+  answer = row.text(0);
+  while (row.step()) {  // to the end: a pragma that writes may fail only after its answer
+  }
+  return answer;
 }
 
 std::int64_t Connection::ask_number(const std::string& sql) {

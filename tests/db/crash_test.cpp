@@ -1,0 +1,279 @@
+// A machine that stops at any write, a disk that fails at any write, sync or truncation: what was told as committed is
+// there at the next start, the chain verifies, no run is half there.
+#include <gtest/gtest.h>
+
+#include <functional>
+
+#include "db/memory_vfs.h"
+#include "db/queries/open_runs.h"
+#include "db/queries/runs_of_serial.h"
+#include "db/queries/seal.h"
+#include "db/verify.h"
+#include "sample.h"
+
+namespace probewright::db {
+namespace {
+
+using namespace sample;
+
+constexpr std::size_t readings_of_run = 7, captures_of_run = 2;
+
+StoreOptions on(const MemoryVfs& vfs) {
+  auto with = options("ledger.db");
+  with.vfs = vfs.name();
+  with.exclusive = true;
+  with.lease = false;
+  with.checkpoint_pages = 16;  // so that the log is copied into the file in the midst of it
+  return with;
+}
+
+/// What the store said is on the disk.
+struct Told {
+  std::vector<Seal> seals;
+  std::vector<std::string> closed;  ///< serials
+};
+
+/// Runs until done or until the store has trouble. Serials are numbered from `first`.
+void work(MemoryDisk& disk, Told& told, int runs, int first = 1) {
+  MemoryVfs vfs(disk, "work");
+  HandClock clock;
+  auto opened = Store::open(on(vfs), clock);
+  if (!opened) return;
+  Store& store = **opened;
+  told.seals.push_back(store.seal());
+  SeededEntropy entropy(static_cast<std::uint64_t>(first));
+  for (int i = first; i < first + runs; ++i) {
+    const std::string serial = "AQ20-048-" + std::to_string(i);
+    RunId run;
+    const Store::Job steps[] = {[&](Change& change) { add_documents(change), run = change.open_run(opening(serial)); },
+                                [&](Change& change) {
+                                  change.add_capture(run, "spectrum_red", "", wave(entropy, 300));
+                                  change.add_capture(run, "pulses", "1p0", wave(entropy, 4000));
+                                  change.add_readings(run, readings(entropy));
+                                },
+                                [&](Change& change) { change.close_run(closing(run, "pass")); }};
+    for (const Store::Job& step : steps) {
+      const auto outcome = store.commit(step);
+      ASSERT_EQ(outcome.has_value(), !store.trouble().has_value()) << "no job of these is refused";
+      if (!outcome) return;
+      told.seals.push_back(store.seal());
+    }
+    told.closed.push_back(serial);
+  }
+}
+
+void expect_whole(const RunRecord& run) {
+  EXPECT_EQ(run.readings.size(), run.captures.size() == captures_of_run ? readings_of_run : 0u);
+  if (run.closing) EXPECT_EQ(run.readings.size(), readings_of_run);
+}
+
+/// Opens the disk as the next start does, and checks what must hold. True where the ledger opened.
+void expect_sound(MemoryDisk& disk, const Told& told, const std::string& story) {
+  SCOPED_TRACE(story);
+  MemoryVfs vfs(disk, "look");
+  HandClock clock;
+  {
+    auto opened = Store::open(on(vfs), clock);
+    ASSERT_TRUE(opened) << opened.error().text();
+    Reader reader = (*opened)->reader();
+    EXPECT_EQ(reader.connection().ask("PRAGMA auto_vacuum"), "2");
+    for (const Seal& seal : told.seals)
+      ASSERT_TRUE(seal_at(reader, seal.entry) == seal) << "told as committed, now missing: entry " << seal.entry;
+    for (const std::string& serial : told.closed) {
+      const auto runs = runs_of_serial(reader, serial);
+      ASSERT_EQ(runs.size(), 1u) << serial;
+      EXPECT_TRUE(runs[0].closing) << serial;
+      expect_whole(runs[0]);
+    }
+    for (const OpenRun& open : open_runs(reader)) expect_whole(*run_record(reader, open.run));
+  }
+  VerifyOptions look;
+  look.vfs = vfs.name();
+  look.exclusive = true;
+  if (!told.seals.empty()) look.printed = told.seals.back();
+  const auto report = verify("ledger.db", look);
+  ASSERT_TRUE(report) << report.error().text();
+  EXPECT_TRUE(report->ok()) << canonical(report_body(*report));
+}
+
+DiskCounts count_calls(int runs) {
+  MemoryDisk disk;
+  Told told;
+  work(disk, told, runs);
+  EXPECT_EQ(told.closed.size(), static_cast<std::size_t>(runs));
+  return disk.counts();
+}
+
+TEST(Crash, TheModelLosesWhatWasNotSynced) {
+  MemoryDisk disk;
+  Told told;
+  work(disk, told, 1);
+  const DiskCounts counts = disk.counts();
+  EXPECT_GT(counts.writes, 30);
+  EXPECT_GT(counts.syncs, 4);
+  int lost = 0;
+  for (std::int64_t at = 1; at < counts.operations(); at += 5) {
+    MemoryDisk stopped;
+    DiskFaults faults;
+    faults.die_at = at;
+    stopped.set_faults(faults);
+    Told ignored;
+    work(stopped, ignored, 1);
+    const auto survivor = stopped.after_crash(static_cast<std::uint64_t>(at));
+    lost += survivor->content("ledger.db-wal") != stopped.content("ledger.db-wal") ||
+            survivor->content("ledger.db") != stopped.content("ledger.db");
+  }
+  EXPECT_GT(lost, 10) << "a model that loses nothing shows nothing";
+}
+
+TEST(Crash, StoppedAtEveryOperationNothingToldIsMissing) {
+  const std::int64_t operations = count_calls(2).operations();
+  for (std::int64_t at = 1; at <= operations && !HasFatalFailure(); ++at) {
+    MemoryDisk disk;
+    DiskFaults faults;
+    faults.die_at = at;
+    disk.set_faults(faults);
+    Told told;
+    work(disk, told, 2);
+    const auto survivor = disk.after_crash(static_cast<std::uint64_t>(at));
+    expect_sound(*survivor, told, "stopped at operation " + std::to_string(at));
+  }
+  std::printf("stopped at each of %lld operations\n", static_cast<long long>(operations));
+}
+
+/// Fails one call in turn, works until the store says trouble, starts again on the same machine, works on, and then the
+/// power goes: all that was told, before and after, is there.
+void fail_each(std::int64_t calls, std::int64_t DiskFaults::*which, bool from_then_on, const std::string& name) {
+  int troubled = 0;
+  for (std::int64_t at = 1; at <= calls && !testing::Test::HasFatalFailure(); ++at) {
+    MemoryDisk disk;
+    DiskFaults faults;
+    faults.*which = at;
+    faults.from_then_on = from_then_on;
+    disk.set_faults(faults);
+    Told told;
+    work(disk, told, 2);
+    troubled += told.closed.size() < 2;
+    const auto again = disk.after_restart();
+    Told later;
+    work(*again, later, 1, 100);
+    ASSERT_EQ(later.closed.size(), 1u) << name << " " << at;
+    told.seals.insert(told.seals.end(), later.seals.begin(), later.seals.end());
+    told.closed.insert(told.closed.end(), later.closed.begin(), later.closed.end());
+    const auto survivor = again->after_crash(static_cast<std::uint64_t>(at));
+    expect_sound(*survivor, told, name + " " + std::to_string(at));
+  }
+  EXPECT_GT(troubled, 0);
+  std::printf("%s: %lld calls failed in turn, %d ended in trouble\n", name.c_str(), static_cast<long long>(calls),
+              troubled);
+}
+
+TEST(Crash, EachWriteFailing) { fail_each(count_calls(2).writes, &DiskFaults::fail_write, false, "write failing"); }
+
+TEST(Crash, EachWriteFailingFromThenOn) {
+  fail_each(count_calls(2).writes, &DiskFaults::fail_write, true, "every write failing from");
+}
+
+TEST(Crash, EachWriteCutShort) { fail_each(count_calls(2).writes, &DiskFaults::short_write, false, "write cut short"); }
+
+TEST(Crash, EachSyncFailing) {
+  fail_each(count_calls(2).syncs, &DiskFaults::fail_sync, false, "sync failing");
+  fail_each(count_calls(2).syncs, &DiskFaults::fail_sync, true, "every sync failing from");
+}
+
+TEST(Crash, TheNextStartAfterAFailedSyncStoppedAtEachOperation) {
+  const std::int64_t syncs = count_calls(2).syncs;
+  for (std::int64_t sync = 4; sync <= syncs && !HasFatalFailure(); sync += 2) {
+    MemoryDisk disk;
+    DiskFaults faults;
+    faults.fail_sync = sync;
+    disk.set_faults(faults);
+    Told told;
+    work(disk, told, 2);
+    for (std::int64_t at = 1; !HasFatalFailure(); ++at) {
+      const auto again = disk.after_restart();
+      DiskFaults stop;
+      stop.die_at = at;
+      again->set_faults(stop);
+      Told ignored;
+      work(*again, ignored, 0);
+      if (!again->dead()) break;
+      const auto survivor = again->after_crash(static_cast<std::uint64_t>(at));
+      expect_sound(*survivor, told,
+                   "sync " + std::to_string(sync) + " failed, next start stopped at " + std::to_string(at));
+    }
+  }
+}
+
+TEST(Crash, ADiskThatIsFullAtEachSize) {
+  MemoryDisk whole;
+  Told all;
+  work(whole, all, 2);
+  int full = 0;
+  for (std::int64_t size = 4096; size < 400'000 && !HasFatalFailure(); size += 4096 + 512) {
+    MemoryDisk disk;
+    DiskFaults faults;
+    faults.full_at = size;
+    disk.set_faults(faults);
+    Told told;
+    work(disk, told, 2);
+    if (told.closed.size() == 2) break;
+    ++full;
+    const auto survivor = disk.after_restart();
+    expect_sound(*survivor, told, "disk full at " + std::to_string(size));
+  }
+  EXPECT_GT(full, 10);
+}
+
+TEST(Crash, AStoreWithTroubleTakesNothingMore) {
+  MemoryDisk disk;
+  MemoryVfs vfs(disk, "trouble");
+  HandClock clock;
+  auto store = open(on(vfs), clock);
+  DiskFaults faults;
+  faults.fail_sync = 1;
+  disk.set_faults(faults);
+  const Store::Job job = [](Change& change) { change.add_entry("cleaning", "Imre Vasko", Body::Object{}); };
+  const std::vector<Store::Job> jobs{job, job};
+  const auto outcomes = store->commit_group(jobs);
+  ASSERT_EQ(outcomes.size(), 2u);
+  EXPECT_EQ(outcomes[0].error().id, "ledger_io");
+  EXPECT_EQ(outcomes[1].error().id, "ledger_io");
+  EXPECT_EQ(outcomes[1].error().kind(), ProblemKind::ledger_trouble);
+  EXPECT_TRUE(store->trouble());
+  EXPECT_EQ(store->commit(job).error().id, "ledger_failed")
+      << "the disk works again, the store does not know what is on it";
+  store.reset();
+  store = open(on(vfs), clock);
+  EXPECT_TRUE(store->commit(job));
+}
+
+TEST(Crash, TheSameSeedGivesTheSameSealAndTheSameFiles) {
+  const auto once = [](std::uint64_t seed) {
+    MemoryDisk disk;
+    MemoryVfs vfs(disk, "seeded", seed);
+    HandClock clock;
+    SeededEntropy entropy(seed);
+    auto store = open(on(vfs), clock);
+    whole_run(*store, "AQ20-048-00001", entropy);
+    const Seal seal = store->seal();
+    store.reset();  // copies the log into the file
+    return std::pair{seal, disk.content("ledger.db")};
+  };
+  const auto first = once(1);
+  EXPECT_TRUE(first == once(1));
+  EXPECT_FALSE(first.first == once(2).first);
+}
+
+TEST(Crash, ASecondConnectionIsKeptOutWhileTheFirstHoldsTheFile) {
+  MemoryDisk disk;
+  MemoryVfs vfs(disk, "alone");
+  HandClock clock;
+  auto store = open(on(vfs), clock);
+  auto second = on(vfs);
+  second.wait_for_locks_ms = 0;
+  EXPECT_EQ(Store::open(second, clock).error().id, "ledger_locked");
+}
+
+}  // namespace
+}  // namespace probewright::db
