@@ -76,14 +76,14 @@ TEST(AdapterBadLine, EveryByteSentLostChangedDoubled) {
   spoil_each(wire::Direction::out, 0, clean.out);
 }
 
-// Of the two blocks of a capture every 5th byte, of everything else all.
+// Of the two blocks of a capture every 11th byte, of everything else all.
 TEST(AdapterBadLine, TheBytesReceivedLostChangedDoubled) {
   const Line clean = run_with({});
   const std::uint64_t blocks = 2 * 398, after = 17 + 33 + 17;  // end, state, drive off
   ASSERT_GT(clean.in, blocks + after + 150);
   const std::uint64_t end = clean.in - after, begin = end - blocks;
   spoil_each(wire::Direction::in, 0, begin + 20);
-  spoil_each(wire::Direction::in, begin + 20, end - 20, 5);
+  spoil_each(wire::Direction::in, begin + 20, end - 20, 11);
   spoil_each(wire::Direction::in, end - 20, clean.in);
 }
 

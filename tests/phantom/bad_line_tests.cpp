@@ -80,7 +80,7 @@ TEST(PhantomBadLine, EveryByteOfTextAnswersLostChangedDoubled) {
 }
 
 // All bytes of the block's header, first fields, check and end; of the pixels, which are all alike to the driver, every
-// 17th (odd, so that both bytes of a pixel come to it).
+// 51st (odd, so that both bytes of a pixel come to it).
 TEST(PhantomBadLine, TheBytesOfASpectrumLostChangedDoubled) {
   const Line without = run_with({}, false), with = run_with({}, true);
   const std::uint64_t block = 7 + 2068 + 5 + 1;
@@ -88,7 +88,7 @@ TEST(PhantomBadLine, TheBytesOfASpectrumLostChangedDoubled) {
   const std::uint64_t after = 8 + 6 + 7;  // "1;3;CLOS" and "0" with their checks
   const std::uint64_t end = with.in - after, begin = end - block;
   spoil_each(wire::Direction::in, begin - 20, begin + 30, true);
-  spoil_each(wire::Direction::in, begin + 30, end - 20, true, 17);
+  spoil_each(wire::Direction::in, begin + 30, end - 20, true, 51);
   spoil_each(wire::Direction::in, end - 20, with.in, true);
 }
 
