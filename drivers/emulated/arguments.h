@@ -37,4 +37,10 @@ class Arguments {
   int fault_ = 0;
 };
 
+/// Fault of a unit that takes no parameters: 0 or -108.
+inline int no_parameters(const wire::Unit& unit) { return Arguments{unit}.fault(); }
+
+/// A truth value in an answer.
+inline std::string truth_text(bool value) { return value ? "1" : "0"; }
+
 }  // namespace probewright::emulated

@@ -123,7 +123,7 @@ Result<void> run_bench(const RunBenchOptions& options, std::ostream& out) {
   auto socket = ControlSocket::listen(io.get_executor(), control, *bench);
   if (!socket) return socket.error();
 
-  asio::signal_set signals{io, SIGINT, SIGTERM};
+  asio::signal_set signals{io, SIGINT, SIGTERM, SIGHUP};
   signals.async_wait([&](const boost::system::error_code& error, int) {
     if (!error) io.stop();
   });

@@ -18,8 +18,8 @@ struct RunBenchOptions {
   std::vector<std::string> seats;  ///< probes that sit there from the start: "1:AQ20-048-00001"
 };
 
-/// Runs a bench in real time (device time goes `speed` times as fast) until SIGINT or SIGTERM. Prints to `out` one line
-/// per port, "nest1-phantom PATH", then "control PATH", then "ready". Gives nothing when it ended by a signal.
+/// Runs a bench in real time (device time goes `speed` times as fast) until SIGINT, SIGTERM or SIGHUP. Prints to `out`
+/// one line per port, "nest1-phantom PATH", then "control PATH", then "ready". Gives nothing when it ended by a signal.
 /// Errors: bench_options, bench_folder, those of the ports, of the control socket, of seating, of the truth file.
 Result<void> run_bench(const RunBenchOptions& options, std::ostream& out);
 
