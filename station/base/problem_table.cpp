@@ -36,6 +36,7 @@ constexpr std::array rows = std::to_array<ProblemRow>({
     {"yaml_alias", refused_input, "an alias (*) is not allowed", "write the value out"},
     {"yaml_anchor", refused_input, "an anchor (&) is not allowed", "take it out"},
     {"yaml_tag", refused_input, "the tag {tag} is not allowed", "take it out"},
+    {"yaml_directive", refused_input, "a directive (%) is not allowed", "take the line out"},
     {"yaml_too_deep", refused_input, "the document is nested more than {bound} deep",
      "check that this is the right file"},
     {"yaml_key_not_text", refused_input, "a key must be a single word or text", "write \"key: value\""},

@@ -101,8 +101,8 @@ class List {
   const Value::Node* node_;
 };
 
-/// A whole YAML document, read strictly: one document a file, UTF-8, no aliases, anchors or tags, no duplicate keys,
-/// at most `max_bytes`, at most 64 levels deep.
+/// A whole YAML document, read strictly: one document a file, UTF-8, no aliases, anchors, tags or directives, no
+/// duplicate keys, at most `max_bytes`, at most 64 levels deep.
 class Document {
  public:
   static constexpr std::size_t max_bytes = 1u << 20;

@@ -58,6 +58,19 @@ class ViewBuffer : public std::streambuf {
   }
 };
 
+/// Offset of a directive (%) at the head of a document, or npos. yaml-cpp reads the number of %YAML by the locale of
+/// the program, so "1.2" means twelve in German; a document of ours needs none.
+std::size_t directive_at(std::string_view text) {
+  for (std::size_t at = 0; at < text.size(); at = text.find('\n', at) + 1) {
+    const std::string_view line = text.substr(at, text.find('\n', at) - at);
+    const auto first = line.find_first_not_of(" \t\r");
+    if (line.starts_with('%')) return at;
+    if (first != std::string_view::npos && line[first] != '#') break;
+    if (at + line.size() == text.size()) break;
+  }
+  return std::string_view::npos;
+}
+
 /// Whether the quotation mark at the front of `text` has its partner. yaml-cpp takes the end of the file for one,
 /// so a file that was cut short inside a quoted value would pass for whole.
 bool quote_is_closed(std::string_view text) {
@@ -218,6 +231,11 @@ std::optional<Document> Document::read(std::string_view text, Faults& faults) {
   if (bad_utf8 != std::string_view::npos) faults.add(places.of_offset(bad_utf8), "text_not_utf8");
   if (control != std::string_view::npos) faults.add(places.of_offset(control), "text_control_character");
   if (bad_utf8 != std::string_view::npos || control != std::string_view::npos) return std::nullopt;
+
+  if (const auto directive = directive_at(text); directive != std::string_view::npos) {
+    faults.add(places.of_offset(directive), "yaml_directive");
+    return std::nullopt;
+  }
 
   Builder builder{places, faults};
   try {
