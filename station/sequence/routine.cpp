@@ -9,6 +9,7 @@
 #include <cmath>
 
 #include "station/base/catalogue.h"
+#include "station/base/numbers.h"
 #include "station/measure/exposure.h"
 
 namespace probewright::sequence {
@@ -69,23 +70,19 @@ asio::awaitable<void> Routine::gather_lit() {
   const bool lights = co_await take_voltages();
   co_await finish_stage();
   if (!lights) co_return;  // an LED that carries no current has no spectrum and no pulses
-  if (model_.needs() & needs_spectra) {
-    begin_stage("spectrum of the red LED");
-    co_await take_spectrum(Band::red);
-    co_await finish_stage();
-    begin_stage("spectrum of the infrared LED");
-    co_await take_spectrum(Band::infrared);
-    co_await finish_stage();
-  }
   for (const measure::SetPoint& set_point : model_.needed_set_points()) {
-    begin_stage("pulses");
+    begin_stage("pulses at ratio " + fixed(set_point.ratio, 1));
     co_await take_pulses(set_point);
     co_await finish_stage();
   }
+  if (!(model_.needs() & needs_spectra)) co_return;
+  begin_stage("spectra");  // last: by now the package is warm
+  co_await take_spectra();
+  co_await finish_stage();
 }
 
 void Routine::begin_stage(std::string_view doing) {
-  const int spectra = model_.needs() & needs_spectra ? 2 : 0;
+  const int spectra = model_.needs() & needs_spectra ? 1 : 0;
   progress_(doing, ++stage_, 2 + spectra + static_cast<int>(model_.needed_set_points().size()));
 }
 
@@ -173,7 +170,8 @@ asio::awaitable<bool> Routine::take_voltages() {
   co_return true;
 }
 
-/// One light frame and the dark frame of the same exposure. The LED is driven alone, so that each line has its window.
+/// One light frame and the dark frame of the same exposure, with both LEDs in their standard drive: a wavelength is
+/// defined for the probe as warm as that drive makes it, and each line has its own window.
 asio::awaitable<measure::SpectrumCapture> Routine::expose(Band band, double exposure_s) {
   phantom::SpectrometerSetting setting;
   setting.exposure_us = static_cast<std::uint32_t>(std::llround(exposure_s * 1e6));
@@ -183,30 +181,38 @@ asio::awaitable<measure::SpectrumCapture> Routine::expose(Band band, double expo
   setting.shutter = phantom::Shutter::open;
   const phantom::Spectrum light = co_await devices_.phantom.spectrum(setting);
   measure::SpectrumCapture capture;
-  capture.band = band;
   capture.light = light.counts;
   capture.dark = dark.counts;
   capture.pixel_was_full = light.any_pixel_full || dark.any_pixel_full;
   capture.exposure_s = setting.exposure_us * 1e-6;
   capture.frames = setting.frames;
-  capture.drive_mA = model_.drive_mA.of(band);
   capture.temperature_C = light.temperature_degC;
-  co_return capture;
+  co_return of_band(std::move(capture), band);
 }
 
-asio::awaitable<void> Routine::take_spectrum(Band band) {
-  const std::uint32_t drive_uA = microamperes(model_.drive_mA.of(band));
-  co_await devices_.adapter.drive({band == Band::red ? drive_uA : 0, band == Band::red ? 0 : drive_uA});
-  double exposure_s = model_.exposure_start_s;
-  for (int i = 1;; ++i) {
-    measure::SpectrumCapture capture = co_await expose(band, exposure_s);
+/// The same frames as a capture of one band.
+measure::SpectrumCapture Routine::of_band(measure::SpectrumCapture frames, Band band) const {
+  frames.band = band;
+  frames.drive_mA = model_.drive_mA.of(band);
+  return frames;
+}
+
+/// Frames that are good for both bands serve both; else each band gets its own exposure.
+asio::awaitable<void> Routine::take_spectra() {
+  measure::SpectrumCapture red = co_await exposed_well(Band::red, co_await expose(Band::red, model_.exposure_start_s));
+  measure::SpectrumCapture infrared = co_await exposed_well(Band::infrared, of_band(red, Band::infrared));
+  book_.add(std::move(red));
+  book_.add(std::move(infrared));
+}
+
+/// Exposes anew until the band's line is neither clipped nor too dark, or another exposure would not help.
+asio::awaitable<measure::SpectrumCapture> Routine::exposed_well(Band band, measure::SpectrumCapture capture) {
+  for (int i = 1; i < most_exposures; ++i) {
     const measure::ExposureAdvice advice = measure::advise_exposure(capture, model_, certificate_);
-    if (advice.good || !advice.next_s || i == most_exposures) {
-      book_.add(std::move(capture));
-      co_return;
-    }
-    exposure_s = *advice.next_s;
+    if (advice.good || !advice.next_s) break;
+    capture = co_await expose(band, *advice.next_s);
   }
+  co_return capture;
 }
 
 /// Number under which the phantom stores this set point.
@@ -221,7 +227,6 @@ asio::awaitable<void> Routine::take_pulses(const measure::SetPoint& set_point) {
   phantom::Modulation modulation;
   modulation.set_point = co_await stored_set_point(set_point);
   modulation.rate_Hz = model_.modulator_Hz;
-  co_await devices_.adapter.drive({microamperes(model_.drive_mA.red), microamperes(model_.drive_mA.infrared)});
   co_await devices_.phantom.modulate(modulation);
   co_await devices_.phantom.wait_settled();
   const double temperature_C = co_await devices_.phantom.temperature_degC();

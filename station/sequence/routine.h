@@ -51,7 +51,9 @@ class Routine {
   asio::awaitable<void> warm_up();
   asio::awaitable<bool> take_voltages();
   asio::awaitable<measure::LedElectrical> voltages_of(measure::Band band);
-  asio::awaitable<void> take_spectrum(measure::Band band);
+  asio::awaitable<void> take_spectra();
+  asio::awaitable<measure::SpectrumCapture> exposed_well(measure::Band band, measure::SpectrumCapture capture);
+  measure::SpectrumCapture of_band(measure::SpectrumCapture frames, measure::Band band) const;
   asio::awaitable<measure::SpectrumCapture> expose(measure::Band band, double exposure_s);
   asio::awaitable<void> take_pulses(const measure::SetPoint& set_point);
   asio::awaitable<int> stored_set_point(const measure::SetPoint& set_point);

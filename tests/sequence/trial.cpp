@@ -50,8 +50,8 @@ Trial::Trial(Options options)
   bench_ = std::make_unique<emulated::Bench>(io_.get_executor(), clock_, options_.bench);
   ledger_ = std::make_unique<LedgerWriter>(std::move(start->store), *workers_, io_.get_executor());
   const PortOpener ports = [this](const DevicePlace&, int nest, DeviceKind kind) {
-    return bench_->source({nest, kind == DeviceKind::phantom ? emulated::DeviceKind::phantom
-                                                             : emulated::DeviceKind::adapter});
+    return bench_->source(
+        {nest, kind == DeviceKind::phantom ? emulated::DeviceKind::phantom : emulated::DeviceKind::adapter});
   };
   LineServices services{clock_, entropy_, *ledger_, software, Zone{}, [this](const LineEvent& e) { hear(e); }};
   line_ = std::make_unique<Line>(configuration, ports, std::move(services));
@@ -74,8 +74,8 @@ void Trial::hear(const LineEvent& event) {
 
 bool Trial::reaches(NestState state) {
   const auto limit = clock_.steady_now() + patience;
-  const auto ended =
-      clock_.run_until(io_, [&] { return broken_ || line_->views().front().state == state; }, limit);
+  const auto ended = clock_.run_until(
+      io_, [&] { return broken_ || line_->views().front().state == state; }, limit);
   if (broken_) throw std::runtime_error("a nest ended: " + *broken_);
   return ended == wire::VirtualClock::Ended::reached;
 }
@@ -109,7 +109,8 @@ Told Trial::test(const std::string& serial) {
         return &events_[i];
     return nullptr;
   };
-  const auto ended = clock_.run_until(io_, [&] { return broken_ || end_of(); }, clock_.steady_now() + patience);
+  const auto ended = clock_.run_until(
+      io_, [&] { return broken_ || end_of(); }, clock_.steady_now() + patience);
   if (broken_) throw std::runtime_error("a nest ended: " + *broken_);
   told.hung = ended != wire::VirtualClock::Ended::reached;
   if (const LineEvent* end = end_of()) {
@@ -131,7 +132,8 @@ bool Trial::finish() {
       broken_ = known.what();
     }
   });
-  clock_.run_until(io_, [&] { return finished_; }, clock_.steady_now() + patience);
+  clock_.run_until(
+      io_, [&] { return finished_; }, clock_.steady_now() + patience);
   if (broken_) throw std::runtime_error("the line did not finish: " + *broken_);
   return finished_;
 }

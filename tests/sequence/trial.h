@@ -23,8 +23,8 @@ const sequence::Configuration& demonstration();
 
 struct Options {
   std::uint64_t seed = 1;
-  emulated::BenchOptions bench;  ///< its seed is replaced by the trial's
-  db::StoreOptions store;        ///< path and vfs; the rest is filled in
+  emulated::BenchOptions bench;          ///< its seed is replaced by the trial's
+  db::StoreOptions store;                ///< path and vfs; the rest is filled in
   UtcTime start{1'796'103'000'000'000};  ///< 2026-12-01T05:30:00Z
   sequence::Purpose purpose = sequence::Purpose::engineering;
   const sequence::Configuration* configuration = nullptr;  ///< nullptr: demonstration()
