@@ -46,9 +46,7 @@ void Descriptor::close(std::string why) {
   if (!stream_.is_open()) return;
   closed_because_ = std::move(why);
   boost::system::error_code ignored;  // nothing can be done about a failing close, and the descriptor is gone anyway
-  stream_.close(ignored);
-  reading_.ready.notify();
-  writing_.ready.notify();
+  stream_.close(ignored);             // ends the watches, and they wake whoever waits
 }
 
 asio::awaitable<std::size_t> Descriptor::read(std::shared_ptr<Descriptor> self, std::span<std::byte> into,

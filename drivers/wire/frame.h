@@ -39,6 +39,8 @@ class FrameReader {
   std::uint64_t damaged() const { return damaged_; }
   /// Whether bytes of an unfinished frame are held.
   bool partial() const { return !held_.empty() || overlong_; }
+  /// How many bytes of it are held; never more than the longest valid frame has, and one.
+  std::size_t held() const { return held_.size(); }
   /// Forgets the unfinished frame and the frames that nobody took; the count stays.
   void clear();
 

@@ -52,6 +52,8 @@ struct Case {
   std::function<void(Bed&)> make;
 };
 
+void PrintTo(const Case& tried, std::ostream* out) { *out << tried.name; }
+
 const Case cases[] = {
     {"SerialPortOnPseudoTerminal", [](Bed& bed) { use_pseudo_terminal(bed); }},
     {"PseudoTerminalMaster",
