@@ -222,6 +222,27 @@ TEST_F(Station, WithoutABenchTheTestSaysWhatIsMissing) {
   EXPECT_THAT(told.err, HasSubstr("port"));
 }
 
+TEST_F(Station, TheCheckupFindsTheDevicesOrSaysHowToMendIt) {
+  {
+    Beside bench{folder, {"bench"}, "bench"};
+    ASSERT_TRUE(bench.says("ready\n", 10)) << bench.err();
+    const auto well = ask({"checkup", "--json"});
+    EXPECT_EQ(well.status, 0) << well.out;
+    EXPECT_EQ(well.json()["well"], true);
+  }
+  const auto wrong = ask({"checkup", "--json"});
+  EXPECT_EQ(wrong.status, 1);
+  EXPECT_EQ(wrong.json()["well"], false);
+  int without_remedy = 0, ports = 0;
+  for (const auto& finding : wrong.json()["findings"]) {
+    if (finding["state"] != "well" && finding["remedy"].get<std::string>().empty()) ++without_remedy;
+    if (finding["state"] == "wrong" && finding["words"].get<std::string>().find("port") != std::string::npos) ++ports;
+  }
+  EXPECT_EQ(without_remedy, 0);
+  EXPECT_EQ(ports, 2);
+  EXPECT_THAT(ask({"checkup"}).out, HasSubstr("check the cable"));
+}
+
 TEST_F(Station, ASerialOfNoModelIsRefused) {
   Beside bench{folder, {"bench"}, "bench"};
   ASSERT_TRUE(bench.says("ready\n", 10)) << bench.err();
