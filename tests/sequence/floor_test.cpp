@@ -2,7 +2,7 @@
 
 #include <boost/asio/post.hpp>
 
-#include "tests/sequence/memory_ledger.h"
+#include "tests/trial/memory_ledger.h"
 
 // The rules of the floor that hold already: arming, the right probe in the nest, pass, fail and void.
 namespace probewright {

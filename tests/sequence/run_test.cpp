@@ -1,8 +1,8 @@
 #include <gtest/gtest.h>
 
-#include "tests/sequence/memory_ledger.h"
+#include "tests/trial/memory_ledger.h"
 
-// One run from the scan to the verdict on disk, and that a seed is all there is to it.
+// One run from the scan to the verdict on disk.
 namespace probewright {
 namespace {
 
@@ -32,23 +32,6 @@ TEST(Run, AHealthyProbePassesAndIsOnDiskWhenTold) {
   EXPECT_EQ(report.runs, 1);
   EXPECT_EQ(report.open_runs, 0);
   EXPECT_EQ(report.captures, 5);  // electrical, dark, two spectra, one pulse train
-}
-
-db::Seal seal_after(std::uint64_t seed) {
-  MemoryLedger ledger;
-  Trial station{ledger.options(seed)};
-  station.test("AQ20-048-00001");
-  station.test("AQ20-048-00002");
-  EXPECT_TRUE(station.finish());
-  return station.seal();
-}
-
-// The frame's first promise: a seed is the whole shift, to the last hash.
-TEST(Run, OneSeedGivesOneSealAHundredTimes) {
-  const db::Seal first = seal_after(7);
-  EXPECT_GT(first.entry, 4);
-  for (int i = 1; i < 100; ++i) ASSERT_EQ(seal_after(7), first) << "time " << i;
-  EXPECT_NE(seal_after(8).hash, first.hash);
 }
 
 TEST(Run, TheSameSerialIsCountedAsAnotherTry) {

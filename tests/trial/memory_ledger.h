@@ -5,7 +5,7 @@
 
 #include "db/memory_vfs.h"
 #include "db/verify.h"
-#include "tests/sequence/trial.h"
+#include "tests/trial/trial.h"
 
 namespace probewright::trial {
 

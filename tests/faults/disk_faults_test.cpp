@@ -4,7 +4,7 @@
 #include <map>
 
 #include "db/queries/runs_of_serial.h"
-#include "tests/sequence/memory_ledger.h"
+#include "tests/trial/memory_ledger.h"
 
 // The station dies, or its disk fails, at every point of two runs in turn. What must hold afterwards: whatever was told
 // is on the disk with the same verdict; the chain agrees; what was open is closed at the next start by the rule; the

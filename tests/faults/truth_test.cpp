@@ -4,7 +4,7 @@
 #include <iostream>
 #include <map>
 
-#include "tests/sequence/memory_ledger.h"
+#include "tests/trial/memory_ledger.h"
 
 // Readings of the whole chain (devices, wire, drivers, routine, evaluation) against the emulated bench's own truth,
 // which shares no optics or maths with them. 200 healthy probes at 25 C, certificates exactly true.

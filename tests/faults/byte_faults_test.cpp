@@ -6,7 +6,7 @@
 #include <iostream>
 #include <map>
 
-#include "tests/sequence/memory_ledger.h"
+#include "tests/trial/memory_ledger.h"
 
 // Every byte of a run's traffic, both ways on both lines, lost, changed and doubled in turn: one fault a run. What must
 // hold each time: the run ends, right or void with its cause; no reading is wrong; both LEDs are off; the chain agrees.

@@ -1,4 +1,4 @@
-#include "tests/sequence/trial.h"
+#include "tests/trial/trial.h"
 
 #include <boost/asio/co_spawn.hpp>
 #include <filesystem>
