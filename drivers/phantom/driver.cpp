@@ -44,6 +44,13 @@ bool same_polynomial(const std::vector<double>& a, const std::vector<double>& b)
   return true;
 }
 
+/// Empty lines are no answers: a doubled LF makes one. "" when no whole line is there.
+std::string first_line_with_text(wire::LineReader& reader) {
+  while (auto line = reader.next())
+    if (!line->empty()) return *std::move(line);
+  return {};
+}
+
 std::string in_words(const std::vector<double>& polynomial) {
   std::string words;
   for (const double coefficient : polynomial) words += (words.empty() ? "" : ", ") + shortest(coefficient);
@@ -93,11 +100,10 @@ asio::awaitable<std::string> Driver::answer_to(const Request& request) {
   co_return *std::move(text);
 }
 
-// Empty lines are no answers: a doubled LF makes one.
 asio::awaitable<std::string> Driver::next_line(wire::LineReader& reader, SteadyTime deadline) {
   for (;;) {
-    while (auto line = reader.next())
-      if (!line->empty()) co_return *std::move(line);
+    std::string line = first_line_with_text(reader);
+    if (!line.empty()) co_return line;
     const auto bytes = co_await link_.receive(deadline);
     reader.feed(bytes);
   }
