@@ -5,6 +5,7 @@
 #include <unistd.h>
 
 #include <filesystem>
+#include <ostream>
 
 #include "db/sha256.h"
 #include "db/store.h"
@@ -174,6 +175,11 @@ struct StandingCase {
   std::optional<double> value;
   Standing wanted;
 };
+
+/// For the tests' names.
+void PrintTo(const StandingCase& row, std::ostream* out) {
+  *out << row.ok << (row.value ? " with" : " without") << " a value is " << slug(row.wanted);
+}
 
 class StandingOf : public testing::TestWithParam<StandingCase> {};
 

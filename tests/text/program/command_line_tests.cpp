@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <cstdlib>
+#include <ostream>
 
 #include "program.h"
 
@@ -41,6 +42,11 @@ struct Wrong {
   std::vector<std::string> arguments;
   std::string says;
 };
+
+/// For the tests' names.
+void PrintTo(const Wrong& wrong, std::ostream* out) {
+  for (const std::string& word : wrong.arguments) *out << word << ' ';
+}
 
 class WrongUse : public testing::TestWithParam<Wrong> {};
 
