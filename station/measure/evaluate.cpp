@@ -145,9 +145,7 @@ Result<Line> line_of(const Model& model, const Certificates& certificates, const
   if (!capture) return Problem{"not_captured", ""};
   const bool wanted = (model.needs() & needs_spectra) != 0;
   if (!wanted) return Problem{"not_captured", ""};
-  const auto spectrum = spectrum_of(*capture, certificates.phantom);
-  if (!spectrum) return spectrum.error();
-  return find_line(*spectrum, {band, standard_threshold, certificates.phantom.slit_nm});
+  return line_of_capture(*capture, certificates.phantom);
 }
 
 /// A wavelength or width of a line, referred to 25 C.

@@ -114,7 +114,8 @@ struct Model {
 ///   model_set_point_missing a ratio check without its set point
 ///   model_budget_missing    a check of the routine that carries an uncertainty has no budget
 ///   model_bad_pattern       the serial-number pattern is not a regular expression
-///   model_capture_short, model_id_kind, model_bins_missing, model_budget_empty, model_routine_empty, model_unknown_word
+///   model_capture_short, model_id_kind, model_bins_missing, model_budget_empty, model_routine_empty,
+///   model_unknown_word
 ResultOrFaults<Model> read_model(std::string_view text, std::string_view file);
 
 }  // namespace probewright::measure

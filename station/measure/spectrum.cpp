@@ -413,4 +413,25 @@ Result<Spectrum> spectrum_of(const SpectrumCapture& capture, const PhantomCertif
   return out;
 }
 
+double line_counts(const SpectrumCapture& capture, const PhantomCertificate& certificate) {
+  const Window window = line_window(capture.band);
+  double most = 0.0;
+  for (std::size_t i = 0; i < spectrometer_pixels; ++i) {
+    const double nm = polynomial(certificate.wavelength_nm, static_cast<double>(i));
+    if (nm < window.from_nm || nm > window.to_nm) continue;
+    most = std::max(most, static_cast<double>(capture.light[i]) - static_cast<double>(capture.dark[i]));
+  }
+  return most;
+}
+
+Result<Line> line_of_capture(const SpectrumCapture& capture, const PhantomCertificate& certificate) {
+  const auto spectrum = spectrum_of(capture, certificate);
+  if (!spectrum) return spectrum.error();
+  auto line = find_line(*spectrum, {capture.band, standard_threshold, certificate.slit_nm});
+  if (!line) return line.error();
+  const double part = line_counts(capture, certificate) / certificate.saturation_counts;
+  if (part < too_dark_below) return problem("spectrum_too_dark", {{"percent", fixed(100.0 * part, 1)}});
+  return line;
+}
+
 }  // namespace probewright::measure

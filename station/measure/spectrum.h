@@ -64,6 +64,13 @@ std::optional<Fraction> secondary_fraction(const Spectrum& spectrum);
 /// brightest pixel under 10 % of full scale over the dark frame).
 Result<Spectrum> spectrum_of(const SpectrumCapture& capture, const PhantomCertificate& certificate);
 
+/// Counts over the dark frame of the brightest pixel in the window of the capture's band.
+double line_counts(const SpectrumCapture& capture, const PhantomCertificate& certificate);
+/// The line of the capture's band, slit removed from its width by the certificate. Both LEDs may be driven: each line
+/// has its own window. Errors: those of spectrum_of and find_line; spectrum_too_dark when there is a line, but its
+/// brightest pixel is under 10 % of full scale.
+Result<Line> line_of_capture(const SpectrumCapture& capture, const PhantomCertificate& certificate);
+
 constexpr double clipped_from = 0.95;    ///< of full scale
 constexpr double too_dark_below = 0.10;  ///< of full scale, dark level subtracted
 

@@ -143,3 +143,44 @@ TEST(Exposure, IsAdvisedTowardsTheTarget) {
   nothing.exposure_s = model.exposure_max_s;
   EXPECT_FALSE(advise_exposure(nothing, model, certificate).next_s);
 }
+
+namespace {
+/// Both LEDs driven: the red line at the level, the infrared one at this part of it.
+SpectrumCapture both_lines(Band band, double level, double infrared_part) {
+  const auto shape = [=](double nm) { return nominal_red(nm) + infrared_part * 1.35 * nominal_infrared(nm); };
+  return spectrum_capture(shape, band, level, 4, 0);  // 1.35 is about the red response over the infrared one
+}
+}  // namespace
+
+// One pair of frames may serve both bands: each line is found in its own window, and neither bends the other.
+TEST(SpectrumCapture, TwoLinesInOneFrameAreToldApart) {
+  const PhantomCertificate certificate = certificates().phantom;
+  for (const Band band : {Band::red, Band::infrared}) {
+    const Line alone = line_of_capture(spectrum_capture(nominal(band), band, 0.4, 4, 0), certificate).value();
+    const Line beside = line_of_capture(both_lines(band, 0.4, 0.8), certificate).value();
+    expect_within(beside.centroid_nm, alone.centroid_nm, 0.01);
+    expect_within(beside.width_nm, alone.width_nm, 0.03);
+  }
+}
+
+// The weak line is the one that is too dark, not the frame.
+TEST(SpectrumCapture, AWeakLineBesideABrightOneIsTooDark) {
+  const PhantomCertificate certificate = certificates().phantom;
+  EXPECT_EQ(line_of_capture(both_lines(Band::infrared, 0.8, 0.1), certificate).error().id, "spectrum_too_dark");
+  EXPECT_TRUE(line_of_capture(both_lines(Band::red, 0.8, 0.1), certificate));
+  EXPECT_EQ(line_of_capture(both_lines(Band::infrared, 0.8, 0.0), certificate).error().id, "spectrum_no_peak");
+}
+
+TEST(Exposure, LooksAtItsOwnLineAndSparesTheOther) {
+  const Model model = aq_20();
+  const PhantomCertificate certificate = certificates().phantom;
+  EXPECT_TRUE(advise_exposure(both_lines(Band::red, 0.44, 0.3), model, certificate).good);
+  const ExposureAdvice weak = advise_exposure(both_lines(Band::infrared, 0.44, 0.3), model, certificate);
+  EXPECT_TRUE(weak.usable);
+  EXPECT_FALSE(weak.good);
+  // The target would ask for 3.8 times; the red line leaves 80 % over 44 % and the offset.
+  expect_relative(weak.next_s.value(), 0.02 * 0.80 / (0.44 + 1000.0 / 65535.0), 0.02);
+  const ExposureAdvice most = advise_exposure(both_lines(Band::infrared, 0.785, 0.3), model, certificate);
+  EXPECT_TRUE(most.usable);
+  EXPECT_FALSE(most.next_s);
+}
