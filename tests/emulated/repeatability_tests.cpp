@@ -26,8 +26,8 @@ struct Line {
   double power_at_full_scale;  ///< puts the peak at full scale in 20 ms
   double from_nm, to_nm;       ///< where the clean line is above 1 % of its peak
 };
-const Line red{{661.5, 19.0, -0.15}, 1.0 / 0.45, 633.0, 685.0};
-const Line infrared{{942.8, 46.0, -0.10}, 2.5 / 0.35, 875.0, 995.0};
+const Line red_line{{661.5, 19.0, -0.15}, 1.0 / 0.45, 633.0, 685.0};
+const Line infrared_line{{942.8, 46.0, -0.10}, 2.5 / 0.35, 875.0, 995.0};
 
 /// Centroid by plain sums over the pixels inside the line.
 double centroid_nm(const Spectrum& light, const Spectrum& dark, const Line& line) {
@@ -60,8 +60,10 @@ double centroid_repeats_to_nm(const Line& line, double of_full_scale, int frames
 // say of which line; these are the infrared one's figures, whose light is spread over more pixels. The red one has
 // half of them, as shot noise (width / sqrt(electrons): 0.012 nm at 10 %) and read noise (0.007 nm) add up to.
 TEST(Repeatability, OfTheCentroidAsTheDesignSays) {
-  const double red_one = centroid_repeats_to_nm(red, 0.10, 1), red_four = centroid_repeats_to_nm(red, 0.30, 4);
-  const double one = centroid_repeats_to_nm(infrared, 0.10, 1), four = centroid_repeats_to_nm(infrared, 0.30, 4);
+  const double red_one = centroid_repeats_to_nm(red_line, 0.10, 1),
+               red_four = centroid_repeats_to_nm(red_line, 0.30, 4);
+  const double one = centroid_repeats_to_nm(infrared_line, 0.10, 1),
+               four = centroid_repeats_to_nm(infrared_line, 0.30, 4);
   std::printf("[  figures ] centroid, one frame at 10 %%: red %.4f, infrared %.4f nm\n", red_one, one);
   std::printf("[  figures ] centroid, four frames at 30 %%: red %.4f, infrared %.4f nm\n", red_four, four);
   EXPECT_NEAR(red_one, 0.014, 0.002);
