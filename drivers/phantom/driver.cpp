@@ -46,7 +46,7 @@ bool same_polynomial(const std::vector<double>& a, const std::vector<double>& b)
 
 /// Empty lines are no answers: a doubled LF makes one. "" when no whole line is there.
 std::string first_line_with_text(wire::LineReader& reader) {
-  while (auto line = reader.next())
+  for (auto line = reader.next(); line.has_value(); line = reader.next())
     if (!line->empty()) return *std::move(line);
   return {};
 }
