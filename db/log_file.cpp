@@ -19,6 +19,10 @@ sqlite3_file* log_of(Connection& connection) {
   return file;
 }
 
+/// SQLite's own VFS for Unix cuts the length of a write to 17 bits, since it never writes more than a page: a larger
+/// write ends as "disk full".
+constexpr std::size_t largest_piece = 1u << 16;
+
 void write_over(sqlite3_file& file, const std::string& path) {
   const auto demand = [&](int code) {
     if (code != SQLITE_OK) raise(nullptr, code, path + "-wal", "write the log again");
@@ -26,7 +30,7 @@ void write_over(sqlite3_file& file, const std::string& path) {
   sqlite3_int64 size = 0;
   demand(file.pMethods->xFileSize(&file, &size));
   if (size == 0) return;
-  std::vector<char> piece(1u << 20);
+  std::vector<char> piece(largest_piece);
   for (sqlite3_int64 at = 0; at < size; at += static_cast<sqlite3_int64>(piece.size())) {
     const int count = static_cast<int>(std::min<sqlite3_int64>(static_cast<sqlite3_int64>(piece.size()), size - at));
     demand(file.pMethods->xRead(&file, piece.data(), count, at));
