@@ -4,6 +4,7 @@
 #include <boost/asio/io_context.hpp>
 #include <boost/asio/signal_set.hpp>
 #include <csignal>
+#include <utility>
 
 #include "drivers/wire/asio_clock.h"
 #include "drivers/wire/thread_workers.h"
@@ -110,11 +111,15 @@ class TestRun {
 
   NestState state(const Line& line) const { return line.views().front().state; }
 
-  /// Waits until the nest is in a state; false when it took too long or somebody stops.
-  asio::awaitable<bool> reaches(const Line& line, NestState wanted) {
+  /// Waits until the nest is ready and empty; false when it took too long or somebody stops. A probe that an earlier
+  /// start left in it is taken out by the bench's hands, where there are any.
+  asio::awaitable<bool> becomes_empty(const Line& line) {
     const SteadyTime until = clock_.steady_now() + patience;
-    while (state(line) != wanted) {
+    bool took_out = false;
+    while (state(line) != NestState::empty) {
       if (interrupted_ || clock_.steady_now() >= until) co_return false;
+      if (hands_ && state(line) == NestState::occupied && !std::exchange(took_out, true))
+        static_cast<void>(hands_->take_out(options_.nest));  // what stays is told as the nest's own words
       co_await clock_.wait_until(clock_.steady_now() + look_pause);
     }
     co_return true;
@@ -122,7 +127,7 @@ class TestRun {
 
   asio::awaitable<void> conduct(Line& line) {
     tell_ = true;
-    const bool ready = co_await reaches(line, NestState::empty);
+    const bool ready = co_await becomes_empty(line);
     if (ready) {
       co_await test_one(line);
     } else if (!interrupted_) {

@@ -133,9 +133,11 @@ bool Beside::says(const std::string& text, double seconds) {
   return false;
 }
 
-int Beside::end() {
+int Beside::end() { return end_by(SIGTERM); }
+
+int Beside::end_by(int signal) {
   if (process_ <= 0) return status_;
-  kill(process_, SIGTERM);
+  kill(process_, signal);
   int waited = 0;
   waitpid(process_, &waited, 0);
   process_ = -1;

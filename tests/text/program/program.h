@@ -49,6 +49,8 @@ class Beside {
   std::string err() const;
   /// Asks it to end; its exit status.
   int end();
+  /// The same by another signal: SIGKILL leaves it no time for anything.
+  int end_by(int signal);
   pid_t process() const { return process_; }
 
  private:

@@ -2,6 +2,7 @@
 #include <gtest/gtest.h>
 
 #include <chrono>
+#include <csignal>
 #include <fstream>
 #include <memory>
 #include <thread>
@@ -212,6 +213,32 @@ TEST_F(Station, ARunThatIsInterruptedIsClosedOnDisk) {
   EXPECT_TRUE(run["verdict"] == "void" || run["verdict"] == "fail") << run;
   EXPECT_FALSE(run["cause_words"].get<std::string>().empty());
   EXPECT_EQ(ask({"ledger", "verify", ledger(), "--json"}).json()["open_runs"], 0);
+}
+
+// The station is killed in each part of a run: the next start closes what was open, and nothing is lost.
+TEST_F(Station, ARunWhoseStationIsKilledIsClosedAtTheNextStart) {
+  Beside bench{folder, {"bench", "--speed", "2"}, "bench"};
+  ASSERT_TRUE(bench.says("ready\n", 10)) << bench.err();
+  for (const std::string moment : {"is open", ": 1/", ": 2/", ": 3/", ": 4/"}) {
+    SCOPED_TRACE(moment);
+    Beside test{folder, {"test", serial, "--speed", "2"}, "test"};
+    for (int tries = 0; tries < 2000 && test.err().find(moment) == std::string::npos; ++tries)
+      std::this_thread::sleep_for(std::chrono::milliseconds{5});
+    ASSERT_THAT(test.err(), HasSubstr(moment));
+    test.end_by(SIGKILL);
+    const auto left = ask({"ledger", "verify", ledger(), "--json"}).json();
+    EXPECT_EQ(left["ok"], true);
+    EXPECT_EQ(left["open_runs"], 1);
+    const auto next = ask({"test", "AQ20-048-00002", "--speed", "2"});  // the hands take the other probe out first
+    EXPECT_EQ(next.status, 0) << next.err;
+    EXPECT_THAT(next.err, HasSubstr("was closed as void"));
+    const auto after = ask({"ledger", "verify", ledger(), "--json"}).json();
+    EXPECT_EQ(after["ok"], true);
+    EXPECT_EQ(after["open_runs"], 0);
+  }
+  const auto runs = ask({"trace", serial, "--json"}).json()["runs"];
+  EXPECT_EQ(runs.size(), 5u);
+  for (const auto& run : runs) EXPECT_EQ(run["verdict"], "void");
 }
 
 TEST_F(Station, WithoutABenchTheTestSaysWhatIsMissing) {
