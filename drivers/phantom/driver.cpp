@@ -46,9 +46,13 @@ bool same_polynomial(const std::vector<double>& a, const std::vector<double>& b)
 
 /// Empty lines are no answers: a doubled LF makes one. "" when no whole line is there.
 std::string first_line_with_text(wire::LineReader& reader) {
-  for (auto line = reader.next(); line.has_value(); line = reader.next())
-    if (!line->empty()) return *std::move(line);
-  return {};
+  std::string text;
+  while (text.empty()) {
+    std::optional<std::string> line = reader.next();
+    if (!line) break;
+    text = std::move(*line);
+  }
+  return text;
 }
 
 std::string in_words(const std::vector<double>& polynomial) {
