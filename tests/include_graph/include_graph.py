@@ -10,7 +10,7 @@ import re
 import sys
 from pathlib import Path
 
-from rules import LAYERS, LIBRARIES, STD_ONLY_OUTSIDE, TEST_EXTRAS
+from rules import LAYERS, LIBRARIES, STD_ONLY_OUTSIDE, TEST_EXTRAS, TEST_REACH
 
 INCLUDE = re.compile(r'^\s*#\s*include\s*(?:"([^"]+)"|<([^>]+)>)')
 TOP_FOLDERS = ("station", "drivers", "limits", "db", "tests")
@@ -47,10 +47,8 @@ def tested_layer(name):
     parts = name.split("/")
     if parts[0] != "tests" or len(parts) < 3:
         return None
-    for layer in LAYERS:
-        if layer.rpartition("/")[2] == parts[1]:
-            return layer
-    return None
+    by_name = {layer.rpartition("/")[2]: layer for layer in LAYERS}
+    return TEST_REACH.get(parts[1]) or by_name.get(parts[1])
 
 
 def allowed_folders(name):
@@ -62,6 +60,7 @@ def allowed_folders(name):
     own = {"/".join(name.split("/")[:2])}
     layers = LAYERS[layer] | {layer} if layer else set()
     helpers = {"tests/" + below.rpartition("/")[2] for below in layers}
+    helpers |= {"tests/" + folder for folder, reach in TEST_REACH.items() if reach in layers}
     return own | helpers | TEST_EXTRAS | {"station/base"} | layers
 
 

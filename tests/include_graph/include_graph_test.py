@@ -62,6 +62,12 @@ class IncludeGraph(unittest.TestCase):
         self.expect({"tests/wire/trial.h": "#pragma once\n", "tests/phantom/x.cpp": '#include "tests/wire/trial.h"\n'})
         self.expect({"tests/db/trial.h": "#pragma once\n", "tests/limits/x.cpp": '#include "tests/db/trial.h"\n'}, "lies on no arrow")
 
+    def test_tests_of_no_single_layer(self):
+        world = {"tests/trial/world.h": '#pragma once\n#include "db/store.h"\n'}
+        self.expect({**world, "tests/sequence/x.cpp": '#include "tests/trial/world.h"\n'})
+        self.expect({**world, "tests/faults/x.cpp": '#include "tests/trial/world.h"\n'})
+        self.expect({**world, "tests/limits/x.cpp": '#include "tests/trial/world.h"\n'}, "lies on no arrow")
+
     def test_an_include_that_is_not_written_from_the_top(self):
         self.expect({"db/x.cpp": '#include "store.h"\n'}, "db/x.cpp:1: there is no store.h")
 

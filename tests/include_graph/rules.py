@@ -29,6 +29,9 @@ LAYERS = {
 # The program's own files beside main.cpp wire everything together.
 LAYERS["station"] = set(LAYERS)
 
+# Folders of tests that test no single layer, and the layer down to which they see.
+TEST_REACH = {"trial": "station/sequence", "faults": "station/sequence"}
+
 # A test folder may use the layer that it tests, all below it, the test folders of those, what tests share, and the
 # emulated bench. A file beside it needs no path.
 TEST_EXTRAS = {"tests/support", "drivers/emulated", "drivers/wire"}
