@@ -48,6 +48,7 @@ struct RunOutcome {
   int nest = 0;
   std::string serial;
   Purpose purpose = Purpose::engineering;
+  bool emulated = false;  ///< any device said so: a demonstration, whatever the verdict
   RunVerdict verdict = RunVerdict::void_run;
   std::string cause;        ///< slug: "limits", "completed", "stopped_by_person", "lid_opened", "device_lost" ...
   std::string cause_words;  ///< one sentence

@@ -149,6 +149,7 @@ RunOutcome RunBook::outcome_of(const Ending& ending) const {
   outcome.nest = opening_.nest;
   outcome.serial = opening_.serial;
   outcome.purpose = find_purpose(opening_.purpose).value_or(Purpose::engineering);
+  outcome.emulated = opening_.emulated;
   outcome.verdict = verdict_of(ending.by, sheet.pass, any_outside());
   outcome.cause = ending.cause;
   outcome.cause_words = ending.words;

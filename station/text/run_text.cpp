@@ -55,6 +55,7 @@ std::string headline(const RunOutcome& outcome) {
 
 std::string run_text(const RunOutcome& outcome) {
   std::string text = headline(outcome);
+  if (outcome.emulated) text += "DEMONSTRATION, made on an emulated bench\n";
   if (!outcome.cause_words.empty()) text += outcome.cause_words + "\n";
   for (const JudgedReading& judged : outcome.readings)
     for (const std::string& failing : outcome.failing)
@@ -84,7 +85,7 @@ Json run_json(const RunOutcome& outcome) {
   for (const std::string& check : outcome.failing) failing.add(check);
   Json json = Json::object();
   json.set("format", 1).set("run", outcome.run).set("serial", outcome.serial).set("nest", outcome.nest);
-  json.set("purpose", slug(outcome.purpose)).set("verdict", slug(outcome.verdict));
+  json.set("purpose", slug(outcome.purpose)).set("emulated", outcome.emulated).set("verdict", slug(outcome.verdict));
   json.set("cause", outcome.cause).set("cause_words", outcome.cause_words).set("failing", std::move(failing));
   json.set("cycle_s", seconds(outcome.cycle)).set("asked_again", outcome.asked_again);
   json.set("entry", outcome.closing_entry).set("seal", to_hex(outcome.seal)).set("readings", std::move(readings));

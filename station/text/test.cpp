@@ -21,8 +21,8 @@ namespace {
 namespace asio = boost::asio;
 using namespace sequence;
 
-/// How long the nest may take to become ready, and a probe to be taken out, real time.
-constexpr Duration patience = std::chrono::seconds(20);
+/// How long the devices may take to be found, and a probe to be taken out, real time.
+constexpr Duration find_patience = std::chrono::seconds(6), patience = std::chrono::seconds(20);
 constexpr Duration look_pause = std::chrono::milliseconds(20);
 
 /// One run in one nest, from the scan to the verdict on disk. Everything it needs stands in the order in which it
@@ -114,10 +114,11 @@ class TestRun {
   /// Waits until the nest is ready and empty; false when it took too long or somebody stops. A probe that an earlier
   /// start left in it is taken out by the bench's hands, where there are any.
   asio::awaitable<bool> becomes_empty(const Line& line) {
-    const SteadyTime until = clock_.steady_now() + patience;
+    const SteadyTime start = clock_.steady_now();
     bool took_out = false;
     while (state(line) != NestState::empty) {
-      if (interrupted_ || clock_.steady_now() >= until) co_return false;
+      const Duration waits = state(line) == NestState::not_ready ? find_patience : patience;
+      if (interrupted_ || clock_.steady_now() >= start + waits) co_return false;
       if (hands_ && state(line) == NestState::occupied && !std::exchange(took_out, true))
         static_cast<void>(hands_->take_out(options_.nest));  // what stays is told as the nest's own words
       co_await clock_.wait_until(clock_.steady_now() + look_pause);
