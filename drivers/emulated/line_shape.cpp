@@ -53,7 +53,7 @@ LineShape line_of(double centroid_nm, double fwhm_nm, double skew) {
 double centroid_above_nm(const LineShape& line, double threshold, double window_low_nm, double window_high_nm) {
   const double low = std::max(line.edge_nm(threshold, -1), window_low_nm);
   const double high = std::min(line.edge_nm(threshold, +1), window_high_nm);
-  constexpr int intervals = 4096;
+  constexpr int intervals = 1024;
   const double step = (high - low) / intervals;
   double area = 0.0, moment = 0.0;
   for (int i = 0; i <= intervals; ++i) {

@@ -26,7 +26,7 @@ struct LineShape {
 LineShape line_of(double centroid_nm, double fwhm_nm, double skew);
 
 /// Centroid over the part of the line that is above `threshold` (0 to 1) of its peak and inside the window, in nm.
-/// Simpson's rule on 4096 intervals.
+/// Simpson's rule on 1024 intervals.
 double centroid_above_nm(const LineShape& line, double threshold, double window_low_nm, double window_high_nm);
 
 }  // namespace probewright::emulated
