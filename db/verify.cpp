@@ -105,7 +105,7 @@ void keep_first(std::optional<Fault>& first, const std::optional<Fault>& other) 
 /// The chain and all that hangs on it, in the calling thread.
 ChainWalk chain_part(Connection& connection, const VerifyOptions& options) {
   ChainWalk walk = walk_chain(connection, 1);
-  keep_first(walk.fault, find_orphans(connection));
+  keep_first(walk.fault, stray_projected_row(connection));
   if (options.printed) keep_first(walk.fault, printed_fault(connection, *options.printed, walk.seal.entry));
   return walk;
 }
@@ -130,6 +130,7 @@ VerifyReport walk_all(Connection& connection, Connection* second, const VerifyOp
   report.captures = runs.captures;
   report.first_fault = chain.fault;
   keep_first(report.first_fault, runs.fault);
+  if (!report.first_fault) report.first_fault = stray_run_row(connection);
   if (!report.first_fault) report.first_fault = page_fault(connection);
   return report;
 }

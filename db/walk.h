@@ -17,8 +17,10 @@ struct ChainWalk {
 /// Entries from number `from` to the newest, each with its hash, its own columns and its rows in projected tables.
 /// Stops at the first fault.
 ChainWalk walk_chain(Connection& connection, std::int64_t from);
-/// Rows of projected tables, readings and captures that belong to nothing.
-std::optional<Fault> find_orphans(Connection& connection);
+/// A row of a projected table whose entry is not there.
+std::optional<Fault> stray_projected_row(Connection& connection);
+/// A reading or capture without its run, or bytes without their capture.
+std::optional<Fault> stray_run_row(Connection& connection);
 
 /// What a walk over runs found.
 struct RunWalk {

@@ -115,28 +115,18 @@ std::optional<Digest> hash_before(Connection& connection, std::int64_t from) {
   return row.digest(0);
 }
 
-struct OrphanQuestion {
-  std::string table, key, sql;
-};
+/// The lowest key of a table's rows for which `counterpart` finds nothing.
+std::optional<std::int64_t> lowest_stray(Connection& connection, const std::string& table, const std::string& key,
+                                         const std::string& counterpart) {
+  Statement statement(connection, "SELECT min(" + key + ") FROM " + table + " AS t WHERE NOT EXISTS (SELECT 1 FROM " +
+                                      counterpart + " = t." + key + ")");
+  Row row = statement.begin();
+  if (!row.step() || row.is_null(0)) return std::nullopt;
+  return row.integer(0);
+}
 
-/// The first key of a table that has no counterpart.
-std::vector<OrphanQuestion> orphan_questions() {
-  std::vector<OrphanQuestion> questions;
-  for (const ProjectedTable& table : projected_tables()) {
-    const std::string name = table.table, key = table.entry_key;
-    questions.push_back({name, key,
-                         "SELECT min(" + key + ") FROM " + name + " AS t WHERE NOT EXISTS (SELECT 1 FROM entry AS e " +
-                             "WHERE e.number = t." + key + " AND e.kind = '" + table.kind + "')"});
-  }
-  const auto child = [&](std::string table, std::string key, const std::string& parent, const std::string& parent_key) {
-    questions.push_back({table, key,
-                         "SELECT min(" + key + ") FROM " + table + " AS t WHERE NOT EXISTS (SELECT 1 FROM " + parent +
-                             " AS p WHERE p." + parent_key + " = t." + key + ")"});
-  };
-  child("reading", "run", "run_opened", "run");
-  child("capture", "run", "run_opened", "run");
-  child("capture_bytes", "capture", "capture", "number");
-  return questions;
+Fault stray(std::int64_t entry, const std::string& table, const std::string& key, std::int64_t value) {
+  return {entry, table, key + " " + std::to_string(value), key, "belongs to nothing"};
 }
 
 }  // namespace
@@ -164,13 +154,22 @@ ChainWalk walk_chain(Connection& connection, std::int64_t from) {
   return walk;
 }
 
-std::optional<Fault> find_orphans(Connection& connection) {
-  for (const auto& [table, key, sql] : orphan_questions()) {
-    Statement statement(connection, sql);
-    Row row = statement.begin();
-    if (row.step() && !row.is_null(0))
-      return Fault{row.integer(0), table, key + " " + std::to_string(row.integer(0)), key, "belongs to nothing"};
+std::optional<Fault> stray_projected_row(Connection& connection) {
+  std::optional<Fault> first;
+  for (const ProjectedTable& table : projected_tables()) {
+    const std::string of_kind = "entry AS e WHERE e.kind = '" + std::string{table.kind} + "' AND e.number";
+    const auto key = lowest_stray(connection, table.table, table.entry_key, of_kind);
+    if (key && (!first || *key < first->entry)) first = stray(*key, table.table, table.entry_key, *key);
   }
+  return first;
+}
+
+std::optional<Fault> stray_run_row(Connection& connection) {
+  for (const char* table : {"reading", "capture"})
+    if (const auto run = lowest_stray(connection, table, "run", "run_opened AS o WHERE o.run"))
+      return stray(*run, table, "run", *run);
+  if (const auto capture = lowest_stray(connection, "capture_bytes", "capture", "capture AS c WHERE c.number"))
+    return stray(0, "capture_bytes", "capture", *capture);
   return std::nullopt;
 }
 

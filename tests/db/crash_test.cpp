@@ -62,12 +62,30 @@ void work(MemoryDisk& disk, Told& told, int runs, int first = 1) {
   }
 }
 
+/// A ledger that was begun and closed, so that each trial need not begin one.
+const Bytes& begun() {
+  static const Bytes image = [] {
+    MemoryDisk disk;
+    Told told;
+    work(disk, told, 0);
+    return disk.content("ledger.db");
+  }();
+  return image;
+}
+
+std::unique_ptr<MemoryDisk> begun_disk(const DiskFaults& faults = {}) {
+  auto disk = std::make_unique<MemoryDisk>();
+  disk->put("ledger.db", begun());
+  disk->set_faults(faults);
+  return disk;
+}
+
 void expect_whole(const RunRecord& run) {
   EXPECT_EQ(run.readings.size(), run.captures.size() == captures_of_run ? readings_of_run : 0u);
   if (run.closing) EXPECT_EQ(run.readings.size(), readings_of_run);
 }
 
-/// Opens the disk as the next start does, and checks what must hold. True where the ledger opened.
+/// Opens the disk as the next start does, and checks what must hold.
 void expect_sound(MemoryDisk& disk, const Told& told, const std::string& story) {
   SCOPED_TRACE(story);
   MemoryVfs vfs(disk, "look");
@@ -96,8 +114,7 @@ void expect_sound(MemoryDisk& disk, const Told& told, const std::string& story) 
   EXPECT_TRUE(report->ok()) << canonical(report_body(*report));
 }
 
-DiskCounts count_calls(int runs) {
-  MemoryDisk disk;
+DiskCounts count_calls(MemoryDisk& disk, int runs) {
   Told told;
   work(disk, told, runs);
   EXPECT_EQ(told.closed.size(), static_cast<std::size_t>(runs));
@@ -126,35 +143,43 @@ TEST(Crash, TheModelLosesWhatWasNotSynced) {
   EXPECT_GT(lost, 10) << "a model that loses nothing shows nothing";
 }
 
-TEST(Crash, StoppedAtEveryOperationNothingToldIsMissing) {
-  const std::int64_t operations = count_calls(2).operations();
-  for (std::int64_t at = 1; at <= operations && !HasFatalFailure(); ++at) {
-    MemoryDisk disk;
+void stop_at_each(bool with_begin, int runs) {
+  const auto start = [&](const DiskFaults& faults) {
+    if (!with_begin) return begun_disk(faults);
+    auto disk = std::make_unique<MemoryDisk>();
+    disk->set_faults(faults);
+    return disk;
+  };
+  const std::int64_t operations = count_calls(*start({}), runs).operations();
+  for (std::int64_t at = 1; at <= operations && !testing::Test::HasFatalFailure(); ++at) {
     DiskFaults faults;
     faults.die_at = at;
-    disk.set_faults(faults);
+    const auto disk = start(faults);
     Told told;
-    work(disk, told, 2);
-    const auto survivor = disk.after_crash(static_cast<std::uint64_t>(at));
+    work(*disk, told, runs);
+    const auto survivor = disk->after_crash(static_cast<std::uint64_t>(at));
     expect_sound(*survivor, told, "stopped at operation " + std::to_string(at));
   }
   std::printf("stopped at each of %lld operations\n", static_cast<long long>(operations));
 }
+
+TEST(Crash, StoppedAtEveryOperationWhileALedgerBegins) { stop_at_each(true, 0); }
+
+TEST(Crash, StoppedAtEveryOperationOfTwoRuns) { stop_at_each(false, 2); }
 
 /// Fails one call in turn, works until the store says trouble, starts again on the same machine, works on, and then the
 /// power goes: all that was told, before and after, is there.
 void fail_each(std::int64_t calls, std::int64_t DiskFaults::*which, bool from_then_on, const std::string& name) {
   int troubled = 0;
   for (std::int64_t at = 1; at <= calls && !testing::Test::HasFatalFailure(); ++at) {
-    MemoryDisk disk;
     DiskFaults faults;
     faults.*which = at;
     faults.from_then_on = from_then_on;
-    disk.set_faults(faults);
+    const auto disk = begun_disk(faults);
     Told told;
-    work(disk, told, 2);
-    troubled += told.closed.size() < 2;
-    const auto again = disk.after_restart();
+    work(*disk, told, 1);
+    troubled += told.closed.empty();
+    const auto again = disk->after_restart();
     Told later;
     work(*again, later, 1, 100);
     ASSERT_EQ(later.closed.size(), 1u) << name << " " << at;
@@ -168,30 +193,56 @@ void fail_each(std::int64_t calls, std::int64_t DiskFaults::*which, bool from_th
               troubled);
 }
 
-TEST(Crash, EachWriteFailing) { fail_each(count_calls(2).writes, &DiskFaults::fail_write, false, "write failing"); }
+DiskCounts calls_of_one_run() { return count_calls(*begun_disk(), 1); }
+
+TEST(Crash, EachWriteFailing) { fail_each(calls_of_one_run().writes, &DiskFaults::fail_write, false, "write failing"); }
 
 TEST(Crash, EachWriteFailingFromThenOn) {
-  fail_each(count_calls(2).writes, &DiskFaults::fail_write, true, "every write failing from");
+  fail_each(calls_of_one_run().writes, &DiskFaults::fail_write, true, "every write failing from");
 }
 
-TEST(Crash, EachWriteCutShort) { fail_each(count_calls(2).writes, &DiskFaults::short_write, false, "write cut short"); }
+TEST(Crash, EachWriteCutShort) {
+  fail_each(calls_of_one_run().writes, &DiskFaults::short_write, false, "write cut short");
+}
 
 TEST(Crash, EachSyncFailing) {
-  fail_each(count_calls(2).syncs, &DiskFaults::fail_sync, false, "sync failing");
-  fail_each(count_calls(2).syncs, &DiskFaults::fail_sync, true, "every sync failing from");
+  fail_each(calls_of_one_run().syncs, &DiskFaults::fail_sync, false, "sync failing");
+  fail_each(calls_of_one_run().syncs, &DiskFaults::fail_sync, true, "every sync failing from");
 }
 
-TEST(Crash, TheNextStartAfterAFailedSyncStoppedAtEachOperation) {
-  const std::int64_t syncs = count_calls(2).syncs;
-  for (std::int64_t sync = 4; sync <= syncs && !HasFatalFailure(); sync += 2) {
-    MemoryDisk disk;
+TEST(Crash, EachCallFailingWhileALedgerBegins) {
+  MemoryDisk whole;
+  const DiskCounts calls = count_calls(whole, 0);
+  const auto begin_with = [](std::int64_t DiskFaults::*which, std::int64_t at) {
     DiskFaults faults;
-    faults.fail_sync = sync;
+    faults.*which = at;
+    MemoryDisk disk;
     disk.set_faults(faults);
     Told told;
-    work(disk, told, 2);
-    for (std::int64_t at = 1; !HasFatalFailure(); ++at) {
-      const auto again = disk.after_restart();
+    work(disk, told, 0);
+    const auto again = disk.after_restart();
+    work(*again, told, 0);
+    ASSERT_FALSE(told.seals.empty()) << "call " << at;
+    const auto survivor = again->after_crash(static_cast<std::uint64_t>(at));
+    expect_sound(*survivor, told, "call " + std::to_string(at) + " failed");
+  };
+  for (std::int64_t at = 1; at <= calls.writes && !HasFatalFailure(); ++at) begin_with(&DiskFaults::fail_write, at);
+  for (std::int64_t at = 1; at <= calls.syncs && !HasFatalFailure(); ++at) begin_with(&DiskFaults::fail_sync, at);
+}
+
+// A log that could be read but was no longer going to be saved was copied into the file; the power went in the midst of
+// it, and the file was torn with no log to mend it. The next start writes such a log again first.
+TEST(Crash, TheNextStartAfterAFailedSyncStoppedAtEachOperation) {
+  const std::int64_t syncs = calls_of_one_run().syncs;
+  int stops = 0;
+  for (std::int64_t sync = 1; sync <= syncs && !HasFatalFailure(); ++sync) {
+    DiskFaults faults;
+    faults.fail_sync = sync;
+    const auto disk = begun_disk(faults);
+    Told told;
+    work(*disk, told, 1);
+    for (std::int64_t at = 1; !HasFatalFailure(); ++at, ++stops) {
+      const auto again = disk->after_restart();
       DiskFaults stop;
       stop.die_at = at;
       again->set_faults(stop);
@@ -203,23 +254,21 @@ TEST(Crash, TheNextStartAfterAFailedSyncStoppedAtEachOperation) {
                    "sync " + std::to_string(sync) + " failed, next start stopped at " + std::to_string(at));
     }
   }
+  std::printf("%lld syncs failed in turn, the next start stopped at %d operations\n", static_cast<long long>(syncs),
+              stops);
 }
 
 TEST(Crash, ADiskThatIsFullAtEachSize) {
-  MemoryDisk whole;
-  Told all;
-  work(whole, all, 2);
   int full = 0;
-  for (std::int64_t size = 4096; size < 400'000 && !HasFatalFailure(); size += 4096 + 512) {
-    MemoryDisk disk;
+  for (auto size = static_cast<std::int64_t>(begun().size());; size += 4096 + 512) {
     DiskFaults faults;
     faults.full_at = size;
-    disk.set_faults(faults);
+    const auto disk = begun_disk(faults);
     Told told;
-    work(disk, told, 2);
-    if (told.closed.size() == 2) break;
+    work(*disk, told, 2);
+    if (told.closed.size() == 2 || HasFatalFailure()) break;
     ++full;
-    const auto survivor = disk.after_restart();
+    const auto survivor = disk->after_restart();
     expect_sound(*survivor, told, "disk full at " + std::to_string(size));
   }
   EXPECT_GT(full, 10);
