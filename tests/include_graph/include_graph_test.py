@@ -117,6 +117,15 @@ class IncludeGraph(unittest.TestCase):
         self.expect({"station/text/x.cpp": "#include <qcustomplot.h>\n"}, "<qcustomplot.h> is not for this folder")
         self.expect({"station/windows/x.cpp": "#include <QLabel>\n#include <QtWidgets/QPushButton>\n#include <qcustomplot.h>\n"})
 
+    def test_pages_know_no_ledger(self):
+        self.expect({"station/pages/x.cpp": '#include "db/store.h"\n'}, "station/pages/x.cpp:1: db/store.h lies on no arrow")
+        self.expect({"station/pages/x.cpp": '#include "station/base/units.h"\n#include <QPainter>\n#include <zint.h>\n',
+                     "tests/pages/x.cpp": "#include <QProcess>\n"})
+
+    def test_codes_outside_pages(self):
+        self.expect({"station/text/x.cpp": "#include <zint.h>\n"}, "<zint.h> is not for this folder")
+        self.expect({"station/pages/x.h": "#pragma once\n#include <zint.h>\n"}, "<zint.h> is not for headers")
+
     def test_a_header_that_may_be_read_twice(self):
         self.expect({"db/x.h": "\n"}, "db/x.h:1: no #pragma once")
 

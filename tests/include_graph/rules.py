@@ -22,7 +22,7 @@ LAYERS = {
     "station/sequence/production": ROUTINE | {"drivers/emulated"},
     "station/tuning": FROM_THE_LEDGER,
     "station/trace": FROM_THE_LEDGER,
-    "station/pages": READERS,
+    "station/pages": BASE,
     "station/text": ROUTINE | READERS,
     "station/windows": ROUTINE | READERS | {"station/pages"},
 }
@@ -71,6 +71,7 @@ LIBRARIES = [
             headers=False),
     Library(r"(sqlite3|zstd)\.h", "the ledger's storage stays behind db", folders={"db"}),
     Library(r"openssl/.*", "hashes and signatures stay behind db", folders={"db"}),
+    Library(r"zint\.h", "codes are drawn in pages", folders={"station/pages"}, at_most=1, headers=False),
     Library(r"QtWidgets", "the umbrella header takes seconds; name the class", folders=set()),
     Library(r"qcustomplot\.h", "plots stand in pages and windows", folders={"station/pages", "station/windows"}),
     Library(r"Q[A-Z]\w*|Qt\w+/.*", "the tool kit stays in pages, windows and main", folders=DRAWN),

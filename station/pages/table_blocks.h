@@ -1,0 +1,28 @@
+#pragma once
+#include <string>
+#include <vector>
+
+#include "station/pages/paper.h"
+
+/// Blocks of text and tables. Private to pages. Main thread only.
+namespace probewright::pages {
+
+struct Column {
+  std::string title;
+  double width_mm = 0.0;
+  Align align = Align::left;
+};
+
+using Cells = std::vector<std::string>;
+
+/// A head and a block for each row. Cells wrap within their column; the head stands again on each page.
+std::vector<Block> table(const std::vector<Column>& columns, const std::vector<Cells>& rows);
+
+/// A heading that stays with what follows it.
+Block heading(const std::string& text);
+/// White space.
+Block gap(double height_mm);
+/// One block a line, wrapped at the column's width.
+std::vector<Block> paragraph(const std::string& text, double size_mm, QColor colour);
+
+}  // namespace probewright::pages
