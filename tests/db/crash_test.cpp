@@ -1,7 +1,10 @@
 // A machine that stops at any write, a disk that fails at any write, sync or truncation: what was told as committed is
 // there at the next start, the chain verifies, no run is half there.
 #include <gtest/gtest.h>
+#include <sys/wait.h>
+#include <unistd.h>
 
+#include <csignal>
 #include <functional>
 
 #include "db/memory_vfs.h"
@@ -238,6 +241,7 @@ TEST(Crash, TheNextStartAfterAFailedSyncStoppedAtEachOperation) {
   for (std::int64_t sync = 1; sync <= syncs && !HasFatalFailure(); ++sync) {
     DiskFaults faults;
     faults.fail_sync = sync;
+    faults.from_then_on = true;  // so that closing cannot clear the log away either
     const auto disk = begun_disk(faults);
     Told told;
     work(*disk, told, 1);
@@ -249,7 +253,7 @@ TEST(Crash, TheNextStartAfterAFailedSyncStoppedAtEachOperation) {
       Told ignored;
       work(*again, ignored, 0);
       if (!again->dead()) break;
-      const auto survivor = again->after_crash(static_cast<std::uint64_t>(at));
+      const auto survivor = again->after_crash(static_cast<std::uint64_t>(sync * 1000 + at));
       expect_sound(*survivor, told,
                    "sync " + std::to_string(sync) + " failed, next start stopped at " + std::to_string(at));
     }
@@ -272,6 +276,44 @@ TEST(Crash, ADiskThatIsFullAtEachSize) {
     expect_sound(*survivor, told, "disk full at " + std::to_string(size));
   }
   EXPECT_GT(full, 10);
+}
+
+// On real files: the process is killed with its log beside the file, the next one takes over lease and log.
+TEST(Crash, AKilledProcessLeavesWhatItToldAndNoLease) {
+  Folder folder;
+  const std::string path = folder.file("ledger.db");
+  int ends[2];
+  ASSERT_EQ(pipe(ends), 0);
+  const pid_t child = fork();
+  if (child == 0) {
+    HandClock clock;
+    auto store = open(options(path), clock);
+    SeededEntropy entropy(2);
+    whole_run(*store, "AQ20-048-00001", entropy);
+    demand(store->commit([](Change& change) { change.open_run(opening("AQ20-048-00002")); }));
+    const Seal seal = store->seal();
+    if (write(ends[1], &seal, sizeof seal) == static_cast<ssize_t>(sizeof seal)) ::kill(getpid(), SIGKILL);
+    _exit(1);
+  }
+  ASSERT_GT(child, 0);
+  Seal told;
+  ASSERT_EQ(read(ends[0], &told, sizeof told), static_cast<ssize_t>(sizeof told));
+  close(ends[0]), close(ends[1]);
+  int status = 0;
+  ASSERT_EQ(waitpid(child, &status, 0), child);
+  EXPECT_TRUE(WIFSIGNALED(status));
+  ASSERT_GT(std::filesystem::file_size(path + "-wal"), 0u);
+  {
+    HandClock clock;
+    auto store = open(options(path), clock);
+    EXPECT_EQ(store->seal(), told);
+    Reader reader = store->reader();
+    ASSERT_EQ(open_runs(reader).size(), 1u);
+    EXPECT_EQ(open_runs(reader)[0].serial, "AQ20-048-00002");
+  }
+  VerifyOptions look;
+  look.printed = told;
+  EXPECT_TRUE(verify(path, look)->ok());
 }
 
 TEST(Crash, AStoreWithTroubleTakesNothingMore) {
