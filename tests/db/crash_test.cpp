@@ -289,7 +289,8 @@ TEST(Crash, AKilledProcessLeavesWhatItToldAndNoLease) {
     HandClock clock;
     auto store = open(options(path), clock);
     SeededEntropy entropy(2);
-    whole_run(*store, "AQ20-048-00001", entropy);
+    for (const char* serial : {"AQ20-048-00001", "AQ20-048-00003", "AQ20-048-00004"})
+      whole_run(*store, serial, entropy);
     demand(store->commit([](Change& change) { change.open_run(opening("AQ20-048-00002")); }));
     const Seal seal = store->seal();
     if (write(ends[1], &seal, sizeof seal) == static_cast<ssize_t>(sizeof seal)) ::kill(getpid(), SIGKILL);
@@ -302,7 +303,8 @@ TEST(Crash, AKilledProcessLeavesWhatItToldAndNoLease) {
   int status = 0;
   ASSERT_EQ(waitpid(child, &status, 0), child);
   EXPECT_TRUE(WIFSIGNALED(status));
-  ASSERT_GT(std::filesystem::file_size(path + "-wal"), 0u);
+  // A log of more than 128 KiB could not be written again at first: SQLite's own VFS writes at most so much at once.
+  ASSERT_GT(std::filesystem::file_size(path + "-wal"), 131072u);
   {
     HandClock clock;
     auto store = open(options(path), clock);
