@@ -467,7 +467,7 @@ constexpr std::array rows = std::to_array<ProblemRow>({
     {"page_no_font", not_ready, "the font {font} is not installed", "install the Debian package fonts-dejavu-core"},
     {"page_not_written", refused_input, "the page could not be written: {reason}",
      "check the path, its permissions and the space on the disk"},
-    {"page_size_lost", our_bug, "the page did not come out as large as it should",
+    {"page_not_finished", our_bug, "size or time could not be written into the page",
      "report this as a mistake in the program, with the version of Qt"},
     {"code_not_made", refused_input, "no code can be made of \"{text}\": {reason}", "shorten it, or mend what is said"},
     {"label_not_passed", refused_input,

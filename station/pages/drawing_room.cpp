@@ -2,10 +2,24 @@
 
 #include <QApplication>
 #include <QFontDatabase>
+#include <QLoggingCategory>
+#include <utility>
 
 #include "station/pages/canvas.h"
 
 namespace probewright::pages {
+
+namespace {
+
+// At its start the tool kit says so where it finds no folder for sockets. Drawing needs none, and what a command prints
+// is read by programs. Only the start is quiet: a category's rule holds for all that is said in it.
+class QuietStart {
+ public:
+  QuietStart() { QLoggingCategory::setFilterRules("default.warning=false"); }
+  ~QuietStart() { QLoggingCategory::setFilterRules({}); }
+};
+
+}  // namespace
 
 struct DrawingRoom::Application {
   // The tool kit keeps references to both for as long as it lives.
@@ -14,7 +28,10 @@ struct DrawingRoom::Application {
   char option[10] = "-platform";
   char platform[10] = "offscreen";
   char* words[4] = {name, option, platform, nullptr};
+  std::optional<QuietStart> quiet{std::in_place};
   QApplication application{count, words};
+
+  Application() { quiet.reset(); }
 };
 
 DrawingRoom::DrawingRoom() {

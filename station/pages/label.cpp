@@ -90,6 +90,7 @@ Result<Label> Label::of(const PassLabel& wanted, LabelSize size) {
   label.serial_ = wanted.serial;
   label.lot_ = wanted.lot;
   label.copy_ = wanted.copy;
+  label.printed_ = wanted.printed;
   if (wanted.gtin.empty()) {
     label.kind_ = Kind::pass_with_serial;
     label.production_date_ = wanted.production_date;
@@ -125,6 +126,7 @@ Result<Label> Label::of(const FailLabel& wanted, LabelSize size) {
   label.overprint_ = overprint_of(wanted.run.purpose, wanted.run.emulated);
   label.coded_ = wanted.internal_code;
   label.copy_ = wanted.copy;
+  label.printed_ = wanted.printed;
   label.code_ = *code;
   return label;
 }

@@ -3,6 +3,7 @@
 #include <string>
 
 #include "station/base/result.h"
+#include "station/base/times.h"
 #include "station/pages/barcode.h"
 
 namespace probewright::pages {
@@ -28,12 +29,14 @@ struct PassLabel {
   std::string production_date;  ///< in the plant's zone, "2026-12-01"
   std::string gtin;             ///< GTIN-8, 12, 13 or 14 of the model; empty: it has none
   int copy = 1;                 ///< 2 and more: a reprint, and the label says so
+  UtcTime printed{};            ///< when; stands in the file, not on the label
 };
 
 struct FailLabel {
   LabelRun run;
   std::string internal_code;  ///< the plant's own, 1 to 20 characters; nothing that a till could take for a GTIN
   int copy = 1;
+  UtcTime printed{};
 };
 
 /// A label that may be made: checked, encoded, ready to be drawn. There is no other way to one.
@@ -55,8 +58,9 @@ class Label {
   /// What a reader gets from the code: the element string, the serial or the internal code.
   const std::string& coded() const { return coded_; }
 
-  /// One page, exactly as large as the label, all vectors. An older file is replaced whole.
-  /// Errors: page_no_application, page_no_font, label_too_small, page_not_written.
+  /// One page, exactly as large as the label, all vectors. An older file is replaced whole. The
+  /// same label with the same tool kit gives the same bytes.
+  /// Errors: page_no_application, page_no_font, label_too_small, page_not_finished, page_not_written.
   Result<void> write_pdf(const std::filesystem::path& path) const;
   /// Grey levels at the printer's own resolution (100 to 1200 dpi), each module a whole number of dots.
   /// Errors: as write_pdf; label_resolution.
@@ -74,6 +78,7 @@ class Label {
   std::string overprint_;                                      ///< empty: none
   std::string model_, gtin_, serial_, lot_, production_date_;  ///< production_date_ as it is printed
   int copy_ = 1;
+  UtcTime printed_;
 };
 
 }  // namespace probewright::pages

@@ -16,6 +16,7 @@
 #include "station/pages/drawing_room.h"
 #include "station/pages/files_out.h"
 #include "station/pages/label.h"
+#include "station/pages/pdf_bytes.h"
 
 namespace probewright::pages {
 namespace {
@@ -223,29 +224,6 @@ class LabelDrawing {
 
 namespace {
 
-constexpr double points_per_mm = 72 / mm_per_inch;
-
-// The tool kit's pages are whole points (0.35 mm) large: take one that holds the label at its upper left.
-QSize whole_points(LabelSize size) {
-  return {static_cast<int>(std::ceil(size.width_mm * points_per_mm)),
-          static_cast<int>(std::ceil(size.height_mm * points_per_mm))};
-}
-
-// Makes the page as large as the label: its box is written anew in the same bytes, so that the file's offsets hold.
-// PDF 32000-1:2008, 7.7.3.3 (MediaBox) and 7.9.5 (rectangles); y counts from the foot.
-bool cut_to_size(QByteArray& pdf, LabelSize size) {
-  const QByteArray key = "/MediaBox [";
-  const qsizetype start = pdf.indexOf(key), end = pdf.indexOf(']', start);
-  if (start < 0 || end < 0 || pdf.indexOf(key, end) >= 0) return false;
-  const int top = whole_points(size).height();
-  const std::string box = "0 " + fixed(top - size.height_mm * points_per_mm, 3) + " " +
-                          fixed(size.width_mm * points_per_mm, 3) + " " + std::to_string(top);
-  const qsizetype room = end - start - key.size();
-  if (static_cast<qsizetype>(box.size()) > room) return false;
-  pdf.replace(start + key.size(), room, QByteArray::fromStdString(box).leftJustified(room, ' '));
-  return true;
-}
-
 QByteArray bytes_of(const QImage& image) {
   QByteArray bytes;
   QBuffer buffer{&bytes};
@@ -265,13 +243,14 @@ Result<void> Label::write_pdf(const std::filesystem::path& path) const {
   writer.setCreator("probewright");
   writer.setTitle(qt(serial_.empty() ? coded_ : serial_));
   writer.setResolution(1200);
-  writer.setPageSize(QPageSize{whole_points(size_), {}, QPageSize::ExactMatch});
+  writer.setPageSize(QPageSize{whole_points(size_.width_mm, size_.height_mm), {}, QPageSize::ExactMatch});
   writer.setPageMargins({});
   {
     QPainter painter{&writer};
     if (auto fault = LabelDrawing{*this, {&painter, 1200 / mm_per_inch}}.draw()) return *fault;
   }
-  if (!cut_to_size(bytes, size_)) return Problem{"page_size_lost", path.string()};
+  if (!set_page_size(bytes, size_.width_mm, size_.height_mm) || !set_creation_time(bytes, printed_))
+    return Problem{"page_not_finished", path.string()};
   return replace_file(path, bytes);
 }
 

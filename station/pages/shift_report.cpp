@@ -9,6 +9,7 @@
 #include "station/base/numbers.h"
 #include "station/pages/drawing_room.h"
 #include "station/pages/files_out.h"
+#include "station/pages/pdf_bytes.h"
 #include "station/pages/plots.h"
 #include "station/pages/table_blocks.h"
 
@@ -47,7 +48,9 @@ std::string from_to(const ShiftReport& report) {
 Block title(const std::string& text) {
   return {11.0,
           [text](const Canvas& canvas, QRectF box) {
-            canvas.line({box.x(), box.y(), box.width(), 8.0}, qt(text), 6.6, Weight::bold, Align::left, ink::text);
+            canvas.line({box.x(), box.y(), box.width(), 8.0}, qt(text),
+                        canvas.fitting_mm(qt(text), Weight::bold, 6.6, box.width()), Weight::bold, Align::left,
+                        ink::text);
           },
           true, false, nullptr};
 }
@@ -248,7 +251,8 @@ Result<int> write_shift_report(const ShiftReport& report, const std::filesystem:
   paper.overprint = overprint_of(report.purpose, report.emulated);
   paper.blocks = everything(report);
   int pages = 0;
-  const QByteArray bytes = pdf_of(paper, pages);
+  QByteArray bytes = pdf_of(paper, pages);
+  if (!set_creation_time(bytes, report.printed)) return Problem{"page_not_finished", path.string()};
   const auto written = replace_file(path, bytes);
   if (written.has_error()) return written.error();
   return pages;

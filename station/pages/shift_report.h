@@ -67,7 +67,8 @@ struct ShiftReport {
 
 /// Writes the report as A4 pages and returns how many. Output of an emulated bench says DEMONSTRATION on every page,
 /// output of another purpose that purpose. An older file is replaced whole. Main thread only.
-/// Errors: report_counts (they do not add up), report_no_seal, page_no_application, page_no_font, page_not_written.
+/// Errors: report_counts (they do not add up), report_no_seal, page_no_application, page_no_font, page_not_finished,
+/// page_not_written.
 Result<int> write_shift_report(const ShiftReport& report, const std::filesystem::path& path);
 
 }  // namespace probewright::pages

@@ -4,6 +4,8 @@
 
 #include <QImage>
 #include <cmath>
+#include <fstream>
+#include <iterator>
 
 #include "looking.h"
 #include "station/pages/gs1.h"
@@ -12,14 +14,15 @@ namespace probewright::pages {
 namespace {
 
 PassLabel good_pass() {
-  return {{"pass", "production", false}, "AQ-20", "AQ20-048-00137", "AQ20-W48-07", "2026-12-01", "09521234543213", 1};
+  return {
+      {"pass", "production", false}, "AQ-20", "AQ20-048-00137", "AQ20-W48-07", "2026-12-01", "09521234543213", 1, {}};
 }
 PassLabel without_gtin() {
   PassLabel wanted = good_pass();
   wanted.gtin = "";
   return wanted;
 }
-FailLabel good_fail() { return {{"fail", "production", false}, "RW-00012345", 1}; }
+FailLabel good_fail() { return {{"fail", "production", false}, "RW-00012345", 1, {}}; }
 
 template <class Wanted>
 std::string refusal(const Wanted& wanted, LabelSize size = {}) {
@@ -273,6 +276,26 @@ TEST(LabelPage, ACoarsePrinterOrTooSmallALabelIsTold) {
   EXPECT_EQ(refused(good_pass(), {40, 20}, 99), "label_dpi");
   EXPECT_EQ(refused(good_pass(), {40, 20}, 1201), "label_dpi");
   EXPECT_FALSE(std::filesystem::exists(folder / "x.png") && refused(good_pass(), {40, 10}, 1200) == "none");
+}
+
+std::string bytes_of(const std::filesystem::path& path) {
+  std::ifstream file{path, std::ios::binary};
+  return {std::istreambuf_iterator<char>{file}, {}};
+}
+
+// The file tells the time that the caller gave, not the machine's: 2026-12-01T05:36:12Z is ISO 32000-1's
+// D:20261201053612Z.
+TEST(LabelPage, TheSameLabelGivesTheSameBytes) {
+  const looking::Folder folder;
+  PassLabel wanted = good_pass();
+  wanted.printed = parse_utc("2026-12-01T05:36:12Z").value();
+  for (const char* name : {"one", "two"}) {
+    ASSERT_FALSE(Label::of(wanted)->write_pdf(folder / (std::string{name} + ".pdf")).has_error());
+    ASSERT_FALSE(Label::of(wanted)->write_png(folder / (std::string{name} + ".png"), 300).has_error());
+  }
+  EXPECT_EQ(bytes_of(folder / "one.pdf"), bytes_of(folder / "two.pdf"));
+  EXPECT_EQ(bytes_of(folder / "one.png"), bytes_of(folder / "two.png"));
+  EXPECT_NE(bytes_of(folder / "one.pdf").find("/CreationDate (D:20261201053612Z)"), std::string::npos);
 }
 
 TEST(LabelPage, AFolderThatIsNotThereIsTold) {

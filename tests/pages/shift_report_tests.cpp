@@ -210,6 +210,20 @@ TEST(ShiftReport, LongTablesRunOnWithTheirHeads) {
   EXPECT_GE(times_in(text, "likely cause"), 3u) << "the head of a table stands on each of its pages";
 }
 
+TEST(ShiftReport, ALongStationNameStaysOnThePage) {
+  const looking::Folder folder;
+  ShiftReport report = usual();
+  report.station = "Quay-1 of the western hall, behind the second lock, by the window that does not open";
+  ASSERT_FALSE(write_shift_report(report, folder / "station.pdf").has_error());
+  expect_words(flat(looking::text_of(folder / "station.pdf")), {("Shift report, " + report.station).c_str()});
+}
+
+TEST(ShiftReport, TheFileTellsWhenItWasPrinted) {
+  const looking::Folder folder;
+  ASSERT_FALSE(write_shift_report(usual(), folder / "shift.pdf").has_error());
+  expect_words(looking::output_of("pdfinfo", {"-isodates", (folder / "shift.pdf").string()}), {"2026-12-01T13:02:11Z"});
+}
+
 TEST(ShiftReport, CountsThatDoNotAddUpAreRefused) {
   const looking::Folder folder;
   const ShiftCounts wrong[] = {{137, 129, 126, 5, 2}, {136, 129, 135, 5, 2}, {-1, -1, 0, 0, 0}, {0, 1, 1, -1, 0}};
