@@ -9,7 +9,15 @@
 namespace probewright::measure {
 namespace {
 
-enum class Kind : std::uint8_t { electrical = 1, dark = 2, spectrum = 3, pulses = 4 };
+enum class Kind : std::uint8_t {
+  electrical = 1,
+  dark = 2,
+  spectrum = 3,
+  pulses = 4,
+  red_alone = 5,
+  closed_path = 6,
+  ambient = 7
+};
 constexpr std::uint8_t version = 1;
 constexpr std::uint32_t most_cycles = 65536;
 constexpr std::int32_t code_limit = 1 << 23;
@@ -123,6 +131,9 @@ Kind kind_of(const ElectricalCapture&) { return Kind::electrical; }
 Kind kind_of(const DarkCapture&) { return Kind::dark; }
 Kind kind_of(const SpectrumCapture&) { return Kind::spectrum; }
 Kind kind_of(const PulseCapture&) { return Kind::pulses; }
+Kind kind_of(const RedAloneCapture&) { return Kind::red_alone; }
+Kind kind_of(const ClosedPathCapture&) { return Kind::closed_path; }
+Kind kind_of(const AmbientCapture&) { return Kind::ambient; }
 
 void write(Writer& w, const ElectricalCapture& c) {
   if (c.id_open && c.id_resistance_ohm) throw std::invalid_argument("an open ID resistor with a resistance");
@@ -220,6 +231,66 @@ PulseCapture read_pulses(Reader& r) {
   return c;
 }
 
+void write(Writer& w, const RedAloneCapture& c) {
+  if (c.spectrum.band != Band::red) throw std::invalid_argument("a spectrum of the red LED that is not red");
+  write(w, c.spectrum);
+}
+
+RedAloneCapture read_red_alone(Reader& r) {
+  RedAloneCapture c{read_spectrum(r)};
+  if (c.spectrum.band != Band::red) r.refuse("the spectrum of the red LED is not red");
+  return c;
+}
+
+void write(Writer& w, const ClosedPathCapture& c) {
+  const std::size_t n = c.red.size();
+  if (c.dark_a.size() != n || c.infrared.size() != n || c.dark_b.size() != n || n > most_cycles)
+    throw std::invalid_argument("trains of unequal length or too long");
+  if (!(c.cycle_s > 0.0)) throw std::invalid_argument("a cycle that is not above 0");
+  w.real(c.cycle_s), w.real(c.drive_mA.red), w.real(c.drive_mA.infrared), w.real(c.temperature_C);
+  w.number(c.first_cycle, 4), w.number(n, 4);
+  for (std::size_t i = 0; i < n; ++i)
+    for (const auto* train : {&c.red, &c.dark_a, &c.infrared, &c.dark_b}) w.code((*train)[i]);
+}
+
+ClosedPathCapture read_closed_path(Reader& r) {
+  ClosedPathCapture c;
+  c.cycle_s = r.positive();
+  c.drive_mA.red = r.real(), c.drive_mA.infrared = r.real(), c.temperature_C = r.real();
+  c.first_cycle = static_cast<std::uint32_t>(r.number(4));
+  const auto n = r.number(4);
+  if (n > most_cycles || r.left() != n * 12) r.refuse("the number of cycles does not agree with the bytes");
+  if (r.refused()) return c;
+  for (std::uint64_t i = 0; i < n; ++i)
+    for (auto* train : {&c.red, &c.dark_a, &c.infrared, &c.dark_b}) train->push_back(r.code());
+  return c;
+}
+
+void write(Writer& w, const AmbientCapture& c) {
+  const std::size_t lit = c.lit_a.size(), unlit = c.unlit_a.size();
+  if (c.lit_b.size() != lit || c.unlit_b.size() != unlit || lit > most_cycles || unlit > most_cycles)
+    throw std::invalid_argument("trains of unequal length or too long");
+  if (!(c.lamp_level > 0.0) || !(c.cycle_s > 0.0) || c.flicker_Hz < 0.0)
+    throw std::invalid_argument("a lamp or a cycle that is not above 0");
+  w.real(c.lamp_level), w.real(c.flicker_Hz), w.real(c.cycle_s), w.real(c.temperature_C);
+  w.number(lit, 4), w.number(unlit, 4);
+  for (std::size_t i = 0; i < lit; ++i) w.code(c.lit_a[i]), w.code(c.lit_b[i]);
+  for (std::size_t i = 0; i < unlit; ++i) w.code(c.unlit_a[i]), w.code(c.unlit_b[i]);
+}
+
+AmbientCapture read_ambient(Reader& r) {
+  AmbientCapture c;
+  c.lamp_level = r.positive(), c.flicker_Hz = r.real(), c.cycle_s = r.positive(), c.temperature_C = r.real();
+  if (c.flicker_Hz < 0.0) r.refuse("a flicker below 0");
+  const auto lit = r.number(4), unlit = r.number(4);
+  if (lit > most_cycles || unlit > most_cycles || r.left() != (lit + unlit) * 6)
+    r.refuse("the number of cycles does not agree with the bytes");
+  if (r.refused()) return c;
+  for (std::uint64_t i = 0; i < lit; ++i) c.lit_a.push_back(r.code()), c.lit_b.push_back(r.code());
+  for (std::uint64_t i = 0; i < unlit; ++i) c.unlit_a.push_back(r.code()), c.unlit_b.push_back(r.code());
+  return c;
+}
+
 AnyCapture read_any(Reader& r) {
   const auto mark = r.number(2), kind = r.number(1), found = r.number(1);
   if (mark != 0x4350) r.refuse("the bytes do not begin as a capture");
@@ -234,6 +305,12 @@ AnyCapture read_any(Reader& r) {
       return read_spectrum(r);
     case Kind::pulses:
       return read_pulses(r);
+    case Kind::red_alone:
+      return read_red_alone(r);
+    case Kind::closed_path:
+      return read_closed_path(r);
+    case Kind::ambient:
+      return read_ambient(r);
   }
   r.refuse("an unknown kind of capture");
   return DarkCapture{};
@@ -250,6 +327,9 @@ struct Names {
   std::string operator()(const DarkCapture&) const { return "dark"; }
   std::string operator()(const SpectrumCapture& c) const { return std::string{slug(c.band)} + "_spectrum"; }
   std::string operator()(const PulseCapture& c) const { return "pulses_" + ratio_slug(c.set_point_ratio); }
+  std::string operator()(const RedAloneCapture&) const { return "red_alone_spectrum"; }
+  std::string operator()(const ClosedPathCapture&) const { return "closed_path"; }
+  std::string operator()(const AmbientCapture&) const { return "ambient"; }
 };
 
 template <class Capture>
@@ -293,6 +373,9 @@ std::vector<AnyCapture> all_captures(const Captures& captures) {
   if (captures.red_spectrum) all.emplace_back(*captures.red_spectrum);
   if (captures.infrared_spectrum) all.emplace_back(*captures.infrared_spectrum);
   for (const PulseCapture& pulse : captures.pulses) all.emplace_back(pulse);
+  if (captures.red_alone) all.emplace_back(*captures.red_alone);
+  if (captures.closed_path) all.emplace_back(*captures.closed_path);
+  if (captures.ambient) all.emplace_back(*captures.ambient);
   return all;
 }
 
@@ -304,6 +387,10 @@ Result<void> add_capture(Captures& captures, AnyCapture capture) {
   if (auto* spectrum = std::get_if<SpectrumCapture>(&capture))
     return put(spectrum->band == Band::red ? captures.red_spectrum : captures.infrared_spectrum, std::move(*spectrum),
                kind);
+  if (auto* alone = std::get_if<RedAloneCapture>(&capture)) return put(captures.red_alone, std::move(*alone), kind);
+  if (auto* closed = std::get_if<ClosedPathCapture>(&capture))
+    return put(captures.closed_path, std::move(*closed), kind);
+  if (auto* ambient = std::get_if<AmbientCapture>(&capture)) return put(captures.ambient, std::move(*ambient), kind);
   auto& pulse = std::get<PulseCapture>(capture);
   for (const PulseCapture& there : captures.pulses)
     if (capture_kind(there) == kind) return Problem{"capture_twice", "", {{"kind", kind}}};

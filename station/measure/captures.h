@@ -69,6 +69,12 @@ struct SpectrumCapture {
   bool operator==(const SpectrumCapture&) const = default;
 };
 
+/// The red LED lit alone: its secondary emission, and whether it is the red one at all.
+struct RedAloneCapture {
+  SpectrumCapture spectrum;  ///< band red; drive_mA is the red LED's, the infrared one is off
+  bool operator==(const RedAloneCapture&) const = default;
+};
+
 /// A train of slot samples at one set point. All four trains have the same length.
 struct PulseCapture {
   double set_point_ratio = 0.0;  ///< nominal R
@@ -81,12 +87,38 @@ struct PulseCapture {
   bool operator==(const PulseCapture&) const = default;
 };
 
+/// Slot samples with the opaque blade in the phantom's path, LEDs in their drive, modulator at rest. All four trains
+/// have the same length.
+struct ClosedPathCapture {
+  double cycle_s = 0.0;
+  std::uint32_t first_cycle = 0;
+  std::vector<std::int32_t> red, dark_a, infrared, dark_b;
+  PerBand<double> drive_mA;
+  double temperature_C = 0.0;
+  bool operator==(const ClosedPathCapture&) const = default;
+};
+
+/// Dark slots (both of each cycle) with the phantom's lamp on, and without it. The LEDs may be driven or not, but
+/// alike in both. Pairs of trains have the same length.
+struct AmbientCapture {
+  double lamp_level = 0.0;  ///< of full, above 0
+  double flicker_Hz = 0.0;  ///< of the lamp; 0: none
+  double cycle_s = 0.0;
+  std::vector<std::int32_t> lit_a, lit_b;      ///< dark slots of consecutive cycles with the lamp on
+  std::vector<std::int32_t> unlit_a, unlit_b;  ///< the same with the lamp off
+  double temperature_C = 0.0;
+  bool operator==(const AmbientCapture&) const = default;
+};
+
 /// All captures of one run.
 struct Captures {
   std::optional<ElectricalCapture> electrical;
   std::optional<DarkCapture> dark;
   std::optional<SpectrumCapture> red_spectrum, infrared_spectrum;
   std::vector<PulseCapture> pulses;  ///< at most one per set point
+  std::optional<RedAloneCapture> red_alone;
+  std::optional<ClosedPathCapture> closed_path;
+  std::optional<AmbientCapture> ambient;
   /// Check after whose hard fault the routine stopped: readings whose captures are missing become
   /// "blocked_by:<check>" instead of "not_captured". Empty: it went through. Not part of any capture's bytes.
   std::string blocked_by;

@@ -8,44 +8,22 @@
 
 #include "station/base/catalogue.h"
 #include "station/base/numbers.h"
-#include "station/measure/pulses.h"
-#include "station/measure/spectrum.h"
+#include "station/measure/checks.h"
 
 namespace probewright::measure {
 namespace {
 
-constexpr double reference_C = 25.0;
+using namespace checks;
+
 constexpr double coverage_factor = 2.0;
 
-/// What all checks of one run share. Each line is found once.
-struct Run {
-  const Model& model;
-  const Certificates& certificates;
-  const Captures& captures;
-  PerBand<Result<Line>> lines;
+}  // namespace
 
-  double above_reference_K(double told_C) const {
-    return certificates.phantom.true_temperature_C(told_C) - reference_C;
-  }
-};
+namespace checks {
 
-/// A value before it is finished: with what only the captures can tell of its uncertainty.
-struct Found {
-  double value = 0.0;
-  std::vector<Component> components;
-};
-
-/// A found value, or the slug of the reason why there is none.
-struct Outcome {
-  std::optional<Found> found;
-  std::string reason;
-};
 Outcome none(std::string reason) { return {std::nullopt, std::move(reason)}; }
-Outcome found(double value, std::vector<Component> components = {}) {
-  return {Found{value, std::move(components)}, {}};
-}
+Outcome found(double value, std::vector<Component> components) { return {Found{value, std::move(components)}, {}}; }
 
-/// The reason slug of a reading for a problem of the methods.
 std::string reason_of(const Problem& problem) {
   constexpr std::array reasons = std::to_array<std::pair<std::string_view, std::string_view>>({
       {"spectrum_clipped", "clipped"},
@@ -66,7 +44,6 @@ Outcome not_captured(const Run& run) {
 
 Component noise(double u) { return {"noise", u, Scope::per_probe}; }
 
-/// Value at 25 C for a quantity that moves by `per_K`, with what that adds to its uncertainty.
 Found at_reference(const Run& run, Found as_found, double told_C, double per_K, double per_K_u) {
   const double above_K = run.above_reference_K(told_C);
   as_found.value -= per_K * above_K;
@@ -76,16 +53,20 @@ Found at_reference(const Run& run, Found as_found, double told_C, double per_K, 
   return as_found;
 }
 
-// --- contact
-
-Outcome probe_present(const Run& run) {
-  const auto& electrical = run.captures.electrical;
-  if (!electrical) return not_captured(run);
-  const auto &phantom = electrical->present_phantom, &adapter = electrical->present_adapter;
-  if ((phantom && !*phantom) || (adapter && !*adapter)) return found(0.0);
-  if (!phantom || !adapter) return not_captured(run);
-  return found(1.0);
+void add_budget(const Model& model, std::string_view check, Found& found) {
+  const Budget* budget = model.budget(check);
+  if (budget == nullptr) return;
+  for (const BudgetItem& item : budget->items)
+    found.components.push_back({item.name, std::hypot(item.absolute, item.relative * found.value), item.scope});
 }
+
+double combined(const std::vector<Component>& components) {
+  double sum = 0.0;
+  for (const Component& component : components) sum += component.standard_u * component.standard_u;
+  return std::sqrt(sum);
+}
+
+// --- contact
 
 Outcome id_resistance(const Run& run) {
   const auto& electrical = run.captures.electrical;
@@ -94,13 +75,25 @@ Outcome id_resistance(const Run& run) {
   return found(*electrical->id_resistance_ohm * run.certificates.adapter.resistance_scale);
 }
 
-/// The bin that this resistance stands for: the nearest by ratio, since tolerances are relative.
 const Bin* coded_bin(const Model& model, double ohm) {
   const Bin* best = nullptr;
   const auto apart = [ohm](const Bin& bin) { return std::abs(std::log(ohm / bin.coded_ohm)); };
   for (const Bin& bin : model.bins)
     if (best == nullptr || apart(bin) < apart(*best)) best = &bin;
   return best;
+}
+
+}  // namespace checks
+
+namespace {
+
+Outcome probe_present(const Run& run) {
+  const auto& electrical = run.captures.electrical;
+  if (!electrical) return not_captured(run);
+  const auto &phantom = electrical->present_phantom, &adapter = electrical->present_adapter;
+  if ((phantom && !*phantom) || (adapter && !*adapter)) return found(0.0);
+  if (!phantom || !adapter) return not_captured(run);
+  return found(1.0);
 }
 
 Outcome id_deviation(const Run& run) {
@@ -138,6 +131,40 @@ Outcome drive(const Run& run) {
   return found((*led)->delivered_mA * run.certificates.adapter.drive_scale);
 }
 
+Outcome mains_pickup(const Run& run) {
+  const auto& electrical = run.captures.electrical;
+  if (!electrical || !electrical->mains_pickup_nA) return not_captured(run);
+  return found(*electrical->mains_pickup_nA * run.certificates.adapter.photocurrent_scale);
+}
+
+/// Forward voltage at the drive minus that at a quarter of it, in mV.
+template <Band band>
+Outcome voltage_rise(const Run& run) {
+  const auto* led = at_drive(run, band);
+  if (led == nullptr || !run.captures.electrical->led.of(band).at_quarter) return not_captured(run);
+  const double rise_V = (*led)->voltage_V - run.captures.electrical->led.of(band).at_quarter->voltage_V;
+  return found(1e3 * rise_V * run.certificates.adapter.voltage_scale);
+}
+
+/// An antiparallel pair lights the other LED before it leaks.
+template <Band band>
+Outcome reverse_leakage(const Run& run) {
+  if (run.model.wiring == Wiring::antiparallel) return none("not_separate");
+  const auto& electrical = run.captures.electrical;
+  if (!electrical || !electrical->led.of(band).reverse_leakage_uA) return not_captured(run);
+  return found(*electrical->led.of(band).reverse_leakage_uA);
+}
+
+/// How far the forward voltage moves from 5 ms after the drive was set until the LED is warm, in mV.
+template <Band band>
+Outcome warmup(const Run& run) {
+  const auto& electrical = run.captures.electrical;
+  if (!electrical) return not_captured(run);
+  const LedElectrical& led = electrical->led.of(band);
+  if (!led.first_voltage_V || !led.warm_voltage_V) return not_captured(run);
+  return found(1e3 * std::abs(*led.first_voltage_V - *led.warm_voltage_V) * run.certificates.adapter.voltage_scale);
+}
+
 // --- LEDs, optical
 
 Result<Line> line_of(const Model& model, const Certificates& certificates, const Captures& captures, Band band) {
@@ -166,8 +193,7 @@ Outcome peak(const Run& run) {
 }
 template <Band band>
 Outcome centroid(const Run& run) {
-  const TemperatureModel& t = run.model.temperature;
-  return of_line(run, band, &Line::centroid_nm, &Line::centroid_u, t.centroid_nm_per_K, t.centroid_nm_per_K_u);
+  return centroid_of(run, band);
 }
 template <Band band>
 Outcome half_power_centre(const Run& run) {
@@ -208,50 +234,23 @@ Outcome dark_current(const Run& run) {
   return outcome;
 }
 
-// --- ratio response
+// --- from pulses and whole spectra, one function for each check
 
-/// A converter code at either end of its 24 bits means that the amplifier was full.
-bool is_clipped(const PulseCapture& capture) {
-  constexpr std::int32_t most = (1 << 23) - 1;
-  const auto full = [](std::int32_t code) { return code >= most || code <= -most; };
-  for (const auto* train : {&capture.red, &capture.dark_a, &capture.infrared, &capture.dark_b})
-    if (std::any_of(train->begin(), train->end(), full)) return true;
-  return false;
+template <Band band>
+Outcome transfer_of(const Run& run) {
+  return transfer(run, band);
 }
-
-Result<PerBand<Train>> trains_of(const PulseCapture& capture, double nA_per_code) {
-  const auto in_nA = [nA_per_code](const std::vector<std::int32_t>& codes) {
-    std::vector<double> out(codes.size());
-    std::transform(codes.begin(), codes.end(), out.begin(), [&](std::int32_t code) { return nA_per_code * code; });
-    return out;
-  };
-  std::vector<double> start_s(capture.red.size());
-  for (std::size_t i = 0; i < start_s.size(); ++i)
-    start_s[i] = capture.cycle_s * (static_cast<double>(capture.first_cycle) + static_cast<double>(i));
-  return subtract_dark(in_nA(capture.red), in_nA(capture.dark_a), in_nA(capture.infrared), in_nA(capture.dark_b),
-                       start_s, capture.cycle_s);
+template <Band band>
+Outcome modulation_of(const Run& run) {
+  return modulation_deviation(run, band);
 }
-
-Result<Ratio> ratio_of_capture(const PulseCapture& capture, double nA_per_code) {
-  const auto trains = trains_of(capture, nA_per_code);
-  if (!trains) return trains.error();
-  const PulseRules rules{capture.modulator_Hz, false};
-  const auto red = fit_pulses(trains->red, rules), infrared = fit_pulses(trains->infrared, rules);
-  if (!red) return red.error();
-  if (!infrared) return infrared.error();
-  return ratio_of({*red, *infrared});
+template <int percent>
+Outcome saturation_of(const Run& run) {
+  return saturation_error(run, percent);
 }
-
-/// Deviation of R from its certificate at one set point, in %.
-Outcome ratio_deviation(const Run& run, double nominal) {
-  const PulseCapture* capture = run.captures.pulse(nominal);
-  if (capture == nullptr) return not_captured(run);
-  const CalibratedSetPoint* calibrated = run.certificates.phantom.set_point(nominal);
-  if (calibrated == nullptr) return none("not_certified");
-  if (is_clipped(*capture)) return none("clipped");
-  const auto ratio = ratio_of_capture(*capture, run.certificates.adapter.nA_per_code);
-  if (!ratio) return none(reason_of(ratio.error()));
-  return found(100.0 * (ratio->value / calibrated->ratio - 1.0), {noise(100.0 * ratio->noise_u / calibrated->ratio)});
+template <RatioLineValue value>
+Outcome ratio_line_of(const Run& run) {
+  return ratio_line(run, value);
 }
 Outcome ratio_0p4(const Run& run) { return ratio_deviation(run, 0.4); }
 Outcome ratio_1p0(const Run& run) { return ratio_deviation(run, 1.0); }
@@ -271,10 +270,21 @@ constexpr std::array methods = std::to_array<Method>({
     {"probe_present", probe_present, "presence;phantom and adapter;v1"},
     {"id_resistance", id_resistance, "id-resistance;v1"},
     {"id_deviation", id_deviation, "id-deviation;from=nearest coded value by ratio;v1"},
+    {"bin_mismatch", bin_mismatch,
+     "bin-mismatch;red centroid minus nominal of the coded bin;threshold=0.01;window=605-785;ref=25C;v1"},
+    {"cable_noise", cable_noise,
+     "cable-noise;residual of the pulse fit over dc;without=100 120 200 240 Hz;largest of bands and captures;v1"},
+    {"mains_pickup", mains_pickup, "mains-pickup;rms;v1"},
     {"red_forward_voltage", forward_voltage<Band::red>, "forward-voltage;at=drive;ref=25C;v1"},
     {"infrared_forward_voltage", forward_voltage<Band::infrared>, "forward-voltage;at=drive;ref=25C;v1"},
+    {"red_voltage_rise", voltage_rise<Band::red>, "voltage-rise;drive minus a quarter;v1"},
+    {"infrared_voltage_rise", voltage_rise<Band::infrared>, "voltage-rise;drive minus a quarter;v1"},
+    {"red_reverse_leakage", reverse_leakage<Band::red>, "reverse-leakage;v1"},
+    {"infrared_reverse_leakage", reverse_leakage<Band::infrared>, "reverse-leakage;v1"},
     {"red_drive", drive<Band::red>, "drive-delivered;in=slot;v1"},
     {"infrared_drive", drive<Band::infrared>, "drive-delivered;in=slot;v1"},
+    {"red_warmup", warmup<Band::red>, "warm-up;5 ms to warm;magnitude;v1"},
+    {"infrared_warmup", warmup<Band::infrared>, "warm-up;5 ms to warm;magnitude;v1"},
     {"red_peak", peak<Band::red>, "peak;fit=cubic;top=0.2;window=605-785;ref=25C;v1"},
     {"infrared_peak", peak<Band::infrared>, "peak;fit=cubic;top=0.2;window=800-1045;ref=25C;v1"},
     {"red_centroid", centroid<Band::red>, "centroid;threshold=0.01;window=605-785;ref=25C;v1"},
@@ -285,31 +295,52 @@ constexpr std::array methods = std::to_array<Method>({
      "half-power-centre;fit=0.38-0.62;window=800-1045;ref=25C;v1"},
     {"red_width", width<Band::red>, "fwhm;fit=0.38-0.62;slit=removed;window=605-785;ref=25C;v1"},
     {"infrared_width", width<Band::infrared>, "fwhm;fit=0.38-0.62;slit=removed;window=800-1045;ref=25C;v1"},
+    {"secondary_emission", secondary_emission, "secondary-emission;800-1000 over 605-785 and 800-1000;red alone;v1"},
     {"dark_current", dark_current, "dark-current;connected minus open;ref=25C;law=doubling;v1"},
     {"dark_current_as_found", dark_as_found, "dark-current;connected minus open;as found;v1"},
+    {"red_transfer", transfer_of<Band::red>, "transfer;dc of the fit;per=delivered mA;ref=25C;v1"},
+    {"infrared_transfer", transfer_of<Band::infrared>, "transfer;dc of the fit;per=delivered mA;ref=25C;v1"},
+    {"closed_path_light", closed_path_light, "closed-path;blade in over open;dark=two neighbours;larger band;v1"},
+    {"slot_crosstalk", slot_crosstalk,
+     "slot-crosstalk;slopes of both bands' AC/DC over 1/R and R;secondary=red alone;from=certificate;v1"},
+    {"ambient_uptake", ambient_uptake, "ambient;dark slots;lamp on minus off;at=full lamp;v1"},
+    {"red_modulation_deviation", modulation_of<Band::red>,
+     "modulation;fit=hann,slope,harmonics 2 3;dark=two neighbours;largest of set points;from=certificate;v1"},
+    {"infrared_modulation_deviation", modulation_of<Band::infrared>,
+     "modulation;fit=hann,slope,harmonics 2 3;dark=two neighbours;largest of set points;from=certificate;v1"},
     {"ratio_deviation_0p4", ratio_0p4, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
     {"ratio_deviation_1p0", ratio_1p0, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
     {"ratio_deviation_1p6", ratio_1p6, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
+    {"ratio_slope", ratio_line_of<RatioLineValue::slope>, "ratio-line;least squares over set points;v1"},
+    {"ratio_offset", ratio_line_of<RatioLineValue::offset>, "ratio-line;least squares over set points;v1"},
+    {"ratio_nonlinearity", ratio_line_of<RatioLineValue::nonlinearity>,
+     "ratio-line;least squares over set points;largest distance;v1"},
+    {"saturation_error_100", saturation_of<100>, "saturation-error;at=100;threshold=0.01;ref=25C;nominal=coded bin;v1"},
+    {"saturation_error_90", saturation_of<90>, "saturation-error;at=90;threshold=0.01;ref=25C;nominal=coded bin;v1"},
+    {"saturation_error_80", saturation_of<80>, "saturation-error;at=80;threshold=0.01;ref=25C;nominal=coded bin;v1"},
+    {"saturation_error_70", saturation_of<70>, "saturation-error;at=70;threshold=0.01;ref=25C;nominal=coded bin;v1"},
 });
 
-/// Adds the model's budget for the check.
-void add_budget(const Model& model, std::string_view check, Found& found) {
-  const Budget* budget = model.budget(check);
-  if (budget == nullptr) return;
-  for (const BudgetItem& item : budget->items)
-    found.components.push_back({item.name, std::hypot(item.absolute, item.relative * found.value), item.scope});
-}
-
-double combined(const std::vector<Component>& components) {
-  double sum = 0.0;
-  for (const Component& component : components) sum += component.standard_u * component.standard_u;
-  return std::sqrt(sum);
+/// A modelled saturation error also depends on what the model file names for it.
+std::string definition_of(const Model& model, const Method& method) {
+  std::string text{method.definition};
+  if (!method.check.starts_with("saturation_error_") || !model.saturation) return text;
+  const SaturationModel& with = *model.saturation;
+  text += ";table=" + with.table + " " + with.table_sha256.substr(0, 16) + ";curve=";
+  for (const double c : with.curve.coefficients) text += shortest(c) + " ";
+  for (const Curve::Point& p : with.curve.points) text += shortest(p.ratio) + ":" + shortest(p.saturation) + " ";
+  text.back() = ';';
+  for (const Band band : {Band::red, Band::infrared})
+    text += std::string{slug(band)} + "=" + shortest(with.shape.of(band).width_nm) + " " +
+            shortest(with.shape.of(band).skew) + ";";
+  text += "responsivity=" + (with.responsivity.empty() ? "none" : std::to_string(with.responsivity.size()) + " points");
+  return text;
 }
 
 Reading finished(const Model& model, const Method& method, Outcome outcome) {
   Reading reading;
   reading.check = method.check;
-  reading.definition = method.definition;
+  reading.definition = definition_of(model, method);
   if (const Check* check = find_check(method.check)) reading.unit = check->unit;
   if (!outcome.found) return reading.none_reason = std::move(outcome.reason), reading;
   Found& found = *outcome.found;
@@ -330,6 +361,11 @@ bool no_probe(const Run& run) {
 
 }  // namespace
 
+Outcome checks::centroid_of(const Run& run, Band band) {
+  const TemperatureModel& t = run.model.temperature;
+  return of_line(run, band, &Line::centroid_nm, &Line::centroid_u, t.centroid_nm_per_K, t.centroid_nm_per_K_u);
+}
+
 std::span<const std::string_view> evaluated_checks() {
   static const auto checks = [] {
     std::array<std::string_view, methods.size()> slugs;
@@ -349,7 +385,8 @@ std::vector<Reading> evaluate(const Model& model, const Certificates& certificat
       model,
       certificates,
       captures,
-      {line_of(model, certificates, captures, Band::red), line_of(model, certificates, captures, Band::infrared)}};
+      {line_of(model, certificates, captures, Band::red), line_of(model, certificates, captures, Band::infrared)},
+      fit_all(model, certificates, captures)};
   const bool absent = no_probe(run);
   std::vector<Reading> readings;
   for (const Method& method : methods) {

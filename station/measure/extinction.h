@@ -10,6 +10,7 @@ namespace probewright::measure {
 struct Extinction {
   double oxygenated = 0.0;
   double deoxygenated = 0.0;
+  bool operator==(const Extinction&) const = default;
 };
 
 /// A published table of both, linear between its rows.
@@ -22,12 +23,14 @@ class ExtinctionTable {
   /// The wavelength from `low_nm` to `high_nm` at which both absorb alike, by bisection; errors: table_outside,
   /// table_no_crossing (the difference has the same sign at both ends).
   Result<double> equal_absorption_nm(double low_nm, double high_nm) const;
+  bool operator==(const ExtinctionTable&) const = default;
 
  private:
   friend ResultOrFaults<ExtinctionTable> read_extinction(std::string_view text, std::string_view file);
   struct Row {
     double nm;
     Extinction value;
+    bool operator==(const Row&) const = default;
   };
   std::vector<Row> rows_;
 };

@@ -1,10 +1,12 @@
 #pragma once
+#include <optional>
 #include <string>
 #include <string_view>
 #include <vector>
 
 #include "station/base/result.h"
 #include "station/measure/bands.h"
+#include "station/measure/saturation.h"
 
 namespace probewright::measure {
 
@@ -55,6 +57,26 @@ struct TemperatureModel {
   bool operator==(const TemperatureModel&) const = default;
 };
 
+/// How the ambient light that the probe takes up is captured.
+struct AmbientPlan {
+  double lamp_level = 0.0;  ///< of full
+  double flicker_Hz = 0.0;
+  double capture_s = 0.0;  ///< with the lamp on, and once more with it off
+  bool operator==(const AmbientPlan&) const = default;
+};
+/// How the light around the phantom is captured.
+struct ClosedPathPlan {
+  double capture_s = 0.0;
+  bool operator==(const ClosedPathPlan&) const = default;
+};
+/// What the red LED's secondary emission does to its photocurrent.
+struct SecondaryLight {
+  double current_per_power = 0.0;  ///< photocurrent per power of the secondary line, through the phantom, over the same
+                                   ///< of the red line
+  double current_per_power_u = 0.0;
+  bool operator==(const SecondaryLight&) const = default;
+};
+
 /// A probe type: what is asked of the devices, what is expected, and which checks are made.
 /// Its limits stand on the sheet, never here.
 struct Model {
@@ -85,6 +107,12 @@ struct Model {
   double dark_time_s = 0.0;
 
   std::vector<Bin> bins;  ///< rising resistance
+
+  // Only where the routine's checks need them.
+  std::optional<AmbientPlan> ambient;
+  std::optional<ClosedPathPlan> closed_path;
+  std::optional<SecondaryLight> secondary_light;
+  std::optional<SaturationModel> saturation;
   TemperatureModel temperature;
   std::vector<Budget> budgets;       ///< one for each check that carries an uncertainty
   std::vector<std::string> routine;  ///< slugs of the checks that are made, in catalogue order
@@ -92,11 +120,15 @@ struct Model {
   double cycle_s() const { return 4.0 * slot_s; }
   /// Cycles of one pulse capture: the least multiple of 32 (the adapter's block) that lasts pulse_capture_s.
   int pulse_cycles() const;
+  /// The same for any length: cycles of a capture that lasts `capture_s`.
+  int cycles_for(double capture_s) const;
   bool has_check(std::string_view check) const;
   /// Needs of all checks of the routine, or-ed (catalogue.h).
   unsigned needs() const;
   /// The set points that the routine's checks need, rising.
   std::vector<SetPoint> needed_set_points() const;
+  /// The set point whose capture stands for the light's level: the one nearest to ratio 1; nullptr: no set points.
+  const SetPoint* level_set_point() const;
   const Budget* budget(std::string_view check) const;
   bool operator==(const Model&) const = default;
 };
@@ -116,6 +148,17 @@ struct Model {
 ///   model_bad_pattern       the serial-number pattern is not a regular expression
 ///   model_capture_short, model_id_kind, model_bins_missing, model_budget_empty, model_routine_empty,
 ///   model_unknown_word
+///   model_section_missing   a check of the routine needs a section that the file lacks
+///   model_check_needs_check a check of the routine is computed with another one, which the routine lacks
+///   model_set_points_few    a check needs more set points than there are
+///   model_curve_not_falling, model_curve_kind, model_curve_short, model_bad_sha256: of the saturation section
+/// The haemoglobin table that the model names is not read here: see attach_haemoglobin.
 ResultOrFaults<Model> read_model(std::string_view text, std::string_view file);
+
+/// Puts the haemoglobin table (the text of the CSV file that model.saturation names) into the model; evaluate() needs
+/// it there. Whoever reads the file compares its digest with model.saturation->table_sha256. Without a saturation
+/// section nothing is done.
+/// Faults: those of read_extinction; model_table_short (the table does not span 605 to 1000 nm).
+Problems attach_haemoglobin(Model& model, std::string_view table_text, std::string_view file);
 
 }  // namespace probewright::measure

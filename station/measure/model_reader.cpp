@@ -9,6 +9,7 @@
 #include "station/measure/document_fields.h"
 #include "station/measure/evaluate.h"
 #include "station/measure/model.h"
+#include "station/measure/saturation_reader.h"
 
 namespace probewright::measure {
 namespace {
@@ -192,6 +193,39 @@ void read_temperature(yaml::Map& map, Model& model, yaml::Faults& faults) {
 }
 
 /// The check that a slug names and that evaluate() can make, or a fault.
+/// The section under a key that may be left out.
+std::optional<yaml::Map> maybe_map(yaml::Map& map, std::string_view key, yaml::Faults& faults) {
+  const auto value = map.maybe(key);
+  return value ? value->map(faults) : std::nullopt;
+}
+
+/// What only some checks need.
+void read_optional_sections(yaml::Map& map, Model& model, yaml::Faults& faults) {
+  if (auto part = maybe_map(map, "ambient light", faults)) {
+    AmbientPlan plan;
+    plan.lamp_level = fields::quantity(*part, "lamp", "%", {1.0, 100.0}, out_of_range, faults) / 100.0;
+    plan.flicker_Hz = fields::number(*part, "flicker_Hz", {0.0, 120.0}, out_of_range, faults);
+    if (plan.flicker_Hz != 0.0 && plan.flicker_Hz != 100.0 && plan.flicker_Hz != 120.0)
+      faults.add(fields::place_of(*part, "flicker_Hz"), "model_unknown_word",
+                 {{"key", "flicker_Hz"}, {"word", shortest(plan.flicker_Hz)}, {"words", "0, 100, 120"}});
+    plan.capture_s = fields::quantity(*part, "capture", "s", {0.05, 10.0}, out_of_range, faults);
+    part->finish(faults);
+    model.ambient = plan;
+  }
+  if (auto part = maybe_map(map, "closed path", faults)) {
+    model.closed_path = ClosedPathPlan{fields::quantity(*part, "capture", "s", {0.05, 10.0}, out_of_range, faults)};
+    part->finish(faults);
+  }
+  if (auto part = maybe_map(map, "secondary light", faults)) {
+    SecondaryLight light;
+    light.current_per_power = fields::number(*part, "current_per_power", {0.0, 10.0}, out_of_range, faults);
+    light.current_per_power_u = fields::number(*part, "u", {0.0, 10.0}, out_of_range, faults);
+    part->finish(faults);
+    model.secondary_light = light;
+  }
+  if (auto part = maybe_map(map, "saturation", faults)) model.saturation = read_saturation(*part, faults);
+}
+
 const Check* made_check(const std::string& check, yaml::Place place, yaml::Faults& faults) {
   const Check* found = find_check(check);
   const auto made = evaluated_checks();
@@ -267,12 +301,41 @@ const SetPoint* find_set_point(const Model& model, double ratio) {
   return found == model.set_points.end() ? nullptr : &*found;
 }
 
+/// Set points without which a check cannot be computed.
+std::size_t least_set_points(std::string_view check) {
+  if (check == "slot_crosstalk" || check == "ratio_nonlinearity") return 3;
+  if (check == "ratio_slope" || check == "ratio_offset") return 2;
+  const Check* known = find_check(check);
+  return known != nullptr && (known->needs & needs_pulses) != 0 ? 1 : 0;
+}
+
+/// Whether a check is computed from all set points of the model.
+bool takes_all_set_points(std::string_view check) {
+  return check == "slot_crosstalk" || check == "ratio_nonlinearity" || check == "ratio_slope" ||
+         check == "ratio_offset" || check == "red_modulation_deviation" || check == "infrared_modulation_deviation";
+}
+
 void check_routine_entry(const Model& model, const std::string& check, yaml::Place place, yaml::Faults& faults) {
   if (const auto ratio = ratio_of_check(check); ratio && find_set_point(model, *ratio) == nullptr)
     faults.add(place, "model_set_point_missing", {{"check", check}, {"ratio", shortest(*ratio)}});
   if (carries_uncertainty(check) && model.budget(check) == nullptr)
     faults.add(place, "model_budget_missing", {{"check", check}});
-  if (check == "id_deviation" && model.bins.empty()) faults.add(place, "model_bins_missing", {{"check", check}});
+  const Check* known = find_check(check);
+  if (known != nullptr && (known->needs & needs_coded_bin) != 0 && model.bins.empty())
+    faults.add(place, "model_bins_missing", {{"check", check}});
+  const auto need_section = [&](bool there, const char* section) {
+    if (!there) faults.add(place, "model_section_missing", {{"check", check}, {"section", section}});
+  };
+  if (check == "ambient_uptake") need_section(model.ambient.has_value(), "ambient light");
+  if (check == "closed_path_light") need_section(model.closed_path.has_value(), "closed path");
+  if (check == "slot_crosstalk") need_section(model.secondary_light.has_value(), "secondary light");
+  if (check.starts_with("saturation_error_")) need_section(model.saturation.has_value(), "saturation");
+  if (const std::size_t least = least_set_points(check); model.set_points.size() < least)
+    faults.add(place, "model_set_points_few", {{"check", check}, {"count", std::to_string(least)}});
+  // A saturation error takes its uncertainty from those of the centroids.
+  if (check.starts_with("saturation_error_"))
+    for (const char* centroid : {"red_centroid", "infrared_centroid"})
+      if (model.budget(centroid) == nullptr) faults.add(place, "model_budget_missing", {{"check", centroid}});
 }
 
 void read_routine(yaml::Map& map, Model& model, yaml::Faults& faults) {
@@ -291,6 +354,8 @@ void read_routine(yaml::Map& map, Model& model, yaml::Faults& faults) {
     before = std::max(before, index);
     check_routine_entry(model, *check, item.place(), faults);
     model.routine.push_back(*check);
+    if (*check == "slot_crosstalk" && seen.count("secondary_emission") == 0)
+      faults.add(item.place(), "model_check_needs_check", {{"check", *check}, {"other", "secondary_emission"}});
   }
   if (model.routine.empty()) faults.add(fields::place_of(map, "routine"), "model_routine_empty");
 }
@@ -299,10 +364,19 @@ void read_routine(yaml::Map& map, Model& model, yaml::Faults& faults) {
 
 std::string_view slug(Scope scope) { return scope == Scope::common ? "common" : "per_probe"; }
 
-int Model::pulse_cycles() const {
+int Model::pulse_cycles() const { return cycles_for(pulse_capture_s); }
+
+int Model::cycles_for(double capture_s) const {
   constexpr int block = 32;
-  const int blocks = static_cast<int>(std::ceil(pulse_capture_s / cycle_s() / block - 1e-9));
+  const int blocks = static_cast<int>(std::ceil(capture_s / cycle_s() / block - 1e-9));
   return block * std::max(1, blocks);
+}
+
+const SetPoint* Model::level_set_point() const {
+  const auto apart = [](const SetPoint& p) { return std::abs(std::log(p.ratio)); };
+  const auto nearest = std::min_element(set_points.begin(), set_points.end(),
+                                        [&](const SetPoint& a, const SetPoint& b) { return apart(a) < apart(b); });
+  return nearest == set_points.end() ? nullptr : &*nearest;
 }
 
 bool Model::has_check(std::string_view check) const {
@@ -320,8 +394,9 @@ std::vector<SetPoint> Model::needed_set_points() const {
   std::vector<SetPoint> needed;
   for (const SetPoint& point : set_points) {
     const bool wanted = std::any_of(routine.begin(), routine.end(), [&](const std::string& check) {
-      const auto ratio = ratio_of_check(check);
-      return ratio && std::abs(*ratio - point.ratio) < 1e-6;
+      if (takes_all_set_points(check)) return true;
+      if (const auto ratio = ratio_of_check(check)) return std::abs(*ratio - point.ratio) < 1e-6;
+      return least_set_points(check) > 0 && &point == level_set_point();
     });
     if (wanted) needed.push_back(point);
   }
@@ -347,11 +422,28 @@ ResultOrFaults<Model> read_model(std::string_view text, std::string_view file) {
   read_adapter_times(*map, model, faults);
   read_id(*map, model, faults);
   read_temperature(*map, model, faults);
+  read_optional_sections(*map, model, faults);
   read_budgets(*map, model, faults);
   read_routine(*map, model, faults);
   map->finish(faults);
   if (!faults.empty()) return faults.take();
   return model;
+}
+
+Problems attach_haemoglobin(Model& model, std::string_view table_text, std::string_view file) {
+  if (!model.saturation) return {};
+  auto table = read_extinction(table_text, file);
+  if (!table) return table.error();
+  constexpr double from_nm = line_window(Band::red).from_nm, to_nm = secondary_window.to_nm;
+  if (table->from_nm() > from_nm || table->to_nm() < to_nm)
+    return {{"model_table_short",
+             file,
+             {{"from", shortest(table->from_nm())},
+              {"to", shortest(table->to_nm())},
+              {"wanted_from", shortest(from_nm)},
+              {"wanted_to", shortest(to_nm)}}}};
+  model.saturation->haemoglobin = std::move(*table);
+  return {};
 }
 
 }  // namespace probewright::measure

@@ -34,6 +34,14 @@ std::vector<double> hann_weights(const Train& train) {
   return weights;
 }
 
+/// Appends sine and cosine of each frequency at a moment.
+void add_lines(std::vector<double>& row, double t_s, std::span<const double> lines_Hz) {
+  for (const double line_Hz : lines_Hz) {
+    row.push_back(std::sin(two_pi * line_Hz * t_s));
+    row.push_back(std::cos(two_pi * line_Hz * t_s));
+  }
+}
+
 /// One row per sample. With `previous` also the derivative with respect to the rate, for the fit of a free rate.
 std::vector<double> design_of(const Train& train, double rate_Hz, const LinearFit* previous) {
   const double middle = middle_of(train);
@@ -236,11 +244,40 @@ Result<PulseFit> fit_pulses(const Train& train, const PulseRules& rules) {
   return out;
 }
 
-Result<Ratio> ratio_of(const PerBand<PulseFit>& fits) {
-  for (const PulseFit* fit : {&fits.red, &fits.infrared}) {
-    if (!(fit->dc > 10.0 * fit->dc_u)) return problem("pulses_too_dark");
-    if (!(fit->ac > 3.0 * fit->ac_u) || !(fit->ac > 1e-9 * fit->dc)) return problem("pulses_no_modulation");
+Result<Level> fit_level(const Train& train, double flicker_Hz) {
+  if (auto wrong = not_a_train(train)) return *wrong;
+  const std::size_t columns = flicker_Hz > 0.0 ? 5 : 1;
+  std::vector<double> design;
+  for (const double t : train.t_s) {
+    design.push_back(1.0);
+    if (columns > 1) add_lines(design, t, std::array{flicker_Hz, 2.0 * flicker_Hz});
   }
+  const auto fit = fit_linear(design, columns, train.level, hann_weights(train));
+  if (!fit) return fit.error();
+  return Level{fit->coefficients[0], std::sqrt(fit->variance(0))};
+}
+
+Result<double> residual_without_lines(const Train& train, const PulseFit& fit, std::span<const double> lines_Hz) {
+  std::vector<double> design;
+  for (const double t : train.t_s) add_lines(design, t, lines_Hz);
+  const std::size_t columns = 2 * lines_Hz.size(), n = fit.residuals.size();
+  const auto lines = fit_linear(design, columns, fit.residuals);
+  if (!lines) return lines.error();
+  const auto& rest = lines->residuals;
+  const double squares = std::inner_product(rest.begin(), rest.end(), rest.begin(), 0.0);
+  const std::size_t fitted = linear_columns + columns;
+  return std::sqrt(squares / static_cast<double>(n > fitted ? n - fitted : 1)) / std::abs(fit.dc);
+}
+
+Result<void> is_modulated(const PulseFit& fit) {
+  if (!(fit.dc > 10.0 * fit.dc_u)) return problem("pulses_too_dark");
+  if (!(fit.ac > 3.0 * fit.ac_u) || !(fit.ac > 1e-9 * fit.dc)) return problem("pulses_no_modulation");
+  return {};
+}
+
+Result<Ratio> ratio_of(const PerBand<PulseFit>& fits) {
+  for (const PulseFit* fit : {&fits.red, &fits.infrared})
+    if (const auto modulated = is_modulated(*fit); !modulated) return modulated.error();
   const double red = fits.red.modulation_u / fits.red.modulation;
   const double infrared = fits.infrared.modulation_u / fits.infrared.modulation;
   const double alike = shared_noise(fits.red, fits.infrared) * std::cos(fits.red.phase_rad - fits.infrared.phase_rad);

@@ -56,6 +56,23 @@ struct PulseRules {
 /// what is not in the model, such as aliased flicker, from leaking into the fundamental.
 Result<PulseFit> fit_pulses(const Train& train, const PulseRules& rules);
 
+/// A steady level in the units of the train, with its standard uncertainty from noise.
+struct Level {
+  double value = 0.0, noise_u = 0.0;
+};
+/// Level of a train that nothing modulates but perhaps a lamp: least squares with Hann weights of an offset and, when
+/// `flicker_Hz` is above 0, of sine and cosine at that frequency and at twice it.
+/// Errors: pulses_too_few, pulses_lengths_differ, pulses_time_not_rising, fit_impossible.
+Result<Level> fit_level(const Train& train, double flicker_Hz);
+
+/// Standard deviation of the fit's residuals, over |dc|, after lines at these frequencies are fitted out of them.
+/// Errors: fit_impossible.
+Result<double> residual_without_lines(const Train& train, const PulseFit& fit, std::span<const double> lines_Hz);
+
+/// Whether a band's fit holds enough light and modulation to say how much it is modulated.
+/// Errors: pulses_too_dark (a level that is not well above its noise), pulses_no_modulation.
+Result<void> is_modulated(const PulseFit& fit);
+
 /// Ratio of the modulations of two bands and its noise, with the correlation that shared dark slots bring.
 struct Ratio {
   double value = 0.0;

@@ -360,6 +360,7 @@ Result<Line> find_line(const Spectrum& spectrum, const LineRules& rules) {
   const Integral integral = integrate(*part, integral_weights(*part, first, last));
   if (!(integral.area > 0.0)) return problem("spectrum_no_peak");
   line.centroid_nm = integral.mean_nm;
+  line.run_from_nm = first.crossing_nm, line.run_to_nm = last.crossing_nm;
   const double end_u = all ? 0.0
                            : std::hypot(end_noise(*part, first, line, integral, rules.threshold),
                                         end_noise(*part, last, line, integral, rules.threshold));

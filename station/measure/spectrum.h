@@ -39,6 +39,7 @@ struct Line {
   double centroid_nm = 0.0, centroid_u = 0.0;                    ///< over the run above the threshold
   double half_power_centre_nm = 0.0, half_power_centre_u = 0.0;  ///< middle of the half-power points
   double width_nm = 0.0, width_u = 0.0;                          ///< between the half-power points (FWHM), slit removed
+  double run_from_nm = 0.0, run_to_nm = 0.0;                     ///< ends of the centroid's run
   double peak_power = 0.0;
   double edge_level = 0.0;  ///< the larger level (of the peak) at which the axis, not the threshold, ended the run
 };

@@ -34,7 +34,16 @@ std::vector<AnyCapture> one_of_each() {
   infrared.band = Band::infrared;
   ElectricalCapture little;
   little.id_open = true;
-  return {full_electrical(), little, DarkCapture{0.9, 0.1, 0.003, 0.002, 5.0, 0.1, 24.5}, red, infrared, some_pulses()};
+  const PulseSignal signal;
+  return {full_electrical(),
+          little,
+          DarkCapture{0.9, 0.1, 0.003, 0.002, 5.0, 0.1, 24.5},
+          red,
+          infrared,
+          some_pulses(),
+          RedAloneCapture{red},
+          closed_path_capture(signal, 0.01, 10000.0 / 8388608.0),
+          ambient_capture(60.0, 0.5, 100.0, 0.3, 0.1, 10000.0 / 8388608.0)};
 }
 
 std::vector<std::byte> with_byte(Bytes bytes, std::size_t at, unsigned value) {
@@ -66,6 +75,9 @@ TEST(CaptureFormat, KindsAreNamed) {
   EXPECT_EQ(capture_kind(all[3]), "red_spectrum");
   EXPECT_EQ(capture_kind(all[4]), "infrared_spectrum");
   EXPECT_EQ(capture_kind(all[5]), "pulses_0p4");
+  EXPECT_EQ(capture_kind(all[6]), "red_alone_spectrum");
+  EXPECT_EQ(capture_kind(all[7]), "closed_path");
+  EXPECT_EQ(capture_kind(all[8]), "ambient");
 }
 
 // Written out by hand from CAPTURES.md: a stranger's reader must find these bytes.
@@ -84,6 +96,26 @@ TEST(CaptureFormat, PulseCodesAreSigned24Bit) {
   ASSERT_EQ(bytes.size(), 4u + 6 * 8 + 8 + 12);
   const std::array<unsigned, 12> codes{0xFE, 0xFF, 0xFF, 1, 0, 0, 0x56, 0x34, 0x12, 0, 0, 0x80};
   for (std::size_t i = 0; i < codes.size(); ++i) EXPECT_EQ(std::to_integer<unsigned>(bytes[60 + i]), codes[i]) << i;
+}
+
+// The kinds by their number, and the sizes that CAPTURES.md gives.
+TEST(CaptureFormat, LaterKindsByteForByte) {
+  const auto all = one_of_each();
+  const auto kind = [&](std::size_t i) { return std::to_integer<unsigned>(encode(all[i])[2]); };
+  EXPECT_EQ(kind(3), 3u);
+  EXPECT_EQ(kind(6), 5u);
+  EXPECT_EQ(kind(7), 6u);
+  EXPECT_EQ(kind(8), 7u);
+  Bytes spectrum = encode(all[3]), alone = encode(all[6]);  // the same spectrum
+  EXPECT_EQ(std::vector(alone.begin() + 4, alone.end()), std::vector(spectrum.begin() + 4, spectrum.end()));
+  EXPECT_EQ(encode(all[7]).size(), 4u + 4 * 8 + 8 + 64 * 12);
+  EXPECT_EQ(encode(all[8]).size(), 4u + 4 * 8 + 8 + 64 * 12);
+  AmbientCapture ambient{0.5, 100.0, 0.001756, {-2}, {1}, {0x123456}, {-8388608}, 25.0};
+  const Bytes bytes = encode(ambient);
+  const std::array<unsigned, 20> back{1, 0, 0, 0, 1, 0, 0, 0, 0xFE, 0xFF, 0xFF, 1, 0, 0, 0x56, 0x34, 0x12, 0, 0, 0x80};
+  ASSERT_EQ(bytes.size(), 36u + back.size());
+  for (std::size_t i = 0; i < back.size(); ++i) EXPECT_EQ(std::to_integer<unsigned>(bytes[36 + i]), back[i]) << i;
+  EXPECT_EQ(problem_of(with_byte(alone, 4, 1)), "capture_malformed");  // the infrared band cannot be red alone
 }
 
 TEST(CaptureFormat, EveryShorteningAndLengtheningIsRefused) {
@@ -132,6 +164,11 @@ TEST(CaptureFormat, OurOwnMistakesThrow) {
   PulseCapture wide = some_pulses();
   wide.red[1] = 1 << 23;
   EXPECT_THROW(encode(wide), std::invalid_argument);
+  RedAloneCapture alone{spectrum_capture(nominal_infrared, Band::infrared, 0.5, 4, 3)};
+  EXPECT_THROW(encode(alone), std::invalid_argument);
+  AmbientCapture unlit = ambient_capture(60.0, 0.5, 100.0, 0.3, 0.1, 1e-3);
+  unlit.lamp_level = 0.0;
+  EXPECT_THROW(encode(unlit), std::invalid_argument);
   DarkCapture dark;
   dark.open_nA = std::numeric_limits<double>::quiet_NaN();
   EXPECT_THROW(encode(dark), std::invalid_argument);

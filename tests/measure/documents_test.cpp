@@ -117,7 +117,6 @@ TEST(Model, EachFaultHasItsName) {
   EXPECT_EQ(with("    - {ratio: 1.0, red: 1.0 %, infrared: 1.0 %}\n", ""), Ids{"model_set_point_missing"});
   EXPECT_EQ(with("{ratio: 1.6, red: 1.6 %, infrared: 1.0 %}", "{ratio: 0.9, red: 0.9 %, infrared: 1.0 %}"),
             Ids{"model_not_rising"});
-  EXPECT_EQ(with("  - probe_present\n", "  - saturation_error_70\n"), Ids{"model_check_not_made"});
   EXPECT_EQ(with("  - id_resistance\n  - id_deviation\n", "  - id_deviation\n  - id_resistance\n"),
             Ids{"model_check_order"});
   EXPECT_EQ(with("    set_point: {u: 0.31 %, scope: common}", "    set_point: {scope: common}"),
@@ -128,6 +127,89 @@ TEST(Model, EachFaultHasItsName) {
   EXPECT_EQ(with("ceiling: 25 mA", "ceiling: 25 nm"),
             (Ids{"model_drive_above_ceiling", "model_drive_above_ceiling", "unit_mismatch"}));
   EXPECT_EQ(with("  ratio_deviation_1p0:\n", "  ratio_deviation_1p6:\n"), Ids{"model_budget_missing"});
+}
+
+TEST(Model, AModelMayMakeEveryCheckOfTheCatalogue) {
+  const Model model = all_checks();
+  ASSERT_EQ(model.routine.size(), catalogue().size());
+  for (const Check& check : catalogue()) EXPECT_TRUE(model.has_check(check.slug)) << check.slug;
+  EXPECT_EQ(model.needed_set_points().size(), 3u);
+  EXPECT_EQ(model.level_set_point()->ratio, 1.0);
+  EXPECT_EQ(model.cycles_for(model.ambient->capture_s), 64);
+  EXPECT_EQ(model.saturation->curve.coefficients, (std::vector<double>{110.0, -25.0}));
+  EXPECT_EQ(model.saturation->table, "haemoglobin_prahl");
+  EXPECT_EQ(model.saturation->shape.red.width_nm, 19.0);
+  EXPECT_TRUE(model.saturation->haemoglobin);
+}
+
+TEST(Model, TheLevelIsCapturedForChecksThatNeedNoSetPointOfTheirOwn) {
+  Model model = all_checks();
+  model.routine = {"red_transfer", "ratio_deviation_0p4"};
+  ASSERT_EQ(model.needed_set_points().size(), 2u);
+  EXPECT_EQ(model.needed_set_points()[1].ratio, 1.0);
+  model.routine = {"ratio_deviation_1p6"};
+  ASSERT_EQ(model.needed_set_points().size(), 1u);
+  EXPECT_EQ(model.needed_set_points()[0].ratio, 1.6);
+  model.routine = {"red_modulation_deviation"};
+  EXPECT_EQ(model.needed_set_points().size(), 3u);
+  model.routine = {"red_centroid"};
+  EXPECT_TRUE(model.needed_set_points().empty());
+}
+
+TEST(Model, ACheckWithoutWhatItNeedsIsRefused) {
+  const std::string good = all_checks_text();
+  const auto with = [&](const std::string& what, const std::string& instead) {
+    return model_faults(replaced(good, what, instead));
+  };
+  const auto cut = [&](const std::string& from, const std::string& to) {
+    const auto a = good.find(from), b = good.find(to, a);
+    return model_faults(std::string{good}.erase(a, b - a));
+  };
+  EXPECT_EQ(model_faults(good), Ids{});
+  EXPECT_EQ(cut("ambient light:", "closed path:"), Ids{"model_section_missing"});
+  EXPECT_EQ(cut("closed path:", "# Photocurrent per power"), Ids{"model_section_missing"});
+  EXPECT_EQ(cut("secondary light:", "# The modelled saturation error"), Ids{"model_section_missing"});
+  EXPECT_EQ(cut("saturation:\n", "\n# Standard uncertainties"), Ids(4, "model_section_missing"));
+  EXPECT_EQ(with("  - secondary_emission\n", ""), Ids{"model_check_needs_check"});
+  EXPECT_EQ(cut("  - red_centroid\n", "  - infrared_centroid\n"), Ids{});  // its budget is enough
+  EXPECT_EQ(with("    - {ratio: 0.4, red: 1.0 %, infrared: 2.5 %}\n", ""),
+            (Ids{"model_set_point_missing", "model_set_points_few", "model_set_points_few"}));
+  EXPECT_EQ(with("[110, -25]", "[110, 25]"), Ids{"model_curve_not_falling"});
+  EXPECT_EQ(with("[110, -25]", "[110]"), Ids{"model_curve_kind"});
+  EXPECT_EQ(with("to ratio: 2.4", "to ratio: 1.4"), Ids{"model_curve_short"});
+  EXPECT_EQ(with("from ratio: 0.2", "from ratio: 0.5"), Ids{"model_curve_short"});
+  EXPECT_EQ(with("sha256: abce", "sha256: ABCE"), Ids{"model_bad_sha256"});
+  EXPECT_EQ(with("width: 19.0 nm", "width: 0 nm"), Ids{"model_out_of_range"});
+  EXPECT_EQ(with("skew: -0.15", "skew: -1.5"), Ids{"model_out_of_range"});
+  EXPECT_EQ(with("flicker_Hz: 100", "flicker_Hz: 50"), Ids{"model_unknown_word"});
+  EXPECT_EQ(with("lamp: 100 %", "lamp: 0 %"), Ids{"model_out_of_range"});
+  EXPECT_EQ(with("nominal lines:", "nominal line:"), (Ids{"yaml_missing_key", "yaml_unknown_key_near"}));
+  EXPECT_EQ(with("{nm: 1060, relative", "{nm: 560, relative"), Ids{"model_not_rising"});
+}
+
+TEST(Model, ACurveMayBeATable) {
+  const std::string text = replaced(all_checks_text(), "{coefficients: [110, -25], from ratio: 0.2, to ratio: 2.4}",
+                                    "{points: [{ratio: 0.2, saturation: 105 %}, {ratio: 1, saturation: 85 %}, "
+                                    "{ratio: 2.4, saturation: 40 %}]}");
+  const auto model = read_model(text, "m.yaml");
+  ASSERT_TRUE(model) << model.error().front().text();
+  expect_within(model->saturation->curve.saturation_at(0.6).value(), 95.0, 1e-12);
+  expect_within(model->saturation->curve.ratio_at(85.0).value(), 1.0, 1e-12);
+  EXPECT_EQ(model_faults(replaced(text, "ratio: 1,", "ratio: 0.2,")),
+            (Ids{"model_curve_not_falling", "model_not_rising"}));
+  EXPECT_EQ(
+      model_faults(replaced(text, "{points:", "{coefficients: [110, -25], from ratio: 0.2, to ratio: 2, points:")),
+      Ids{"model_curve_kind"});
+}
+
+TEST(Model, AHaemoglobinTableIsAttachedWhole) {
+  Model model = read_model(all_checks_text(), "m.yaml").value();
+  EXPECT_EQ(ids(attach_haemoglobin(model, "wavelength_nm,HbO2,Hb\n600,1,2\n800,1,1\n", "t.csv")),
+            Ids{"model_table_short"});
+  EXPECT_FALSE(attach_haemoglobin(model, "wavelength_nm,HbO2\n600,1\n", "t.csv").empty());
+  EXPECT_FALSE(model.saturation->haemoglobin);
+  Model plain = aq_20();
+  EXPECT_TRUE(attach_haemoglobin(plain, "nothing", "t.csv").empty());
 }
 
 TEST(Model, ABrokenOrEmptyTextIsRefusedNotFatal) {

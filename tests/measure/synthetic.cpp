@@ -87,11 +87,17 @@ PulseCapture pulse_capture(const PulseSignal& signal, double nA_per_code, double
     const double noise = signal.noise_nA > 0.0 ? signal.noise_nA * normal_deviate(entropy) : 0.0;
     return static_cast<std::int32_t>(std::floor((nA + noise) / nA_per_code + 0.5));
   };
-  const auto light = [&](Band band, double t) {
+  const auto own = [&](Band band, double t) {
     const double angle = 2.0 * std::numbers::pi * signal.rate_Hz * t + signal.phase_rad;
     const double wave = std::sin(angle) + signal.second_harmonic * std::sin(2.0 * angle);
     const double drift = 1.0 + signal.drift * (t / length_s - 0.5);
-    return signal.dc_nA.of(band) * drift * (1.0 + signal.depth.of(band) * wave);
+    const double secondary = band == Band::red ? signal.secondary : 0.0;
+    const double depth = (1.0 - secondary) * signal.depth.of(band) + secondary * signal.depth.infrared;
+    return signal.dc_nA.of(band) * drift * (1.0 + (1.0 - signal.around) * depth * wave);
+  };
+  const auto light = [&](Band band, double t) {
+    const Band other = band == Band::red ? Band::infrared : Band::red;
+    return own(band, t) + (signal.crosstalk == 0.0 ? 0.0 : signal.crosstalk * own(other, t));
   };
   for (int i = 0; i < signal.cycles; ++i) {
     const auto at = [&](int eighths) { return signal.cycle_s * (i + eighths / 8.0); };
@@ -101,6 +107,76 @@ PulseCapture pulse_capture(const PulseSignal& signal, double nA_per_code, double
     capture.dark_b.push_back(code(signal.ambient(at(7))));
   }
   return capture;
+}
+
+std::string all_checks_text() { return text_of(source_path("tests/measure/all-checks.yaml")); }
+
+Model all_checks() {
+  static const Model model = [] {
+    Model read = read_model(all_checks_text(), "all-checks.yaml").value();
+    const std::string file = "configs/tables/" + read.saturation->table + ".csv";
+    if (!attach_haemoglobin(read, text_of(source_path(file)), file).empty()) throw std::runtime_error("bad table");
+    return read;
+  }();
+  return model;
+}
+
+SaturationModel saturation_model(const std::string& table_text) {
+  SaturationModel model = *all_checks().saturation;
+  model.haemoglobin = read_extinction(table_text, "table.csv").value();
+  return model;
+}
+
+ClosedPathCapture closed_path_capture(const PulseSignal& signal, double share, double nA_per_code) {
+  PulseSignal closed = signal;
+  closed.dc_nA = {signal.dc_nA.red * share, signal.dc_nA.infrared * share};
+  closed.depth = {0.0, 0.0}, closed.cycles = 64, closed.seed += 100;
+  const PulseCapture taken = pulse_capture(closed, nA_per_code);
+  return {taken.cycle_s, 0, taken.red, taken.dark_a, taken.infrared, taken.dark_b, taken.drive_mA, taken.temperature_C};
+}
+
+AmbientCapture ambient_capture(double lamp_nA, double level, double flicker_Hz, double flicker, double noise_nA,
+                               double nA_per_code) {
+  PulseSignal dark;
+  dark.dc_nA = {0.0, 0.0}, dark.depth = {0.0, 0.0}, dark.cycles = 64, dark.noise_nA = noise_nA, dark.seed = 77;
+  constexpr double as_found_nA = 5.0;  // dark current and the amplifier's offset
+  dark.ambient = [](double) { return as_found_nA; };
+  const PulseCapture unlit = pulse_capture(dark, nA_per_code);
+  dark.seed = 78;
+  dark.ambient = [=](double t) {
+    return as_found_nA + lamp_nA * level * (1.0 + flicker * std::sin(2.0 * std::numbers::pi * flicker_Hz * t + 0.3));
+  };
+  const PulseCapture lit = pulse_capture(dark, nA_per_code);
+  return {level, flicker_Hz, dark.cycle_s, lit.dark_a, lit.dark_b, unlit.dark_a, unlit.dark_b, 25.0};
+}
+
+Captures complete(double temperature_C, std::uint64_t seed, PulseSignal signal) {
+  static const Certificates both = certificates();
+  Captures captures = healthy(temperature_C, seed);
+  const double above = temperature_C - 25.0;
+  ElectricalCapture& electrical = *captures.electrical;
+  electrical.mains_pickup_nA = 0.4;
+  electrical.led.red.at_quarter = ForwardVoltage{5.0, 5.0, electrical.led.red.at_drive->voltage_V - 0.095, false};
+  electrical.led.infrared.at_quarter =
+      ForwardVoltage{5.0, 5.0, electrical.led.infrared.at_drive->voltage_V - 0.085, false};
+  for (const Band band : {Band::red, Band::infrared}) {
+    LedElectrical& led = electrical.led.of(band);
+    led.warm_voltage_V = led.at_drive->voltage_V, led.first_voltage_V = *led.warm_voltage_V + 0.0079;
+    led.reverse_leakage_uA = 0.02;
+  }
+  const LogNormal warm_red{nominal_red.peak_nm + 0.14 * above, nominal_red.D_nm, nominal_red.b};
+  captures.red_alone = RedAloneCapture{spectrum_capture(warm_red, Band::red, 0.5, 4, seed == 0 ? 0 : seed + 20)};
+  captures.red_alone->spectrum.temperature_C = temperature_C;
+  captures.pulses.clear();
+  signal.dc_nA.red *= 1.0 - 0.007 * above, signal.dc_nA.infrared *= 1.0 - 0.005 * above;
+  for (const SetPoint& point : all_checks().set_points) {
+    signal.depth = point.depth, signal.seed = seed + 30 + captures.pulses.size();
+    captures.pulses.push_back(pulse_capture(signal, both.adapter.nA_per_code, point.ratio));
+    captures.pulses.back().temperature_C = temperature_C;
+  }
+  captures.closed_path = closed_path_capture(signal, 0.001, both.adapter.nA_per_code);
+  captures.ambient = ambient_capture(60.0, 1.0, 100.0, 0.3, signal.noise_nA, both.adapter.nA_per_code);
+  return captures;
 }
 
 Captures healthy(double temperature_C, std::uint64_t seed) {

@@ -73,11 +73,29 @@ struct PulseSignal {
   double phase_rad = 0.7;
   double drift = 0.0;            ///< relative change of the light over the whole capture
   double second_harmonic = 0.0;  ///< of the fundamental
+  double crosstalk = 0.0;        ///< share of the other LED's light in each slot
+  double secondary = 0.0;        ///< share of the red light that is modulated as infrared
+  double around = 0.0;           ///< share of the light that nothing modulates
   double noise_nA = 0.0;         ///< per slot
   std::function<double(double)> ambient = [](double) { return 0.0; };  ///< nA at a moment, in every slot
   std::uint64_t seed = 1;
 };
 PulseCapture pulse_capture(const PulseSignal& signal, double nA_per_code, double set_point_ratio = 1.0);
+
+/// A model that makes every check of the catalogue, its haemoglobin table attached.
+std::string all_checks_text();
+Model all_checks();
+/// The curve's and nominal lines' part of it with another table: the text of a CSV file.
+SaturationModel saturation_model(const std::string& table_text);
+
+/// Captures with the blade in: `share` of the signal's light. With the lamp on and off: dark slots with `lamp_nA` at
+/// its level, flickering by `flicker` of it.
+ClosedPathCapture closed_path_capture(const PulseSignal& signal, double share, double nA_per_code);
+AmbientCapture ambient_capture(double lamp_nA, double level, double flicker_Hz, double flicker, double noise_nA,
+                               double nA_per_code);
+/// The same as healthy(), and all that the other checks need: three set points, red alone, closed path, ambient.
+/// `signal`: what the light of the pulse captures is made of; its depths are those of each set point.
+Captures complete(double temperature_C, std::uint64_t seed, PulseSignal signal = {});
 
 /// Captures of a healthy nominal probe at this temperature of the nest.
 Captures healthy(double temperature_C, std::uint64_t seed);
