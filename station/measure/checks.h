@@ -9,6 +9,7 @@
 #include "station/measure/model.h"
 #include "station/measure/pulses.h"
 #include "station/measure/reading.h"
+#include "station/measure/saturation.h"
 #include "station/measure/spectrum.h"
 
 // What the checks of one run are computed from, and the shape of their answers. Inside this folder only; evaluate() is
@@ -24,13 +25,23 @@ struct FittedPulses {
   PerBand<PulseFit> fits;
 };
 
-/// What all checks of one run share. Each line and each fit is made once.
+/// Both bands' spectra as they weigh on the extinctions, beside those of the coded bin.
+struct WeighedSpectra {
+  std::string reason;  ///< why there are none; empty: there are
+  PerBand<Absorption> nominal;
+  PerBand<Absorption> measured;       ///< referred to 25 C
+  PerBand<Absorption> lower, higher;  ///< the same with every wavelength `weighed_step_nm` lower and higher
+};
+constexpr double weighed_step_nm = 0.25;
+
+/// What all checks of one run share. Each line, fit and weighing is made once.
 struct Run {
   const Model& model;
   const Certificates& certificates;
   const Captures& captures;
   PerBand<Result<Line>> lines;
   std::vector<FittedPulses> pulses;
+  WeighedSpectra weighed{};  ///< only for a model that wants a saturation error
 
   double above_reference_K(double told_C) const {
     return certificates.phantom.true_temperature_C(told_C) - reference_C;
@@ -75,6 +86,7 @@ Outcome centroid_of(const Run& run, Band band);
 // --- from spectra (spectrum_checks.cpp)
 Outcome secondary_emission(const Run& run);
 Outcome bin_mismatch(const Run& run);
+WeighedSpectra weigh(const Run& run);
 Outcome saturation_error(const Run& run, double saturation);
 
 // --- from slot samples (pulse_checks.cpp)

@@ -354,6 +354,11 @@ Reading finished(const Model& model, const Method& method, Outcome outcome) {
   return reading;
 }
 
+bool wants_saturation_error(const Model& model) {
+  return std::any_of(model.routine.begin(), model.routine.end(),
+                     [](const std::string& check) { return check.starts_with("saturation_error_"); });
+}
+
 bool no_probe(const Run& run) {
   const Outcome present = probe_present(run);
   return present.found && present.found->value == 0.0;
@@ -381,13 +386,13 @@ bool carries_uncertainty(std::string_view check) {
 }
 
 std::vector<Reading> evaluate(const Model& model, const Certificates& certificates, const Captures& captures) {
-  const Run run{
-      model,
-      certificates,
-      captures,
-      {line_of(model, certificates, captures, Band::red), line_of(model, certificates, captures, Band::infrared)},
-      fit_all(model, certificates, captures)};
+  Run run{model,
+          certificates,
+          captures,
+          {line_of(model, certificates, captures, Band::red), line_of(model, certificates, captures, Band::infrared)},
+          fit_all(model, certificates, captures)};
   const bool absent = no_probe(run);
+  if (!absent && wants_saturation_error(model)) run.weighed = weigh(run);
   std::vector<Reading> readings;
   for (const Method& method : methods) {
     if (!model.has_check(method.check)) continue;

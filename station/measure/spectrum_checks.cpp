@@ -2,7 +2,6 @@
 #include <string>
 
 #include "station/measure/checks.h"
-#include "station/measure/saturation.h"
 
 namespace probewright::measure::checks {
 namespace {
@@ -25,14 +24,6 @@ double shift_nm(const Run& run, Band band) {
   return run.model.temperature.centroid_nm_per_K.of(band) *
          run.above_reference_K(run.captures.spectrum(band)->temperature_C);
 }
-
-/// Both bands' spectra as they weigh on the extinctions, at 25 C.
-struct Weighed {
-  std::string reason;  ///< why there are none
-  PerBand<Absorption> at_25C;
-  PerBand<Absorption> lower, higher;  ///< every wavelength 0.25 nm lower and higher
-};
-constexpr double step_nm = 0.25;
 
 struct Piece {
   Spectrum spectrum;
@@ -60,33 +51,6 @@ Secondary secondary_of(const Run& run) {
   out.piece = {*spectrum, secondary_window.from_nm, secondary_window.to_nm};
   const Absorption own = absorption_of(*spectrum, line->run_from_nm, line->run_to_nm, 0.0, *run.model.saturation);
   out.per_line_area = 1.0 / own.area();
-  return out;
-}
-
-Weighed weigh(const Run& run) {
-  Weighed out;
-  const SaturationModel& model = *run.model.saturation;
-  const Secondary secondary = secondary_of(run);
-  PerBand<Piece> lines;
-  for (const Band band : {Band::red, Band::infrared}) {
-    const auto& capture = run.captures.spectrum(band);
-    if (!capture) return out.reason = not_captured(run).reason, out;
-    const auto& line = run.lines.of(band);
-    if (!line) return out.reason = reason_of(line.error()), out;
-    // The line was found, so the spectrum can be made.
-    lines.of(band) = {spectrum_of(*capture, run.certificates.phantom).value(), line->run_from_nm, line->run_to_nm};
-  }
-  if (!secondary.reason.empty()) return out.reason = secondary.reason, out;
-  const auto at = [&](Band band, double moved_nm) {
-    const double shift = shift_nm(run, band) - moved_nm;
-    Absorption sum = weighed(lines.of(band), shift, model);
-    if (band == Band::red) sum.add(weighed(secondary.piece, shift, model), sum.area() * secondary.per_line_area);
-    return sum;
-  };
-  for (const Band band : {Band::red, Band::infrared}) {
-    out.at_25C.of(band) = at(band, 0.0);
-    out.lower.of(band) = at(band, -step_nm), out.higher.of(band) = at(band, step_nm);
-  }
   return out;
 }
 
@@ -120,27 +84,53 @@ Outcome bin_mismatch(const Run& run) {
   return outcome;
 }
 
-Outcome saturation_error(const Run& run, double saturation) {
-  if (!run.model.saturation || !run.model.saturation->haemoglobin) return none("no_haemoglobin_table");
-  const SaturationModel& model = *run.model.saturation;
+WeighedSpectra weigh(const Run& run) {
+  WeighedSpectra out;
+  if (!run.model.saturation || !run.model.saturation->haemoglobin) return out.reason = "no_haemoglobin_table", out;
   const Coded coded = coded_bin_of(run);
-  if (coded.bin == nullptr) return none(coded.reason);
-  const Weighed measured = weigh(run);
-  if (!measured.reason.empty()) return none(measured.reason);
-  const PerBand<Absorption> nominal = nominal_of(run, *coded.bin);
+  if (coded.bin == nullptr) return out.reason = coded.reason, out;
+  const SaturationModel& model = *run.model.saturation;
+  const Secondary secondary = secondary_of(run);
+  PerBand<Piece> lines;
+  for (const Band band : {Band::red, Band::infrared}) {
+    const auto& capture = run.captures.spectrum(band);
+    if (!capture) return out.reason = not_captured(run).reason, out;
+    const auto& line = run.lines.of(band);
+    if (!line) return out.reason = reason_of(line.error()), out;
+    // The line was found, so the spectrum can be made.
+    lines.of(band) = {spectrum_of(*capture, run.certificates.phantom).value(), line->run_from_nm, line->run_to_nm};
+  }
+  if (!secondary.reason.empty()) return out.reason = secondary.reason, out;
+  out.nominal = nominal_of(run, *coded.bin);
+  const auto at = [&](Band band, double moved_nm) {
+    const double shift = shift_nm(run, band) - moved_nm;
+    Absorption sum = weighed(lines.of(band), shift, model);
+    if (band == Band::red) sum.add(weighed(secondary.piece, shift, model), sum.area() * secondary.per_line_area);
+    return sum;
+  };
+  for (const Band band : {Band::red, Band::infrared}) {
+    out.measured.of(band) = at(band, 0.0);
+    out.lower.of(band) = at(band, -weighed_step_nm), out.higher.of(band) = at(band, weighed_step_nm);
+  }
+  return out;
+}
 
-  const auto error = saturation_error_of(measured.at_25C, nominal, saturation, model);
-  const auto noise_points = saturation_error_noise(measured.at_25C, nominal, saturation, model);
+Outcome saturation_error(const Run& run, double saturation) {
+  const WeighedSpectra& spectra = run.weighed;
+  if (!spectra.reason.empty()) return none(spectra.reason);
+  const SaturationModel& model = *run.model.saturation;
+  const auto error = saturation_error_of(spectra.measured, spectra.nominal, saturation, model);
+  const auto noise_points = saturation_error_noise(spectra.measured, spectra.nominal, saturation, model);
   if (!error || !noise_points) return none("beyond_curve");
   Found out{*error, {noise(*noise_points)}};
   // What is uncertain of each centroid, but for noise, moves the whole line: points per nm by a small step.
   for (const Band band : {Band::red, Band::infrared}) {
-    PerBand<Absorption> low = measured.at_25C, high = measured.at_25C;
-    low.of(band) = measured.lower.of(band), high.of(band) = measured.higher.of(band);
-    const auto below = saturation_error_of(low, nominal, saturation, model);
-    const auto above = saturation_error_of(high, nominal, saturation, model);
+    PerBand<Absorption> low = spectra.measured, high = spectra.measured;
+    low.of(band) = spectra.lower.of(band), high.of(band) = spectra.higher.of(band);
+    const auto below = saturation_error_of(low, spectra.nominal, saturation, model);
+    const auto above = saturation_error_of(high, spectra.nominal, saturation, model);
     if (!below || !above) return none("beyond_curve");
-    const double points_per_nm = (*above - *below) / (2.0 * step_nm);
+    const double points_per_nm = (*above - *below) / (2.0 * weighed_step_nm);
     Found centroid = *centroid_of(run, band).found;
     const std::string check = std::string{slug(band)} + "_centroid";
     add_budget(run.model, check, centroid);
