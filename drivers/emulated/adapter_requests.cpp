@@ -165,12 +165,13 @@ asio::awaitable<AdapterDevice::Reply> AdapterDevice::forward_voltage(Shared self
   co_await self->clock_.wait_until_s(end_s);
   if (self->work_ != work) co_return Reply{};
   self->catch_up(end_s);
-  const bool present = self->nest_->probe().has_value();
+  const auto& probe = self->nest_->probe();
+  const bool flows = probe && conducts(red ? probe->red : probe->infrared);
   wire::LeWriter reply;
   reply.u8(led).u32(asked_uA);
   if (drive_uA == 0) {
     reply.u32(0).i32(0).i32(0).u8(no_drive);
-  } else if (!present) {
+  } else if (!flows) {
     reply.u32(0).i32(whole(1e6 * FrontEnd::compliance_V)).i32(0).u8(at_compliance);
   } else {
     const int voltage = self->measured_uV(colour, drive_mA, start_s, end_s);

@@ -26,6 +26,15 @@ wire::FaultRate rate_of(const SpoiltShare& share, std::uint64_t bytes_before) {
   return rate;
 }
 
+std::string faults_text(const Probe& probe) {
+  std::string text;
+  for (const PlantedFault& planted : probe.faults) {
+    if (!text.empty()) text += ", ";
+    text += std::string(slug_of(planted.fault)) + " " + shortest(planted.severity);
+  }
+  return text.empty() ? "no fault" : text;
+}
+
 asio::awaitable<std::unique_ptr<wire::Port>> open_later(Bench* bench, DeviceId device) {
   co_return bench->open(device);
 }
@@ -193,7 +202,28 @@ Result<void> Bench::seat(int nest, std::string_view serial, std::string_view mod
   if (!knows_model(model)) {
     return Problem{"bench_unknown_model", "", {{"model", std::string(model)}, {"models", known_models()}}};
   }
-  return seat(nest, draw_probe(options_.seed, serial, model));
+  const Probe* before = known(serial, model);
+  return seat(nest, before != nullptr ? *before : draw_probe(options_.seed, serial, model));
+}
+
+Result<void> Bench::seat(int nest, std::string_view serial, std::string_view model, PlantedFault fault) {
+  if (!knows_model(model)) {
+    return Problem{"bench_unknown_model", "", {{"model", std::string(model)}, {"models", known_models()}}};
+  }
+  if (!(fault.severity > 0.0 && fault.severity <= 1.0)) {
+    return Problem{"bench_severity", "", {{"severity", shortest(fault.severity)}}};
+  }
+  Probe probe = with_fault(draw_probe(options_.seed, serial, model), fault, options_.seed);
+  const Probe* before = known(serial, model);
+  if (before != nullptr && before->faults != probe.faults) {
+    return Problem{"bench_other_probe", "", {{"serial", probe.serial}, {"found", faults_text(*before)}}};
+  }
+  return seat(nest, before != nullptr ? *before : std::move(probe));
+}
+
+const Probe* Bench::known(std::string_view serial, std::string_view model) const {
+  const auto found = truths_.find(std::string(serial));
+  return found == truths_.end() || found->second.probe.model != model ? nullptr : &found->second.probe;
 }
 
 Result<void> Bench::seat(int nest, Probe probe) {

@@ -63,6 +63,7 @@ class Bench final : public Hands {
 
   // Hands.
   Result<void> seat(int nest, std::string_view serial, std::string_view model) override;
+  Result<void> seat(int nest, std::string_view serial, std::string_view model, PlantedFault fault) override;
   Result<void> remove(int nest) override;
   Result<void> lid(int nest, bool open) override;
   void room(double degC) override;
@@ -75,7 +76,7 @@ class Bench final : public Hands {
 
   bool cable_pulled(const DeviceId& device) const { return lines_.at(device).pulled; }
 
-  /// Seats a probe made by the caller instead of one drawn by its serial.
+  /// Seats a probe made by the caller instead of one drawn by its serial. From then on the serial is this probe.
   Result<void> seat(int nest, Probe probe);
 
   /// Truth of every probe that was ever seated, by serial.
@@ -114,6 +115,7 @@ class Bench final : public Hands {
                                      std::shared_ptr<wire::Port> port, std::weak_ptr<Bench*> bench, DeviceId device);
   void lost(const DeviceId& device, const wire::Port* port);
   Result<Nest*> nest_at(int nest);
+  const Probe* known(std::string_view serial, std::string_view model) const;
   Result<Line*> line_of(const DeviceId& device);
   double now_s() const { return clock_.now_s(); }
   double bytes_per_s() const { return options_.baud > 0 ? 0.1 * options_.baud * options_.speed : 0.0; }

@@ -69,12 +69,30 @@ std::vector<wire::FaultKind> kinds_in(std::string_view word, std::string_view fo
   throw Refusal{malformed("what happens to a byte is lose, change, double or any", form)};
 }
 
+PlantedFault probe_fault_in(std::string_view slug, std::string_view severity_word, std::string_view form) {
+  const auto fault = parse_fault(slug);
+  if (!fault) {
+    const std::string word(slug.substr(0, 40));
+    throw Refusal{Problem{"bench_unknown_fault", "", {{"fault", word}, {"faults", known_faults()}}}};
+  }
+  const auto severity = parse_double(severity_word);
+  if (!severity || !(*severity > 0.0 && *severity <= 1.0)) {
+    throw Refusal{malformed("a severity is a number above 0, at most 1", form)};
+  }
+  return {*fault, *severity};
+}
+
 Result<void> seat(Hands& hands, const Words& words, std::string_view form) {
   const int nest = nest_in(words[1], form);
-  if (words.size() == 4) return hands.seat(nest, words[2], words[3]);
-  const auto model = model_of_serial(words[2]);
+  const bool names_model = words.size() > 3 && words[3] != "fault";
+  const auto model = names_model ? std::optional{words[3]} : model_of_serial(words[2]);
   if (!model) return malformed("the serial does not tell the model", form);
-  return hands.seat(nest, words[2], *model);
+  const std::size_t rest = names_model ? 4 : 3;
+  if (words.size() == rest) return hands.seat(nest, words[2], *model);
+  if (words[rest] != "fault" || words.size() != rest + 3) {
+    return malformed("after the probe only \"fault\", its name and its severity may follow", form);
+  }
+  return hands.seat(nest, words[2], *model, probe_fault_in(words[rest + 1], words[rest + 2], form));
 }
 
 Result<void> remove(Hands& hands, const Words& words, std::string_view form) {
@@ -120,7 +138,7 @@ Result<void> fault(Hands& hands, const Words& words, std::string_view form) {
 }
 
 constexpr std::array commands{
-    Command{"seat", 2, 3, "seat 1 AQ20-048-00001 AQ-20", seat},
+    Command{"seat", 2, 6, "seat 1 AQ20-048-00001 AQ-20 fault secondary_emission 0.5", seat},
     Command{"remove", 1, 1, "remove 1", remove},
     Command{"lid", 2, 2, "lid 1 open", lid},
     Command{"room", 1, 1, "room 25.0", room},

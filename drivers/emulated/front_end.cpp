@@ -34,7 +34,8 @@ FrontEnd::Mean FrontEnd::mean_current(double current_nA, double time_s) {
   const double white = slot_noise_nA * std::sqrt(settled_share * slot_s / time_s);
   const double sd = std::sqrt(white * white + floor_nA * floor_nA);
   const double seen = current_nA * (1.0 + errors_.converter_gain) + offset_nA_ + noise_.normal(0.0, sd);
-  return {seen, sd * noise_.log_normal(1.0, 0.1)};
+  constexpr double full = adapter_certificate::full_scale_nA;
+  return {std::clamp(seen, -full, full), sd * noise_.log_normal(1.0, 0.1)};
 }
 
 double FrontEnd::reported_mA(double delivered_mA) {

@@ -36,7 +36,7 @@ class FrontEnd {
     double current_nA = 0.0;
     double sd_nA = 0.0;  ///< of the mean, as the adapter estimates it
   };
-  /// Mean of a steady current over a time, offset included.
+  /// Mean of a steady current over a time, offset included; the converter's full scale bounds it.
   Mean mean_current(double current_nA, double time_s);
 
   /// Currents that flow for a current that was set, both mA.

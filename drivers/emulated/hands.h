@@ -5,6 +5,7 @@
 #include <vector>
 
 #include "drivers/emulated/device.h"
+#include "drivers/emulated/probe_fault.h"
 #include "drivers/wire/fault_port.h"
 #include "station/base/result.h"
 
@@ -39,6 +40,10 @@ class Hands {
 
   /// Puts the probe `serial` of `model` into a nest, plugged into its adapter. A serial is always the same probe.
   virtual Result<void> seat(int nest, std::string_view serial, std::string_view model) = 0;
+  /// The same with a fault in it, for as long as the bench lives: seated again without naming one, it has it still. A
+  /// serial that was seated before as another probe is refused (bench_other_probe), and so is a severity that is not
+  /// above 0 and at most 1 (bench_severity).
+  virtual Result<void> seat(int nest, std::string_view serial, std::string_view model, PlantedFault fault) = 0;
   /// Takes the probe out.
   virtual Result<void> remove(int nest) = 0;
   virtual Result<void> lid(int nest, bool open) = 0;

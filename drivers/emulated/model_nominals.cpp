@@ -29,6 +29,7 @@ LedNominals red_led(double drive_mA, double transfer_nA_per_mA) {
 
 LedNominals infrared_led(double drive_mA, double transfer_nA_per_mA) {
   LedNominals n;
+  n.led.colour = LedColour::infrared;
   n.led.line = {942.8, 46.0, -0.10};
   n.led.transfer_nA_per_mA = transfer_nA_per_mA;
   n.led.forward_V = 1.30;

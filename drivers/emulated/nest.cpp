@@ -90,11 +90,13 @@ double Nest::led_light_nA(LedColour colour, double time_s, const LedDrive::Momen
   const double current_mA = red ? drive.red_mA : drive.infrared_mA;
   if (current_mA <= 0.0) return 0.0;
   const Led& led = red ? probe_->red : probe_->infrared;
+  if (!shines(led)) return 0.0;
+  const bool red_light = led.colour == LedColour::red;
   const double light = light_at(led, excess_K(led, ambient_degC_, red ? drive.red : drive.infrared));
   const auto bands = modulator_.at(time_s);
-  const double transmission = 1.0 + (red ? errors_.red_transmission : errors_.infrared_transmission);
-  const double secondary = red ? probe_->secondary_current : 0.0;
-  const double own_band = red ? bands.red : bands.infrared;
+  const double transmission = 1.0 + (red_light ? errors_.red_transmission : errors_.infrared_transmission);
+  const double secondary = red_light ? probe_->secondary_current : 0.0;
+  const double own_band = red_light ? bands.red : bands.infrared;
   const double through = (1.0 - secondary) * own_band + secondary * bands.infrared;
   const double path = blade_.at(time_s) ? 0.0 : (1.0 - probe_->direct_light) * transmission * through;
   return current_mA * led.transfer_nA_per_mA * light * seat_coupling_ * (path + probe_->direct_light);
@@ -103,14 +105,16 @@ double Nest::led_light_nA(LedColour colour, double time_s, const LedDrive::Momen
 Nest::Photocurrent Nest::photocurrent(Slot slot, double time_s) {
   if (!probe_) return {};
   Photocurrent current;
+  if (is_open(probe_->contact, time_s)) return {0.0, mains_nA(time_s)};
+  const double share = photocurrent_share(probe_->photodiode);
   current.background_nA = dark_current_nA(probe_->photodiode, ambient_degC_, operating_bias_V) +
-                          probe_->ambient_nA * ambient_light(time_s) + mains_nA(time_s);
+                          share * probe_->ambient_nA * ambient_light(time_s) + mains_nA(time_s);
   if (slot == Slot::dark) return current;
   const LedDrive::Moment drive = leds_.at(time_s);
   const double red = led_light_nA(LedColour::red, time_s, drive);
   const double infrared = led_light_nA(LedColour::infrared, time_s, drive);
   const double own = slot == Slot::red ? red : infrared, other = slot == Slot::red ? infrared : red;
-  current.light_nA = (own + probe_->slot_crosstalk * other) * (1.0 + noise_.normal(0.0, probe_->contact_noise));
+  current.light_nA = share * (own + probe_->slot_crosstalk * other) * (1.0 + noise_.normal(0.0, probe_->contact_noise));
   return current;
 }
 
@@ -127,6 +131,7 @@ double Nest::dark_nA(double bias_V, double from_s, double time_s) const {
   if (lid_open_.at(from_s)) {
     light += room_light * (1.0 + room_flicker_depth * mean_sine(2.0 * mains_Hz_, mains_phase_turns_, from_s, to_s));
   }
+  light *= photocurrent_share(probe_->photodiode);
   return dark_current_nA(probe_->photodiode, ambient_degC_, bias_V) + probe_->ambient_nA * light + mains;
 }
 
@@ -143,11 +148,12 @@ void Nest::add_led_lines(std::vector<SpectralLine>& lines, double from_s, double
     const bool red = colour == LedColour::red;
     const Led& led = red ? probe_->red : probe_->infrared;
     const double current_mA = red ? mean.red_mA : mean.infrared_mA;
-    if (current_mA <= 0.0) continue;
+    if (current_mA <= 0.0 || !shines(led)) continue;
+    const bool red_light = led.colour == LedColour::red;
     const double excess = excess_K(led, ambient_degC_, red ? mean.red : mean.infrared);
-    const double power =
-        (red ? 1.0 : infrared_power) * led.optical_power * seat_pick_off_ * light_at(led, excess) * current_mA / 20.0;
-    const double secondary = red ? probe_->secondary_power : 0.0;
+    const double power = (red_light ? 1.0 : infrared_power) * led.optical_power * seat_pick_off_ *
+                         light_at(led, excess) * current_mA / 20.0;
+    const double secondary = red_light ? probe_->secondary_power : 0.0;
     lines.push_back({line_at(led, excess), power * (1.0 - secondary)});
     if (secondary > 0.0) lines.push_back({probe_->secondary_line, power * secondary});
   }

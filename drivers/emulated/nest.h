@@ -16,7 +16,6 @@ namespace probewright::emulated {
 
 /// Which slot of a cycle.
 enum class Slot { red, dark, infrared };
-enum class LedColour { red, infrared };
 
 /// The physical world of one nest, which its two devices share: the probe in it, the light, the temperature. What the
 /// phantom does (modulator, blade, lamp) and what the adapter does (drive) meets here. Times are device seconds since
@@ -69,7 +68,8 @@ class Nest {
   Photocurrent photocurrent(Slot slot, double time_s);
   /// Mean photocurrent with both LEDs off, at a bias.
   double dark_nA(double bias_V, double from_s, double time_s) const;
-  /// Forward voltage of an LED of the seated probe in V, mean over a span of constant drive; drive_mA > 0.
+  /// Forward voltage of an LED of the seated probe in V, mean over a span of constant drive; drive_mA > 0 and
+  /// the LED conducts.
   double forward_V(LedColour colour, double drive_mA, double from_s, double to_s) const;
 
  private:

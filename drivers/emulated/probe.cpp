@@ -10,10 +10,6 @@
 namespace probewright::emulated {
 namespace {
 
-/// Photocurrent per power of the secondary line against the red line, through the phantom: tissue-like material passes
-/// less of it, silicon answers more to it.
-constexpr double secondary_current_per_power = 0.635;
-
 /// Resistors of a real lot sit well inside their 1 %.
 constexpr double id_relative_sd = 0.003;
 
@@ -91,7 +87,8 @@ Probe draw_probe(std::uint64_t seed, std::string_view serial, std::string_view m
   probe.secondary_power = deviates.log_normal(nominals->secondary_power, 0.3);
   probe.secondary_line = line_of(deviates.normal(890.0, 5.0), 48.0, 0.0);
   probe.secondary_current = secondary_current_per_power * probe.secondary_power;
-  probe.photodiode = {deviates.log_normal(nominals->dark_nA, 0.3), std::max(5.0, deviates.normal(10.0, 1.5)), 0.02};
+  probe.photodiode = {deviates.log_normal(nominals->dark_nA, 0.3), std::max(5.0, deviates.normal(10.0, 1.5)), 0.02, 0.0,
+                      DetectorCircuit::whole};
   const BinNominals& bin = nearest_bin(deviates.normal(probe.red.line.centroid_nm(), sorting_sd_nm));
   probe.coded_bin = bin.name;
   probe.id_ohm = bin.id_ohm * deviates.normal(1.0, id_relative_sd);

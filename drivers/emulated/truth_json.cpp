@@ -13,7 +13,9 @@ Json line_json(const LineShape& line) {
 }
 
 Json led_parameters(const Led& led) {
-  return {{"line", line_json(led.line)},
+  return {{"colour", led.colour == LedColour::red ? "red" : "infrared"},
+          {"circuit", to_text(led.circuit)},
+          {"line", line_json(led.line)},
           {"transfer_nA_per_mA", led.transfer_nA_per_mA},
           {"optical_power", led.optical_power},
           {"forward_V", led.forward_V},
@@ -41,13 +43,24 @@ Json parameters(const Probe& probe) {
           {"dark_nA_25C", probe.photodiode.dark_nA_25C},
           {"dark_doubling_K", probe.photodiode.doubling_K},
           {"dark_slope_per_V", probe.photodiode.slope_per_V},
+          {"dark_surface_nA", probe.photodiode.surface_nA},
+          {"detector_circuit", to_text(probe.photodiode.circuit)},
           {"id_ohm", probe.id_ohm},
           {"coded_bin", probe.coded_bin},
           {"mains_pickup_nA", probe.mains_pickup_nA},
           {"contact_noise", probe.contact_noise},
+          {"contact_gaps_per_s", probe.contact.gaps_per_s},
           {"direct_light", probe.direct_light},
           {"slot_crosstalk", probe.slot_crosstalk},
           {"ambient_nA", probe.ambient_nA}};
+}
+
+Json faults(const Probe& probe) {
+  Json list = Json::array();
+  for (const PlantedFault& planted : probe.faults) {
+    list.push_back({{"fault", slug_of(planted.fault)}, {"severity", planted.severity}});
+  }
+  return list;
 }
 
 /// Measurands by the slugs of the check catalogue; values that have no check carry their own names.
@@ -99,7 +112,7 @@ std::string truth_json(std::uint64_t seed, const std::map<std::string, Truth>& p
   Json file = {{"format", 1}, {"emulated", true}, {"seed", seed}, {"probes", Json::object()}};
   for (const auto& [serial, truth] : probes) {
     file["probes"][serial] = {{"model", truth.probe.model},
-                              {"faults", Json::array()},
+                              {"faults", faults(truth.probe)},
                               {"measurands", measurands(truth)},
                               {"parameters", parameters(truth.probe)}};
   }

@@ -1,5 +1,6 @@
 #include <gtest/gtest.h>
 
+#include <limits>
 #include <numeric>
 
 #include "drivers/emulated/control_commands.h"
@@ -35,6 +36,42 @@ TEST(Hands, TruthIsTheSameInEveryNestAndOnEveryDay) {
   ASSERT_TRUE(other.bench.seat(2, "AQ20-048-00005", "AQ-20"));
   EXPECT_EQ(one.bench.truths().at("AQ20-048-00005").red.centroid_nm,
             other.bench.truths().at("AQ20-048-00005").red.centroid_nm);
+}
+
+TEST(Hands, SeatedFaultStaysWithItsSerial) {
+  Trial trial(two_nests());
+  const PlantedFault leaky{ProbeFault::detector_leaky, 0.5};
+  const std::string serial = "AQ20-048-00005";
+  ASSERT_TRUE(trial.bench.seat(1, serial, "AQ-20", leaky));
+  const double dark_nA = trial.bench.truths().at(serial).dark_current_nA;
+  EXPECT_GT(dark_nA, 10.0);
+  ASSERT_TRUE(trial.bench.remove(1));
+  ASSERT_TRUE(trial.bench.seat(2, serial, "AQ-20"));
+  EXPECT_EQ(trial.bench.truths().at(serial).dark_current_nA, dark_nA);
+  ASSERT_TRUE(trial.bench.remove(2));
+  ASSERT_TRUE(trial.bench.seat(2, serial, "AQ-20", leaky));
+  EXPECT_EQ(trial.bench.truths().at(serial).probe.faults, (std::vector<PlantedFault>{leaky}));
+  ASSERT_TRUE(trial.bench.remove(2));
+  const auto other = trial.bench.seat(2, serial, "AQ-20", {ProbeFault::shield_open, 1.0});
+  ASSERT_FALSE(other);
+  EXPECT_EQ(
+      other.error().text(),
+      "the probe AQ20-048-00005 was seated before with detector_leaky 0.5 (a serial stays the same probe: seat it "
+      "without naming a fault, or take another serial)");
+  ASSERT_TRUE(trial.bench.seat(2, "AQ20-048-00006", "AQ-20"));
+  ASSERT_TRUE(trial.bench.remove(2));
+  EXPECT_EQ(trial.bench.seat(2, "AQ20-048-00006", "AQ-20", leaky).error().id, "bench_other_probe");
+}
+
+TEST(Hands, SeatWithAFaultChecksWhatItIsGiven) {
+  Trial trial;
+  const std::string serial = "AQ20-048-00005";
+  EXPECT_EQ(trial.bench.seat(1, serial, "AQ-99", {ProbeFault::shield_open, 1.0}).error().id, "bench_unknown_model");
+  for (const double severity : {0.0, -1.0, 1.5, std::numeric_limits<double>::quiet_NaN()}) {
+    EXPECT_EQ(trial.bench.seat(1, serial, "AQ-20", {ProbeFault::shield_open, severity}).error().id, "bench_severity");
+  }
+  EXPECT_EQ(trial.bench.seat(2, serial, "AQ-20", {ProbeFault::shield_open, 1.0}).error().id, "bench_no_such_nest");
+  EXPECT_TRUE(trial.bench.truths().empty());
 }
 
 TEST(Hands, FirstSeatingIsTold) {
@@ -209,6 +246,12 @@ TEST(ControlCommands, DoWhatTheySay) {
   EXPECT_EQ(obey(trial.bench, "seat 1 AQ20-048-00001"), "ok");
   EXPECT_EQ(obey(trial.bench, "  seat\t2  AQ35-048-00001   AQ-35 \r"), "ok");
   EXPECT_EQ(phantom.ask("PROB?"), "1");
+  EXPECT_EQ(obey(trial.bench, "remove 2"), "ok");
+  EXPECT_EQ(obey(trial.bench, "seat 2 AQ20-048-00002 fault id_missing 1"), "ok");
+  EXPECT_EQ(trial.bench.truths().at("AQ20-048-00002").probe.faults.front().fault, ProbeFault::id_missing);
+  EXPECT_EQ(obey(trial.bench, "remove 2"), "ok");
+  EXPECT_EQ(obey(trial.bench, "seat 2 AQ35-048-00003 AQ-35 fault red_led_weak 0.25"), "ok");
+  EXPECT_EQ(trial.bench.truths().at("AQ35-048-00003").probe.faults.front().severity, 0.25);
   EXPECT_EQ(obey(trial.bench, "lid 1 open"), "ok");
   EXPECT_EQ(phantom.ask("LID?"), "OPEN");
   EXPECT_EQ(obey(trial.bench, "lid 1 closed"), "ok");
@@ -243,6 +286,17 @@ TEST(ControlCommands, SayWhatIsWrongInASentence) {
                            "seat x AQ20-048-00001",
                            "seat 1 XX-1",
                            "seat 1 a b c",
+                           "seat 1 AQ20-048-00001 fault",
+                           "seat 1 AQ20-048-00001 fault shield_open",
+                           "seat 1 AQ20-048-00001 fault bad_luck 1",
+                           "seat 1 AQ20-048-00001 fault shield_open 0",
+                           "seat 1 AQ20-048-00001 fault shield_open 1.5",
+                           "seat 1 AQ20-048-00001 fault shield_open nan",
+                           "seat 1 AQ20-048-00001 flaw shield_open 1",
+                           "seat 1 AQ20-048-00001 fault shield_open 1 2",
+                           "seat 1 AQ20-048-00001 AQ-20 fault shield_open",
+                           "seat 1 AQ20-048-00001 AQ-20 fault shield_open 1 2",
+                           "seat 1 XX-1 fault shield_open 1",
                            "remove",
                            "remove 1",
                            "lid 1 ajar",
