@@ -103,6 +103,7 @@ struct Look {
   Pair forward_V{}, first_V{}, quarter_V{}, drive_mA{}, leakage_uA{};
   std::array<bool, 2> compliance{}, inseparable{};
   double dark_nA = 0.0, ambient_nA = 0.0, mains_nA = 0.0, id_ohm = 0.0;
+  double ambient_in_slots_nA = 0.0;  ///< dark slots of a capture, lamp on minus off
   bool id_open = false;
   Light both, red_alone;
   std::array<Trains, 3> pulses;
@@ -139,6 +140,11 @@ class Looker {
     }
     EXPECT_EQ(phantom_.ask("MOD:STAT OFF;:PATH:OPAQ ON;*OPC?"), "1");
     look.closed = capture(352, 351);
+    const double dark_slots_nA = dark_slots_nA_;
+    phantom_.ask("LAMP:STAT ON;STAT?");
+    capture(352, 351);
+    look.ambient_in_slots_nA = dark_slots_nA_ - dark_slots_nA;
+    phantom_.ask("LAMP:STAT OFF;STAT?");
     EXPECT_EQ(phantom_.ask("PATH:OPAQ OFF;*OPC?"), "1");
     drive(drive_mA_, 0.0);
     look.red_alone = light();
@@ -232,6 +238,8 @@ class Looker {
     }
     EXPECT_EQ(all.size(), cycles);
     Trains trains;
+    dark_slots_nA_ = 0.0;
+    for (const auto& cycle : all) dark_slots_nA_ += 0.5 * (cycle[1] + cycle[3]) / static_cast<double>(all.size());
     for (std::size_t i = 1; i < std::min(all.size(), kept + 1); ++i) {
       trains[red].values.push_back(all[i][0] - 0.5 * (all[i - 1][3] + all[i][1]));
       trains[infrared].values.push_back(all[i][2] - 0.5 * (all[i][1] + all[i][3]));
@@ -244,6 +252,7 @@ class Looker {
   PhantomEnd phantom_;
   AdapterEnd adapter_;
   std::uint16_t captures_ = 0;
+  double dark_slots_nA_ = 0.0;  ///< mean of the latest capture's
 };
 
 struct Model {
@@ -330,6 +339,7 @@ void is_the_truth(const Seen& it, const Model& model, bool red_hump_in_infrared)
   const double few = 0.05 + 0.001 * std::abs(truth.dark_current_nA);
   EXPECT_NEAR(look.dark_nA, truth.dark_current_nA, few);
   EXPECT_NEAR(look.ambient_nA, truth.ambient_uptake_nA, 0.1);
+  EXPECT_NEAR(look.ambient_in_slots_nA, truth.ambient_uptake_nA, 0.3);
   EXPECT_NEAR(look.mains_nA, truth.mains_pickup_nA, 0.1);
   EXPECT_EQ(look.id_open, std::isinf(truth.id_resistance_ohm));
   if (!look.id_open) {
@@ -385,6 +395,20 @@ TEST(ProbeFaultOnTheWire, HardFaultsShowAsTheTableSays) {
   EXPECT_LT(it.look.pulses[1][red].mean(), -1000.0);
   EXPECT_LT(it.look.pulses[1][infrared].mean(), -1000.0);
   EXPECT_TRUE(seen(aq20, "id_missing").look.id_open);
+}
+
+// The light of a weak or hot LED is less in the spectrum too. The benches are alike, so both probes sit alike.
+TEST(ProbeFaultOnTheWire, LightInTheSpectrumFollowsTheLed) {
+  const Light good = seen(aq20, "").look.both;
+  const auto share = [&](const char* fault, double from_nm, double to_nm) {
+    return seen(aq20, fault).look.both.sum(from_nm, to_nm) / good.sum(from_nm, to_nm);
+  };
+  EXPECT_NEAR(share("red_led_weak", 605.0, 785.0), 0.5, 0.005);
+  EXPECT_NEAR(share("red_led_weak", 850.0, 1030.0), 1.0, 0.005);
+  EXPECT_NEAR(share("infrared_led_weak", 605.0, 785.0), 1.0, 0.005);
+  EXPECT_NEAR(share("infrared_led_weak", 850.0, 1030.0), 0.5, 0.005);
+  EXPECT_NEAR(share("red_die_attach", 605.0, 785.0), 0.94, 0.015);  // 8.6 K at -0.7 % per K, as hot as the part runs
+  EXPECT_NEAR(share("infrared_die_attach", 850.0, 1030.0), 0.971, 0.01);  // 5.7 K at -0.5 %
 }
 
 TEST(ProbeFaultOnTheWire, ReversedAntiparallelPairLooksLikeASwappedOne) {
