@@ -63,6 +63,10 @@ Result<void> Line::handle(const StopNest& request) {
   return {};
 }
 
+Result<void> Line::handle(const Scan&) { return Problem{"purpose_not_possible", "line"}; }
+Result<void> Line::handle(const SignOut&) { return Problem{"purpose_not_possible", "line"}; }
+Result<void> Line::handle(const CloseLot&) { return Problem{"purpose_not_possible", "line"}; }
+
 asio::awaitable<void> Line::finish(std::string who) {
   for (Place& place : places_) place.nest->stop(who);
   const auto running = [](const Place& place) { return place.nest->running(); };

@@ -30,6 +30,9 @@ class Line {
   Nest* find(int nest);
   Result<void> handle(const ArmNest& request);
   Result<void> handle(const StopNest& request);
+  Result<void> handle(const Scan& request);
+  Result<void> handle(const SignOut& request);
+  Result<void> handle(const CloseLot& request);
 
   LineServices services_;
   std::vector<Place> places_;

@@ -34,7 +34,22 @@ struct StopNest {
   int nest = 1;
   std::string who;
 };
-using LineRequest = std::variant<ArmNest, StopNest>;
+/// What the scanner read, or a person typed: a probe's serial, a badge, a lot card, "nest 3".
+struct Scan {
+  std::string text;
+};
+/// Ends the sign-in; runs that go on are stopped in that person's name.
+struct SignOut {};
+/// Ends the open lot.
+struct CloseLot {};
+using LineRequest = std::variant<ArmNest, StopNest, Scan, SignOut, CloseLot>;
+
+/// Who is signed in.
+struct SignedIn {
+  std::string name;
+  std::string role;  ///< "operator", "engineer", "quality", "auditor", "steward"
+  bool operator==(const SignedIn&) const = default;
+};
 
 /// One reading with its judgement, as it went into the ledger.
 struct JudgedReading {
@@ -95,7 +110,22 @@ struct ArmingEnded {
   std::string serial;
   Problem problem;
 };
+/// The answer to a scan or another request of a person, in the order of the requests.
+struct Answered {
+  bool taken = false;
+  std::string words;               ///< one sentence: what was done, or why not and what to do
+  std::optional<Problem> problem;  ///< why not
+  int nest = 0;                    ///< that was armed by it; 0: none
+};
+struct PersonChanged {
+  std::optional<SignedIn> person;
+};
+struct LotChanged {
+  std::string lot;  ///< empty: closed
+  std::string model;
+};
 /// Loss-free, in order.
-using LineEvent = std::variant<NestChanged, RunStarted, RunEnded, RunNotRecorded, ArmingEnded>;
+using LineEvent =
+    std::variant<NestChanged, RunStarted, RunEnded, RunNotRecorded, ArmingEnded, Answered, PersonChanged, LotChanged>;
 
 }  // namespace probewright::sequence

@@ -105,6 +105,9 @@ class TestRun {
   void heard(const RunEnded& ended) { outcome_ = ended.outcome; }
   void heard(const RunNotRecorded& lost) { problem_ = lost.problem; }
   void heard(const ArmingEnded& ended) { problem_ = ended.problem; }
+  void heard(const Answered&) {}
+  void heard(const PersonChanged&) {}
+  void heard(const LotChanged&) {}
 
   /// What happens goes to the error stream, so that the verdict alone can be piped.
   void say(const std::string& words) { console_.say("nest " + std::to_string(options_.nest) + ": " + words); }
