@@ -1,4 +1,5 @@
 #pragma once
+#include <optional>
 #include <string>
 #include <string_view>
 #include <vector>
@@ -18,7 +19,8 @@ struct Try {
   int nest = 1;
   std::string lot;
   UtcTime opened_at;
-  std::string verdict;  ///< empty: still open
+  std::optional<UtcTime> closed_at;  ///< nothing: still open
+  std::string verdict;               ///< empty: still open
   std::string cause;
   bool provisional = false;
 };

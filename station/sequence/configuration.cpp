@@ -33,6 +33,7 @@ class Reading {
     read_models();
     read_sheets();
     read_certificates();
+    read_people();
     if (faults_.empty()) cross_check();
     if (!faults_.empty()) return std::move(faults_);
     return std::move(configuration_);
@@ -132,6 +133,22 @@ class Reading {
         certificate->document.name = certificate->value.head.number;
         keep(configuration_.adapter_certificates, std::move(*certificate));
       }
+  }
+
+  /// The people document that carries the station's name, if there is one.
+  void read_people() {
+    for (const auto& file : yaml_files(configuration_.folder / "people")) {
+      auto people = parse(file, "people", read_people_file);
+      if (!people || people->value.name != configuration_.station.value.station) continue;
+      people->document.name = people->value.name;
+      people->document.revision = people->value.revision;
+      if (configuration_.people)
+        faults_.push_back(
+            {"document_twice",
+             people->document.file,
+             {{"kind", "people"}, {"name", people->value.name}, {"other", configuration_.people->document.file}}});
+      configuration_.people = std::move(*people);
+    }
   }
 
   void add(const Problems& problems) { faults_.insert(faults_.end(), problems.begin(), problems.end()); }

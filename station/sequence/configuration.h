@@ -1,6 +1,7 @@
 #pragma once
 #include <filesystem>
 #include <map>
+#include <optional>
 #include <string>
 #include <string_view>
 #include <vector>
@@ -9,6 +10,7 @@
 #include "station/base/digest.h"
 #include "station/measure/certificate.h"
 #include "station/measure/model.h"
+#include "station/sequence/people_file.h"
 #include "station/sequence/station_file.h"
 
 namespace probewright::sequence {
@@ -37,6 +39,7 @@ struct Configuration {
   std::map<std::string, Documented<limits::Sheet>, std::less<>> sheets;   ///< by model name, the highest revision
   std::map<std::string, Documented<measure::PhantomCertificate>, std::less<>> phantom_certificates;  ///< by number
   std::map<std::string, Documented<measure::AdapterCertificate>, std::less<>> adapter_certificates;
+  std::optional<Documented<PeopleFile>> people;  ///< of the station; without it nobody can sign in
 
   /// The model whose serial pattern this serial matches as a whole, or nullptr; two matches give nullptr as well.
   const Documented<measure::Model>* model_of(std::string_view serial) const;

@@ -16,7 +16,7 @@ struct LineHostOptions {
   std::string ledger;  ///< path; empty: where the station file says
   std::string ports;   ///< folder of the ports instead of the station file's; empty: none
   Software software;
-  double plots_per_s = 30.0;  ///< how often a view may be published; 0: never
+  double views_per_s = 30.0;  ///< how often a view may be published; 0: never
 };
 
 /// The line in its own thread, with its ledger thread: what commands and windows hold. Its doors are LineRequest,

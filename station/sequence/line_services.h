@@ -1,5 +1,6 @@
 #pragma once
 #include <functional>
+#include <memory>
 #include <string>
 
 #include "drivers/wire/line_clock.h"
@@ -8,6 +9,7 @@
 #include "station/base/zone.h"
 #include "station/sequence/ledger_writer.h"
 #include "station/sequence/line_types.h"
+#include "station/sequence/line_view.h"
 #include "station/sequence/station_file.h"
 
 namespace probewright::sequence {
@@ -25,6 +27,9 @@ struct LineServices {
   Software software;
   Zone zone;                                   ///< certificates end by the plant's day
   std::function<void(const LineEvent&)> tell;  ///< line thread; must not block
+  /// Takes each new view: line thread, must not block. Empty: none is made.
+  std::function<void(std::shared_ptr<const LineView>)> show{};
+  double views_per_s = 30.0;
 };
 
 enum class DeviceKind { phantom, adapter };

@@ -60,9 +60,8 @@ struct LastRun {
 /// One nest as its berth shows it.
 struct BerthView {
   NestView nest;
-  std::optional<Problem> trouble;  ///< why it is not ready
-  std::string armed_until_words;   ///< while armed: how long it still waits
-  int armed_left_s = 0;
+  std::optional<Problem> trouble;    ///< why it is not ready
+  int armed_left_s = 0;              ///< while armed: how long it still waits, seconds
   std::vector<PassageStep> passage;  ///< of the run that goes on, or of the last one
   double progress = 0.0;             ///< 0 to 1 of the expected device time
   std::vector<RailMark> marks;       ///< of the run that goes on, or of the last one

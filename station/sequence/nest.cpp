@@ -1,5 +1,6 @@
 #include "station/sequence/nest.h"
 
+#include <algorithm>
 #include <array>
 #include <boost/asio/bind_cancellation_slot.hpp>
 #include <boost/asio/co_spawn.hpp>
@@ -8,6 +9,7 @@
 #include <boost/asio/this_coro.hpp>
 #include <boost/asio/use_awaitable.hpp>
 
+#include "station/sequence/berth_marks.h"
 #include "station/sequence/device_settings.h"
 
 namespace probewright::sequence {
@@ -84,7 +86,9 @@ asio::awaitable<void> Nest::look() {
     seen.adapter = co_await adapter_.presence();
     if (!temperature_C_) temperature_C_ = co_await phantom_.temperature_degC();
     if (!seen.any()) seen_empty_ = true;
+    const bool appeared = seen.any() && seen_ && !seen_->any();
     seen_ = seen;
+    if (appeared && !armed_ && stray_) stray_(place_.nest);
   } catch (const ProblemError&) {
     seen_.reset();  // the driver keeps the problem and looks for the device
     seen_empty_ = false;
@@ -110,8 +114,6 @@ Result<void> Nest::arm(const ArmNest& request) {
   const std::string where = nest_name(place_.nest);
   if (running()) return Problem{"nest_busy", where, {{"serial", view_.serial}}};
   if (auto problem = not_ready()) return *problem;
-  // Production asks for an open lot, an opening check and signed documents; without them no run may call itself so.
-  if (request.purpose == Purpose::production) return Problem{"purpose_not_possible", where};
   const auto* model = configuration_.model_of(request.serial);
   if (!model) return Problem{"serial_unknown", where, {{"serial", request.serial}}};
   if (seen_->any() || !seen_empty_) return Problem{"nest_occupied", where, {{"serial", request.serial}}};
@@ -131,6 +133,13 @@ bool Nest::stop(const std::string& who) {
   stopped_by_ = who;
   stop_run_->emit(asio::cancellation_type::terminal);
   return true;
+}
+
+void Nest::probe_went_to(int other_nest) {
+  if (!armed_) return;
+  end_arming({"probe_in_other_nest",
+              nest_name(place_.nest),
+              {{"serial", armed_->request.serial}, {"other", std::to_string(other_nest)}}});
 }
 
 void Nest::end_arming(Problem problem) {
@@ -211,6 +220,7 @@ asio::awaitable<void> Nest::run(Armed armed) {
   view_.state = NestState::running;
   view_.serial = armed.request.serial;
   view_.words = "testing " + armed.request.serial;
+  begin_berth(armed);
   std::optional<Problem> unrecorded;
   try {
     co_await book.open(opening_of(armed));
@@ -232,6 +242,8 @@ asio::awaitable<void> Nest::run(Armed armed) {
     RunOutcome outcome = co_await book.close(std::move(ending), std::move(bench));
     outcome.cycle = services_.clock.steady_now() - first_command;
     outcome.asked_again = static_cast<int>(asked_again);
+    look_at(armed, book);
+    keep_last(outcome);
     stop_run_.reset();
     services_.tell(RunEnded{std::move(outcome)});
   } catch (const ProblemError& error) {
@@ -242,7 +254,57 @@ asio::awaitable<void> Nest::run(Armed armed) {
   if (unrecorded) not_recorded(armed, *unrecorded);
 }
 
+void Nest::begin_berth(const Armed& armed) {
+  berth_ = BerthView{};
+  berth_.passage = passage_of(armed.model->value);
+  run_began_ = services_.clock.steady_now();
+}
+
+void Nest::look_at(const Armed& armed, const RunBook& book) {
+  mark_done(berth_.passage, book.readings());
+  berth_.marks = rail_marks(book.readings(), armed.sheet->value);
+  if (auto plots = plots_of(book.captures(), phantom_certificate_.value)) berth_.plots = std::move(plots);
+}
+
+void Nest::keep_last(const RunOutcome& outcome) {
+  LastRun last;
+  last.run = outcome.run;
+  last.serial = outcome.serial;
+  last.purpose = outcome.purpose;
+  last.verdict = outcome.verdict;
+  last.cause = outcome.cause;
+  last.cause_words = outcome.cause_words;
+  last.what_to_do = what_to_do(outcome);
+  last.decided_by = decided_by(outcome.readings);
+  last.cycle_s = seconds(outcome.cycle) * services_.clock.speed();
+  berth_.progress = 1.0;
+  berth_.last = std::move(last);
+}
+
+BerthView Nest::berth() const {
+  BerthView berth = berth_;
+  berth.nest = view_;
+  if (running()) {
+    const double elapsed_s = seconds(services_.clock.steady_now() - run_began_) * services_.clock.speed();
+    const double whole_s = expected_s(berth_.passage);
+    berth.progress = whole_s > 0.0 ? std::min(0.98, elapsed_s / whole_s) : 0.0;
+    return berth;
+  }
+  berth.trouble = not_ready();
+  if (armed_)
+    berth.armed_left_s = std::max(0, static_cast<int>(seconds(armed_->until - services_.clock.steady_now()) + 0.999));
+  return berth;
+}
+
 void Nest::not_recorded(const Armed& armed, const Problem& problem) {
+  LastRun last;
+  last.serial = armed.request.serial;
+  last.purpose = armed.request.purpose;
+  last.recorded = false;
+  last.cause = problem.id;
+  last.cause_words = problem.what();
+  last.what_to_do = "take the probe out and keep it apart: this run is not on record";
+  berth_.last = std::move(last);
   services_.tell(RunNotRecorded{place_.nest, armed.request.serial, problem});
 }
 
@@ -279,7 +341,8 @@ asio::awaitable<void> Nest::gather(const Armed& armed, RunBook& book) {
                   insertions,
                   services_.clock,
                   book,
-                  [this](std::string_view doing, int stage, int stages) {
+                  [this, &armed, &book](std::string_view doing, int stage, int stages) {
+                    look_at(armed, book);
                     view_.doing = doing;
                     view_.stage = stage;
                     view_.stages = stages;

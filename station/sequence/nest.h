@@ -1,6 +1,7 @@
 #pragma once
 #include <boost/asio/awaitable.hpp>
 #include <boost/asio/cancellation_signal.hpp>
+#include <functional>
 #include <memory>
 #include <optional>
 #include <string>
@@ -25,13 +26,21 @@ class Nest {
   /// Keeps the devices connected, watches the nest, makes runs. Never returns; ends by cancellation (after finish()).
   asio::awaitable<void> live();
 
-  /// Arms the nest for a serial. Problems: nest_not_ready, nest_busy, nest_occupied, serial_unknown,
-  /// purpose_not_possible.
+  /// Arms the nest for a serial; whether that serial may have such a run was asked before. Problems: nest_not_ready,
+  /// nest_busy, nest_occupied, serial_unknown.
   Result<void> arm(const ArmNest& request);
   /// Takes the arming back or stops the run. False when there was neither.
   bool stop(const std::string& who);
   bool running() const { return view_.state == NestState::running; }
+  /// The serial that it is armed for or tests; empty: none.
+  const std::string& serial() const { return view_.serial; }
   const NestView& view() const { return view_; }
+  BerthView berth() const;
+
+  /// Called when a probe appears in this nest though nothing is armed here.
+  void on_stray(std::function<void(int nest)> stray) { stray_ = std::move(stray); }
+  /// Ends an arming because the probe was put elsewhere.
+  void probe_went_to(int other_nest);
 
  private:
   struct Armed {
@@ -63,6 +72,9 @@ class Nest {
   asio::awaitable<void> make_dark(Ending& ending, bool& drive_off);
   db::RunOpened opening_of(const Armed& armed) const;
   void not_recorded(const Armed& armed, const Problem& problem);
+  void begin_berth(const Armed& armed);
+  void look_at(const Armed& armed, const RunBook& book);
+  void keep_last(const RunOutcome& outcome);
 
   const Configuration& configuration_;
   const NestPlace place_;
@@ -79,7 +91,10 @@ class Nest {
   std::unique_ptr<asio::cancellation_signal> stop_run_;
   bool stopped_ = false;
   std::string stopped_by_;
+  std::function<void(int)> stray_;
   NestView view_;
+  BerthView berth_;  ///< of the run that goes on or of the last one; the nest's own state is put in when asked
+  SteadyTime run_began_;
 };
 
 }  // namespace probewright::sequence

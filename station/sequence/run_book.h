@@ -58,6 +58,8 @@ class RunBook {
   /// Whether a judged reading so far lies outside its acceptance limits.
   bool any_outside() const;
   const std::vector<JudgedReading>& readings() const { return readings_; }
+  /// What has been captured in stages that went through.
+  const measure::Captures& captures() const { return captures_; }
 
  private:
   std::vector<JudgedReading> fresh_readings(bool last);

@@ -11,10 +11,10 @@
 #include "db/queries/seal.h"
 #include "db/reader.h"
 #include "drivers/wire/asio_clock.h"
+#include "drivers/wire/serial_source.h"
 #include "station/base/numbers.h"
 #include "station/base/zone.h"
 #include "station/sequence/device_settings.h"
-#include "station/text/serial_source.h"
 #include "station/text/station_choice.h"
 
 namespace probewright::text {
@@ -120,7 +120,7 @@ class Checkup {
   }
 
   wire::PortSource source(const DevicePlace& place) {
-    return serial_source(io_.get_executor(), clock_, port_path(station_, place, options_.ports), station_.baud);
+    return wire::serial_source(io_.get_executor(), clock_, port_path(station_, place, options_.ports), station_.baud);
   }
 
   template <class Driver>

@@ -7,12 +7,12 @@
 #include <utility>
 
 #include "drivers/wire/asio_clock.h"
+#include "drivers/wire/serial_source.h"
 #include "drivers/wire/thread_workers.h"
 #include "station/base/numbers.h"
 #include "station/sequence/ledger_start.h"
 #include "station/sequence/line.h"
 #include "station/text/run_text.h"
-#include "station/text/serial_source.h"
 #include "station/text/station_choice.h"
 
 namespace probewright::text {
@@ -53,7 +53,8 @@ class TestRun {
     Line line{configuration_,
               [this](const DevicePlace& place, int, DeviceKind) {
                 const StationFile& file = configuration_.station.value;
-                return serial_source(io_.get_executor(), clock_, port_path(file, place, options_.ports), file.baud);
+                return wire::serial_source(io_.get_executor(), clock_, port_path(file, place, options_.ports),
+                                           file.baud);
               },
               LineServices{clock_, entropy_, ledger, software, *zone, [this](const LineEvent& event) { hear(event); }}};
     asio::signal_set stop{io_, SIGINT, SIGTERM};
@@ -148,7 +149,7 @@ class TestRun {
     request.serial = options_.serial;
     request.purpose = purpose_;
     request.operator_name = options_.operator_name;
-    if (auto armed = line.request(request); !armed) {
+    if (auto armed = line.arm(request); !armed) {
       problem_ = armed.error();
       co_return;
     }

@@ -48,7 +48,7 @@ class Floor : public ::testing::Test {
   Told run_of_bad_id() {
     const std::string serial = "AQ20-048-00009";
     EXPECT_TRUE(station.reaches(NestState::empty));
-    station.line().request(scan(serial)).value();
+    station.line().arm(scan(serial)).value();
     seat_bad_id(serial);
     Told told;
     for (int i = 0; i < 400 && !told.outcome; ++i) {
@@ -64,7 +64,7 @@ TEST_F(Floor, AProbeThatWasInBeforeTheScanIsRefused) {
   ASSERT_TRUE(station.reaches(NestState::empty));
   station.bench().seat(1, "AQ20-048-00001", "AQ-20").value();
   ASSERT_TRUE(station.reaches(NestState::occupied));
-  const auto armed = station.line().request(scan("AQ20-048-00001"));
+  const auto armed = station.line().arm(scan("AQ20-048-00001"));
   ASSERT_FALSE(armed);
   EXPECT_EQ(armed.error().id, "nest_occupied");
 }
@@ -73,23 +73,23 @@ TEST_F(Floor, AProbeLeftInPlaceIsNotTestedAgain) {
   ASSERT_TRUE(station.test("AQ20-048-00001").outcome);
   station.bench().seat(1, "AQ20-048-00001", "AQ-20").value();  // in again before the line saw the nest empty
   ASSERT_TRUE(station.reaches(NestState::occupied));
-  EXPECT_EQ(station.line().request(scan("AQ20-048-00001")).error().id, "nest_occupied");
+  EXPECT_EQ(station.line().arm(scan("AQ20-048-00001")).error().id, "nest_occupied");
 }
 
 TEST_F(Floor, AScanOfNoModelAndAProductionRunAreRefused) {
   ASSERT_TRUE(station.reaches(NestState::empty));
-  EXPECT_EQ(station.line().request(scan("AQ99-1")).error().id, "serial_unknown");
+  EXPECT_EQ(station.line().arm(scan("AQ99-1")).error().id, "serial_unknown");
   auto production = scan("AQ20-048-00001");
   production.purpose = sequence::Purpose::production;
-  EXPECT_EQ(station.line().request(production).error().id, "purpose_not_possible");
+  EXPECT_EQ(station.line().arm(production).error().id, "purpose_not_possible");
   auto elsewhere = scan("AQ20-048-00001");
   elsewhere.nest = 7;
-  EXPECT_EQ(station.line().request(elsewhere).error().id, "nest_not_there");
+  EXPECT_EQ(station.line().arm(elsewhere).error().id, "nest_not_there");
 }
 
 TEST_F(Floor, AnArmingEndsAfterTwentySeconds) {
   ASSERT_TRUE(station.reaches(NestState::empty));
-  station.line().request(scan("AQ20-048-00001")).value();
+  station.line().arm(scan("AQ20-048-00001")).value();
   station.let_pass(std::chrono::seconds(19));
   EXPECT_EQ(station.line().views().front().state, NestState::armed);
   station.let_pass(std::chrono::seconds(2));
@@ -100,7 +100,7 @@ TEST_F(Floor, AnArmingEndsAfterTwentySeconds) {
 TEST_F(Floor, ARunWaitsForTheLid) {
   ASSERT_TRUE(station.reaches(NestState::empty));
   station.bench().lid(1, true).value();
-  station.line().request(scan("AQ20-048-00001")).value();
+  station.line().arm(scan("AQ20-048-00001")).value();
   station.bench().seat(1, "AQ20-048-00001", "AQ-20").value();
   station.let_pass(std::chrono::seconds(3));
   EXPECT_EQ(station.line().views().front().words, "close the lid");
@@ -110,7 +110,7 @@ TEST_F(Floor, ARunWaitsForTheLid) {
 
 // Part of the rule: a stop by a person before any reading lies outside is void.
 TEST_F(Floor, AStopBeforeAnyReadingLiesOutsideIsVoid) {
-  at_stage(3, [this] { station.line().request(sequence::StopNest{1, "Imre Vasko"}).value(); });
+  at_stage(3, [this] { station.line().stop(sequence::StopNest{1, "Imre Vasko"}).value(); });
   const Told told = station.test("AQ20-048-00001");
   ASSERT_TRUE(told.outcome);
   EXPECT_EQ(told.outcome->verdict, RunVerdict::void_run);
@@ -119,7 +119,7 @@ TEST_F(Floor, AStopBeforeAnyReadingLiesOutsideIsVoid) {
 }
 
 TEST_F(Floor, AStopAfterAReadingOutsideIsAFail) {
-  at_stage(4, [this] { station.line().request(sequence::StopNest{1, "Imre Vasko"}).value(); });
+  at_stage(4, [this] { station.line().stop(sequence::StopNest{1, "Imre Vasko"}).value(); });
   const Told told = run_of_bad_id();
   ASSERT_TRUE(told.outcome);
   EXPECT_EQ(told.outcome->verdict, RunVerdict::fail);

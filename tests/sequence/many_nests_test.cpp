@@ -42,7 +42,7 @@ class ManyNests : public ::testing::Test {
       sequence::ArmNest request;
       request.nest = nest;
       request.serial = serial_of(nest);
-      station.line().request(request).value();
+      station.line().arm(request).value();
       station.bench().seat(nest, serial_of(nest), "AQ-20").value();
     }
     for (int i = 0; i < 1000 && outcomes().size() < nests; ++i) station.let_pass(std::chrono::milliseconds(20));

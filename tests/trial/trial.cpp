@@ -97,7 +97,7 @@ Told Trial::test(const std::string& serial) {
   request.serial = serial;
   request.purpose = options_.purpose;
   request.operator_name = "Imre Vasko";
-  if (auto armed = line_->request(request); !armed) {
+  if (auto armed = line_->arm(request); !armed) {
     told.problem = armed.error();
     return told;
   }

@@ -5,10 +5,10 @@
 #include "drivers/wire/line_clock.h"
 #include "drivers/wire/link.h"
 
-namespace probewright::text {
+namespace probewright::wire {
 
 /// Opens a serial port whenever a driver asks for it. The clock must outlive what comes out.
-wire::PortSource serial_source(boost::asio::any_io_executor executor, const wire::LineClock& clock, std::string path,
-                               unsigned baud);
+PortSource serial_source(boost::asio::any_io_executor executor, const LineClock& clock, std::string path,
+                         unsigned baud);
 
-}  // namespace probewright::text
+}  // namespace probewright::wire
