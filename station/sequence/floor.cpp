@@ -10,7 +10,7 @@
 namespace probewright::sequence {
 namespace {
 
-constexpr const char* where = "line";
+constexpr const char* line_place = "line";
 constexpr std::size_t most_failing_told = 3;
 
 Body body_of(const LotCard& card, int sheet_revision) {
@@ -27,7 +27,7 @@ LotCard card_of(const Body& body) {
           body.text("last_serial")};
 }
 
-/// Newest entry of one kind; of one lot, or of any where `lot` is empty.
+/// Newest entry of one kind; of one lot, or of any line_place `lot` is empty.
 std::optional<db::EntryRecord> newest_entry(db::Reader reader, std::string_view kind, std::string_view lot) {
   const auto found = db::entries(reader, 1, INT64_MAX, kind);
   const auto newest = std::find_if(found.rbegin(), found.rend(), [&](const db::EntryRecord& entry) {
@@ -93,7 +93,7 @@ asio::awaitable<void> Floor::sign_in(Person person) {
 }
 
 asio::awaitable<Result<void>> Floor::sign_out() {
-  if (!person_) co_return Problem{"nobody_signed_in", where};
+  if (!person_) co_return Problem{"nobody_signed_in", line_place};
   co_await put("sign_out", Body{Body::Object{{"person", person_->name}}});
   person_.reset();
   services_.tell(PersonChanged{});
@@ -102,9 +102,9 @@ asio::awaitable<Result<void>> Floor::sign_out() {
 
 /// Operators run the tests; engineers may, too.
 Result<void> Floor::may_run() const {
-  if (!person_) return Problem{"nobody_signed_in", where};
+  if (!person_) return Problem{"nobody_signed_in", line_place};
   if (person_->role != slug(Role::operating) && person_->role != slug(Role::engineering))
-    return Problem{"person_may_not", where, {{"person", person_->name}, {"role", person_->role}}};
+    return Problem{"person_may_not", line_place, {{"person", person_->name}, {"role", person_->role}}};
   return {};
 }
 
@@ -117,12 +117,12 @@ asio::awaitable<std::optional<Body>> Floor::newest_of_lot(std::string lot, std::
 
 asio::awaitable<Result<void>> Floor::open_lot(LotCard card) {
   if (auto may = may_run(); !may) co_return may.error();
-  if (lot_) co_return Problem{"lot_is_open", where, {{"lot", lot_->card.lot}}};
-  if (!configuration_.station.value.emulated) co_return Problem{"purpose_not_possible", where};
+  if (lot_) co_return Problem{"lot_is_open", line_place, {{"lot", lot_->card.lot}}};
+  if (!configuration_.station.value.emulated) co_return Problem{"purpose_not_possible", line_place};
   const auto opened = co_await newest_of_lot(card.lot, "lot_opened");
   const auto closed = co_await newest_of_lot(card.lot, "lot_closed");
-  if (closed) co_return Problem{"lot_was_closed", where, {{"lot", card.lot}}};
-  if (opened && !(card_of(*opened) == card)) co_return Problem{"lot_card_differs", where, {{"lot", card.lot}}};
+  if (closed) co_return Problem{"lot_was_closed", line_place, {{"lot", card.lot}}};
+  if (opened && !(card_of(*opened) == card)) co_return Problem{"lot_card_differs", line_place, {{"lot", card.lot}}};
   const int revision = configuration_.sheets.find(card.model)->second.value.revision;
   co_await put("lot_opened", body_of(card, revision));
   co_await take_up(std::move(card));
@@ -131,7 +131,7 @@ asio::awaitable<Result<void>> Floor::open_lot(LotCard card) {
 
 asio::awaitable<Result<void>> Floor::close_lot() {
   if (auto may = may_run(); !may) co_return may.error();
-  if (!lot_) co_return Problem{"no_lot_open", where};
+  if (!lot_) co_return Problem{"no_lot_open", line_place};
   co_await put("lot_closed", Body{Body::Object{{"lot", lot_->card.lot}}});
   lot_.reset();
   services_.tell(LotChanged{});
@@ -140,10 +140,10 @@ asio::awaitable<Result<void>> Floor::close_lot() {
 
 asio::awaitable<Result<void>> Floor::admit(std::string serial) {
   if (auto may = may_run(); !may) co_return may.error();
-  if (!lot_) co_return Problem{"no_lot_open", where};
+  if (!lot_) co_return Problem{"no_lot_open", line_place};
   if (!lot_->card.holds(serial))
     co_return Problem{"serial_of_other_lot",
-                      where,
+                      line_place,
                       {{"serial", serial},
                        {"lot", lot_->card.lot},
                        {"first", lot_->card.first_serial},

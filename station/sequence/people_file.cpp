@@ -9,7 +9,7 @@
 namespace probewright::sequence {
 namespace {
 
-constexpr std::array roles = std::to_array<std::pair<Role, std::string_view>>({
+constexpr std::array role_words = std::to_array<std::pair<Role, std::string_view>>({
     {Role::operating, "operator"},
     {Role::engineering, "engineer"},
     {Role::quality, "quality"},
@@ -26,7 +26,7 @@ bool plain_badge(std::string_view badge) {
 void read_role(const yaml::Value& value, Person& person, yaml::Faults& faults) {
   const auto word = value.text(faults);
   if (!word) return;
-  for (const auto& [role, known] : roles) {
+  for (const auto& [role, known] : role_words) {
     if (known != *word) continue;
     person.role = role;
     return;
@@ -63,14 +63,14 @@ void read_person(const yaml::Value& value, PeopleFile& file, yaml::Faults& fault
 }  // namespace
 
 std::string_view slug(Role wanted) {
-  for (const auto& [role, word] : roles)
+  for (const auto& [role, word] : role_words)
     if (role == wanted) return word;
   return "operator";
 }
 
 std::string known_roles() {
   std::string all;
-  for (const auto& [role, word] : roles) all += (all.empty() ? "" : ", ") + std::string{word};
+  for (const auto& [role, word] : role_words) all += (all.empty() ? "" : ", ") + std::string{word};
   return all;
 }
 

@@ -11,7 +11,7 @@ namespace {
 constexpr std::size_t longest_scan = 64;
 constexpr int largest_lot = 99999;
 constexpr std::string_view card_mark = "LOT/";
-constexpr const char* where = "scan";
+constexpr const char* scan_place = "scan";
 
 std::string_view trimmed(std::string_view text) {
   while (!text.empty() && std::isspace(static_cast<unsigned char>(text.front()))) text.remove_prefix(1);
@@ -49,7 +49,7 @@ bool plain_lot_name(std::string_view name) {
   });
 }
 
-Problem malformed(std::string_view why) { return {"lot_card_malformed", where, {{"why", std::string{why}}}}; }
+Problem malformed(std::string_view why) { return {"lot_card_malformed", scan_place, {{"why", std::string{why}}}}; }
 
 /// "nest 3" in any case; nothing when the text is something else.
 std::optional<int> chosen_nest(std::string_view text) {
@@ -86,24 +86,25 @@ Result<LotCard> read_lot_card(std::string_view text, const Configuration& config
   if (!quantity) return malformed("the quantity is not a whole number from 1 to " + std::to_string(largest_lot));
   card.quantity = *quantity;
   if (configuration.models.find(card.model) == configuration.models.end())
-    return Problem{"lot_card_model", where, {{"model", card.model}}};
+    return Problem{"lot_card_model", scan_place, {{"model", card.model}}};
   const auto last = serial_after(card.first_serial, card.quantity - 1);
   if (!last) return malformed("the serials cannot be counted up from " + card.first_serial);
   card.last_serial = *last;
   for (const std::string& serial : {card.first_serial, card.last_serial}) {
     const auto* model = configuration.model_of(serial);
     if (!model || model->value.name != card.model)
-      return Problem{"lot_card_serial", where, {{"serial", serial}, {"model", card.model}}};
+      return Problem{"lot_card_serial", scan_place, {{"serial", serial}, {"model", card.model}}};
   }
   return card;
 }
 
 Result<ScanMeaning> meaning_of_scan(std::string_view text, const Configuration& configuration) {
   text = trimmed(text);
-  if (text.empty()) return Problem{"scan_empty", where};
-  if (text.size() > longest_scan) return Problem{"scan_too_long", where, {{"bound", std::to_string(longest_scan)}}};
+  if (text.empty()) return Problem{"scan_empty", scan_place};
+  if (text.size() > longest_scan)
+    return Problem{"scan_too_long", scan_place, {{"bound", std::to_string(longest_scan)}}};
   if (!std::all_of(text.begin(), text.end(), [](char c) { return c >= ' ' && c <= '~'; }))
-    return Problem{"scan_control", where};
+    return Problem{"scan_control", scan_place};
   if (configuration.people)
     if (const Person* person = configuration.people->value.by_badge(text)) return ScanMeaning{*person};
   if (text.starts_with(card_mark)) {
@@ -114,11 +115,11 @@ Result<ScanMeaning> meaning_of_scan(std::string_view text, const Configuration& 
   if (const auto nest = chosen_nest(text)) {
     const auto& places = configuration.station.value.nests;
     if (std::none_of(places.begin(), places.end(), [&](const NestPlace& place) { return place.nest == *nest; }))
-      return Problem{"nest_not_there", where, {{"nest", std::to_string(*nest)}}};
+      return Problem{"nest_not_there", scan_place, {{"nest", std::to_string(*nest)}}};
     return ScanMeaning{NestChoice{*nest}};
   }
   if (configuration.model_of(text)) return ScanMeaning{SerialScan{std::string{text}}};
-  return Problem{"scan_unknown", where};
+  return Problem{"scan_unknown", scan_place};
 }
 
 }  // namespace probewright::sequence
