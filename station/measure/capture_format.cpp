@@ -16,7 +16,8 @@ enum class Kind : std::uint8_t {
   pulses = 4,
   red_alone = 5,
   closed_path = 6,
-  ambient = 7
+  ambient = 7,
+  alone_slots = 8
 };
 constexpr std::uint8_t version = 1;
 constexpr std::uint32_t most_cycles = 65536;
@@ -134,6 +135,7 @@ Kind kind_of(const PulseCapture&) { return Kind::pulses; }
 Kind kind_of(const RedAloneCapture&) { return Kind::red_alone; }
 Kind kind_of(const ClosedPathCapture&) { return Kind::closed_path; }
 Kind kind_of(const AmbientCapture&) { return Kind::ambient; }
+Kind kind_of(const AloneSlotsCapture&) { return Kind::alone_slots; }
 
 void write(Writer& w, const ElectricalCapture& c) {
   if (c.id_open && c.id_resistance_ohm) throw std::invalid_argument("an open ID resistor with a resistance");
@@ -204,30 +206,51 @@ SpectrumCapture read_spectrum(Reader& r) {
   return c;
 }
 
-void write(Writer& w, const PulseCapture& c) {
+/// Number of the first cycle kept, number of cycles, then all four slots cycle by cycle.
+template <class Capture>
+void write_slots(Writer& w, const Capture& c) {
   const std::size_t n = c.red.size();
   if (c.dark_a.size() != n || c.infrared.size() != n || c.dark_b.size() != n || n > most_cycles)
     throw std::invalid_argument("trains of unequal length or too long");
-  if (!(c.set_point_ratio > 0.0) || !(c.modulator_Hz > 0.0) || !(c.cycle_s > 0.0))
-    throw std::invalid_argument("a set point, rate or cycle that is not above 0");
-  w.real(c.set_point_ratio), w.real(c.modulator_Hz), w.real(c.cycle_s);
-  w.real(c.drive_mA.red), w.real(c.drive_mA.infrared), w.real(c.temperature_C);
   w.number(c.first_cycle, 4), w.number(n, 4);
   for (std::size_t i = 0; i < n; ++i)
     for (const auto* train : {&c.red, &c.dark_a, &c.infrared, &c.dark_b}) w.code((*train)[i]);
 }
 
-PulseCapture read_pulses(Reader& r) {
-  PulseCapture c;
-  c.set_point_ratio = r.positive(), c.modulator_Hz = r.positive(), c.cycle_s = r.positive();
-  c.drive_mA.red = r.real(), c.drive_mA.infrared = r.real(), c.temperature_C = r.real();
+template <class Capture>
+void read_slots(Reader& r, Capture& c) {
   c.first_cycle = static_cast<std::uint32_t>(r.number(4));
   const auto n = r.number(4);
   // The size is checked before anything is allocated: a damaged count must not ask for gigabytes.
   if (n > most_cycles || r.left() != n * 12) r.refuse("the number of cycles does not agree with the bytes");
-  if (r.refused()) return c;
+  if (r.refused()) return;
   for (std::uint64_t i = 0; i < n; ++i)
     for (auto* train : {&c.red, &c.dark_a, &c.infrared, &c.dark_b}) train->push_back(r.code());
+}
+
+/// Cycle, drive and temperature, which stand before the slots.
+template <class Capture>
+void write_conditions(Writer& w, const Capture& c) {
+  if (!(c.cycle_s > 0.0)) throw std::invalid_argument("a cycle that is not above 0");
+  w.real(c.cycle_s), w.real(c.drive_mA.red), w.real(c.drive_mA.infrared), w.real(c.temperature_C);
+}
+template <class Capture>
+void read_conditions(Reader& r, Capture& c) {
+  c.cycle_s = r.positive();
+  c.drive_mA.red = r.real(), c.drive_mA.infrared = r.real(), c.temperature_C = r.real();
+}
+
+void write(Writer& w, const PulseCapture& c) {
+  if (!(c.set_point_ratio > 0.0) || !(c.modulator_Hz > 0.0))
+    throw std::invalid_argument("a set point or rate that is not above 0");
+  w.real(c.set_point_ratio), w.real(c.modulator_Hz);
+  write_conditions(w, c), write_slots(w, c);
+}
+
+PulseCapture read_pulses(Reader& r) {
+  PulseCapture c;
+  c.set_point_ratio = r.positive(), c.modulator_Hz = r.positive();
+  read_conditions(r, c), read_slots(r, c);
   return c;
 }
 
@@ -242,27 +265,25 @@ RedAloneCapture read_red_alone(Reader& r) {
   return c;
 }
 
-void write(Writer& w, const ClosedPathCapture& c) {
-  const std::size_t n = c.red.size();
-  if (c.dark_a.size() != n || c.infrared.size() != n || c.dark_b.size() != n || n > most_cycles)
-    throw std::invalid_argument("trains of unequal length or too long");
-  if (!(c.cycle_s > 0.0)) throw std::invalid_argument("a cycle that is not above 0");
-  w.real(c.cycle_s), w.real(c.drive_mA.red), w.real(c.drive_mA.infrared), w.real(c.temperature_C);
-  w.number(c.first_cycle, 4), w.number(n, 4);
-  for (std::size_t i = 0; i < n; ++i)
-    for (const auto* train : {&c.red, &c.dark_a, &c.infrared, &c.dark_b}) w.code((*train)[i]);
-}
+void write(Writer& w, const ClosedPathCapture& c) { write_conditions(w, c), write_slots(w, c); }
 
 ClosedPathCapture read_closed_path(Reader& r) {
   ClosedPathCapture c;
-  c.cycle_s = r.positive();
-  c.drive_mA.red = r.real(), c.drive_mA.infrared = r.real(), c.temperature_C = r.real();
-  c.first_cycle = static_cast<std::uint32_t>(r.number(4));
-  const auto n = r.number(4);
-  if (n > most_cycles || r.left() != n * 12) r.refuse("the number of cycles does not agree with the bytes");
-  if (r.refused()) return c;
-  for (std::uint64_t i = 0; i < n; ++i)
-    for (auto* train : {&c.red, &c.dark_a, &c.infrared, &c.dark_b}) train->push_back(r.code());
+  read_conditions(r, c), read_slots(r, c);
+  return c;
+}
+
+void write(Writer& w, const AloneSlotsCapture& c) {
+  w.number(c.lit == Band::red ? 0 : 1, 1);
+  write_conditions(w, c), write_slots(w, c);
+}
+
+AloneSlotsCapture read_alone_slots(Reader& r) {
+  AloneSlotsCapture c;
+  const auto band = r.number(1);
+  if (band > 1) r.refuse("band out of range");
+  c.lit = band == 0 ? Band::red : Band::infrared;
+  read_conditions(r, c), read_slots(r, c);
   return c;
 }
 
@@ -311,6 +332,8 @@ AnyCapture read_any(Reader& r) {
       return read_closed_path(r);
     case Kind::ambient:
       return read_ambient(r);
+    case Kind::alone_slots:
+      return read_alone_slots(r);
   }
   r.refuse("an unknown kind of capture");
   return DarkCapture{};
@@ -322,14 +345,53 @@ std::string ratio_slug(double ratio) {
   return text;
 }
 
+/// Voltages of the LEDs and nothing else of the probe.
+bool holds_leds_alone(const ElectricalCapture& c) {
+  const bool other = c.present_phantom || c.present_adapter || c.id_resistance_ohm || c.id_open || c.mains_pickup_nA;
+  return !other && (c.led.red.at_drive || c.led.red.at_quarter || c.led.infrared.at_drive || c.led.infrared.at_quarter);
+}
+
+/// Takes over what `into` lacks; false when both have it.
+template <class Value>
+bool take_over(std::optional<Value>& into, const std::optional<Value>& from) {
+  if (into && from) return false;
+  if (from) into = from;
+  return true;
+}
+
+bool take_over(LedElectrical& into, const LedElectrical& from) {
+  bool fresh = take_over(into.at_drive, from.at_drive);
+  fresh &= take_over(into.at_quarter, from.at_quarter);
+  fresh &= take_over(into.first_voltage_V, from.first_voltage_V);
+  fresh &= take_over(into.warm_voltage_V, from.warm_voltage_V);
+  return take_over(into.reverse_leakage_uA, from.reverse_leakage_uA) && fresh;
+}
+
+/// False when both captures hold the same field; `into` is then not to be used.
+bool take_over(ElectricalCapture& into, const ElectricalCapture& from) {
+  const auto asked = [](const ElectricalCapture& c) { return c.id_open || c.id_resistance_ohm; };
+  bool fresh = !(asked(into) && asked(from));
+  into.id_open |= from.id_open;
+  fresh &= take_over(into.id_resistance_ohm, from.id_resistance_ohm);
+  fresh &= take_over(into.present_phantom, from.present_phantom);
+  fresh &= take_over(into.present_adapter, from.present_adapter);
+  fresh &= take_over(into.mains_pickup_nA, from.mains_pickup_nA);
+  for (const Band band : {Band::red, Band::infrared}) fresh &= take_over(into.led.of(band), from.led.of(band));
+  into.temperature_C = from.temperature_C;
+  return fresh;
+}
+
 struct Names {
-  std::string operator()(const ElectricalCapture&) const { return "electrical"; }
+  std::string operator()(const ElectricalCapture& c) const {
+    return holds_leds_alone(c) ? "electrical_driven" : "electrical";
+  }
   std::string operator()(const DarkCapture&) const { return "dark"; }
   std::string operator()(const SpectrumCapture& c) const { return std::string{slug(c.band)} + "_spectrum"; }
   std::string operator()(const PulseCapture& c) const { return "pulses_" + ratio_slug(c.set_point_ratio); }
   std::string operator()(const RedAloneCapture&) const { return "red_alone_spectrum"; }
   std::string operator()(const ClosedPathCapture&) const { return "closed_path"; }
   std::string operator()(const AmbientCapture&) const { return "ambient"; }
+  std::string operator()(const AloneSlotsCapture& c) const { return std::string{slug(c.lit)} + "_alone_slots"; }
 };
 
 template <class Capture>
@@ -376,13 +438,19 @@ std::vector<AnyCapture> all_captures(const Captures& captures) {
   if (captures.red_alone) all.emplace_back(*captures.red_alone);
   if (captures.closed_path) all.emplace_back(*captures.closed_path);
   if (captures.ambient) all.emplace_back(*captures.ambient);
+  for (const Band lit : {Band::red, Band::infrared})
+    if (const auto& alone = captures.alone_slots.of(lit)) all.emplace_back(*alone);
   return all;
 }
 
 Result<void> add_capture(Captures& captures, AnyCapture capture) {
   const std::string kind = capture_kind(capture);
-  if (auto* electrical = std::get_if<ElectricalCapture>(&capture))
-    return put(captures.electrical, std::move(*electrical), kind);
+  if (auto* electrical = std::get_if<ElectricalCapture>(&capture)) {
+    ElectricalCapture both = captures.electrical.value_or(ElectricalCapture{});
+    if (!take_over(both, *electrical)) return Problem{"capture_twice", "", {{"kind", kind}}};
+    captures.electrical = both;
+    return {};
+  }
   if (auto* dark = std::get_if<DarkCapture>(&capture)) return put(captures.dark, std::move(*dark), kind);
   if (auto* spectrum = std::get_if<SpectrumCapture>(&capture))
     return put(spectrum->band == Band::red ? captures.red_spectrum : captures.infrared_spectrum, std::move(*spectrum),
@@ -391,6 +459,10 @@ Result<void> add_capture(Captures& captures, AnyCapture capture) {
   if (auto* closed = std::get_if<ClosedPathCapture>(&capture))
     return put(captures.closed_path, std::move(*closed), kind);
   if (auto* ambient = std::get_if<AmbientCapture>(&capture)) return put(captures.ambient, std::move(*ambient), kind);
+  if (auto* alone = std::get_if<AloneSlotsCapture>(&capture)) {
+    auto& place = captures.alone_slots.of(alone->lit);
+    return put(place, std::move(*alone), kind);
+  }
   auto& pulse = std::get<PulseCapture>(capture);
   for (const PulseCapture& there : captures.pulses)
     if (capture_kind(there) == kind) return Problem{"capture_twice", "", {{"kind", kind}}};

@@ -30,7 +30,8 @@ struct LedElectrical {
   bool operator==(const LedElectrical&) const = default;
 };
 
-/// Replies of the adapter and the phantom about the probe's electrical state.
+/// Replies of the adapter and the phantom about the probe's electrical state. A run may take them in several captures:
+/// see add_capture.
 struct ElectricalCapture {
   std::optional<bool> present_phantom;  ///< a probe sits in the nest
   std::optional<bool> present_adapter;  ///< a probe is plugged in
@@ -98,6 +99,18 @@ struct ClosedPathCapture {
   bool operator==(const ClosedPathCapture&) const = default;
 };
 
+/// Slot samples with one LED lit alone: what appears in the other one's slot is cross-talk. All four trains have the
+/// same length.
+struct AloneSlotsCapture {
+  Band lit = Band::red;
+  double cycle_s = 0.0;
+  std::uint32_t first_cycle = 0;
+  std::vector<std::int32_t> red, dark_a, infrared, dark_b;
+  PerBand<double> drive_mA;  ///< 0 for the LED that is off
+  double temperature_C = 0.0;
+  bool operator==(const AloneSlotsCapture&) const = default;
+};
+
 /// Dark slots (both of each cycle) with the phantom's lamp on, and without it. The LEDs may be driven or not, but
 /// alike in both. Pairs of trains have the same length.
 struct AmbientCapture {
@@ -119,9 +132,7 @@ struct Captures {
   std::optional<RedAloneCapture> red_alone;
   std::optional<ClosedPathCapture> closed_path;
   std::optional<AmbientCapture> ambient;
-  /// Check after whose hard fault the routine stopped: readings whose captures are missing become
-  /// "blocked_by:<check>" instead of "not_captured". Empty: it went through. Not part of any capture's bytes.
-  std::string blocked_by;
+  PerBand<std::optional<AloneSlotsCapture>> alone_slots;  ///< by the LED that is lit
 
   const std::optional<SpectrumCapture>& spectrum(Band band) const {
     return band == Band::red ? red_spectrum : infrared_spectrum;

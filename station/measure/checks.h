@@ -39,6 +39,7 @@ struct Run {
   const Model& model;
   const Certificates& certificates;
   const Captures& captures;
+  PerBand<Result<Spectrum>> spectra;  ///< that of infrared without the red LED's own light, where that was captured
   PerBand<Result<Line>> lines;
   std::vector<FittedPulses> pulses;
   WeighedSpectra weighed{};  ///< only for a model that wants a saturation error
@@ -63,8 +64,7 @@ struct Outcome {
 };
 Outcome none(std::string reason);
 Outcome found(double value, std::vector<Component> components = {});
-/// "not_captured", or "blocked_by:<check>" when the routine stopped early.
-Outcome not_captured(const Run& run);
+Outcome not_captured();
 /// The reason slug of a reading for a problem of the methods.
 std::string reason_of(const Problem& problem);
 Component noise(double u);
@@ -77,6 +77,13 @@ Found at_reference(const Run& run, Found as_found, double told_C, double per_K, 
 
 std::vector<FittedPulses> fit_all(const Model& model, const Certificates& certificates, const Captures& captures);
 
+// --- what means nothing any more (hard_fault.cpp)
+/// The check that shows the first hard fault in the order of diagnosis: no probe, an LED that cannot shine, a detector
+/// that is full in the dark, or one that tells of no light. Empty: none is known from these captures.
+std::string hard_fault(const Run& run);
+/// Whether a reading of `check` says nothing of the probe once `fault` is known: it becomes "blocked_by:<fault>".
+bool means_nothing(const Run& run, std::string_view fault, std::string_view check);
+
 // --- contact and LEDs (evaluate.cpp)
 Outcome id_resistance(const Run& run);
 /// The bin that this resistance stands for: the nearest by ratio, since tolerances are relative. nullptr: no bins.
@@ -84,12 +91,17 @@ const Bin* coded_bin(const Model& model, double ohm);
 Outcome centroid_of(const Run& run, Band band);
 
 // --- from spectra (spectrum_checks.cpp)
+/// A band's spectrum. In the infrared one's the red LED shines too, with its secondary line in the window: its own
+/// spectrum, brought to the red line's light in this frame, is taken out again.
+Result<Spectrum> band_spectrum(const Certificates& certificates, const Captures& captures, Band band);
 Outcome secondary_emission(const Run& run);
 Outcome bin_mismatch(const Run& run);
 WeighedSpectra weigh(const Run& run);
 Outcome saturation_error(const Run& run, double saturation);
 
 // --- from slot samples (pulse_checks.cpp)
+/// Levels of both slots with one LED lit alone; nothing without such a capture or from one that is full.
+std::optional<PerBand<Level>> alone_levels(const Run& run, Band lit);
 Outcome cable_noise(const Run& run);
 Outcome transfer(const Run& run, Band band);
 Outcome closed_path_light(const Run& run);

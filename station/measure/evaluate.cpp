@@ -38,9 +38,7 @@ std::string reason_of(const Problem& problem) {
   return problem.id;  // a capture that no healthy device sends; the id says what is wrong with it
 }
 
-Outcome not_captured(const Run& run) {
-  return none(run.captures.blocked_by.empty() ? "not_captured" : "blocked_by:" + run.captures.blocked_by);
-}
+Outcome not_captured() { return none("not_captured"); }
 
 Component noise(double u) { return {"noise", u, Scope::per_probe}; }
 
@@ -71,7 +69,7 @@ double combined(const std::vector<Component>& components) {
 Outcome id_resistance(const Run& run) {
   const auto& electrical = run.captures.electrical;
   if (electrical && electrical->id_open) return none("id_open");
-  if (!electrical || !electrical->id_resistance_ohm) return not_captured(run);
+  if (!electrical || !electrical->id_resistance_ohm) return not_captured();
   return found(*electrical->id_resistance_ohm * run.certificates.adapter.resistance_scale);
 }
 
@@ -89,10 +87,10 @@ namespace {
 
 Outcome probe_present(const Run& run) {
   const auto& electrical = run.captures.electrical;
-  if (!electrical) return not_captured(run);
+  if (!electrical) return not_captured();
   const auto &phantom = electrical->present_phantom, &adapter = electrical->present_adapter;
   if ((phantom && !*phantom) || (adapter && !*adapter)) return found(0.0);
-  if (!phantom || !adapter) return not_captured(run);
+  if (!phantom || !adapter) return not_captured();
   return found(1.0);
 }
 
@@ -116,7 +114,7 @@ const std::optional<ForwardVoltage>* at_drive(const Run& run, Band band) {
 template <Band band>
 Outcome forward_voltage(const Run& run) {
   const auto* led = at_drive(run, band);
-  if (led == nullptr) return not_captured(run);
+  if (led == nullptr) return not_captured();
   const TemperatureModel& t = run.model.temperature;
   Found as_found{(*led)->voltage_V * run.certificates.adapter.voltage_scale, {}};
   return {at_reference(run, std::move(as_found), run.captures.electrical->temperature_C, t.voltage_V_per_K.of(band),
@@ -127,13 +125,13 @@ Outcome forward_voltage(const Run& run) {
 template <Band band>
 Outcome drive(const Run& run) {
   const auto* led = at_drive(run, band);
-  if (led == nullptr) return not_captured(run);
+  if (led == nullptr) return not_captured();
   return found((*led)->delivered_mA * run.certificates.adapter.drive_scale);
 }
 
 Outcome mains_pickup(const Run& run) {
   const auto& electrical = run.captures.electrical;
-  if (!electrical || !electrical->mains_pickup_nA) return not_captured(run);
+  if (!electrical || !electrical->mains_pickup_nA) return not_captured();
   return found(*electrical->mains_pickup_nA * run.certificates.adapter.photocurrent_scale);
 }
 
@@ -141,7 +139,7 @@ Outcome mains_pickup(const Run& run) {
 template <Band band>
 Outcome voltage_rise(const Run& run) {
   const auto* led = at_drive(run, band);
-  if (led == nullptr || !run.captures.electrical->led.of(band).at_quarter) return not_captured(run);
+  if (led == nullptr || !run.captures.electrical->led.of(band).at_quarter) return not_captured();
   const double rise_V = (*led)->voltage_V - run.captures.electrical->led.of(band).at_quarter->voltage_V;
   return found(1e3 * rise_V * run.certificates.adapter.voltage_scale);
 }
@@ -151,7 +149,7 @@ template <Band band>
 Outcome reverse_leakage(const Run& run) {
   if (run.model.wiring == Wiring::antiparallel) return none("not_separate");
   const auto& electrical = run.captures.electrical;
-  if (!electrical || !electrical->led.of(band).reverse_leakage_uA) return not_captured(run);
+  if (!electrical || !electrical->led.of(band).reverse_leakage_uA) return not_captured();
   return found(*electrical->led.of(band).reverse_leakage_uA);
 }
 
@@ -159,26 +157,24 @@ Outcome reverse_leakage(const Run& run) {
 template <Band band>
 Outcome warmup(const Run& run) {
   const auto& electrical = run.captures.electrical;
-  if (!electrical) return not_captured(run);
+  if (!electrical) return not_captured();
   const LedElectrical& led = electrical->led.of(band);
-  if (!led.first_voltage_V || !led.warm_voltage_V) return not_captured(run);
+  if (!led.first_voltage_V || !led.warm_voltage_V) return not_captured();
   return found(1e3 * std::abs(*led.first_voltage_V - *led.warm_voltage_V) * run.certificates.adapter.voltage_scale);
 }
 
 // --- LEDs, optical
 
-Result<Line> line_of(const Model& model, const Certificates& certificates, const Captures& captures, Band band) {
-  const auto& capture = captures.spectrum(band);
-  if (!capture) return Problem{"not_captured", ""};
-  const bool wanted = (model.needs() & needs_spectra) != 0;
-  if (!wanted) return Problem{"not_captured", ""};
-  return line_of_capture(*capture, certificates.phantom);
+Result<Line> line_of(const Certificates& certificates, const Captures& captures, const Result<Spectrum>& spectrum,
+                     Band band) {
+  if (!spectrum) return spectrum.error();
+  return line_in(*spectrum, *captures.spectrum(band), certificates.phantom);
 }
 
 /// A wavelength or width of a line, referred to 25 C.
 Outcome of_line(const Run& run, Band band, double Line::*value, double Line::*u, const PerBand<double>& per_K,
                 const PerBand<double>& per_K_u) {
-  if (!run.captures.spectrum(band)) return not_captured(run);
+  if (!run.captures.spectrum(band)) return not_captured();
   const auto& line = run.lines.of(band);
   if (!line) return none(reason_of(line.error()));
   return {at_reference(run, {(*line).*value, {noise((*line).*u)}}, run.captures.spectrum(band)->temperature_C,
@@ -211,7 +207,7 @@ Outcome width(const Run& run) {
 
 Outcome dark_as_found(const Run& run) {
   const auto& dark = run.captures.dark;
-  if (!dark) return not_captured(run);
+  if (!dark) return not_captured();
   const double scale = run.certificates.adapter.photocurrent_scale;
   return found(scale * (dark->connected_nA - dark->open_nA),
                {noise(scale * std::hypot(dark->connected_sd_nA, dark->open_sd_nA))});
@@ -273,7 +269,7 @@ constexpr std::array methods = std::to_array<Method>({
     {"bin_mismatch", bin_mismatch,
      "bin-mismatch;red centroid minus nominal of the coded bin;threshold=0.01;window=605-785;ref=25C;v1"},
     {"cable_noise", cable_noise,
-     "cable-noise;residual of the pulse fit over dc;without=100 120 200 240 Hz;largest of bands and captures;v1"},
+     "cable-noise;residual of the pulse fit over dc;without=100 120 200 240 Hz;largest of bands and captures;v2"},
     {"mains_pickup", mains_pickup, "mains-pickup;rms;v1"},
     {"red_forward_voltage", forward_voltage<Band::red>, "forward-voltage;at=drive;ref=25C;v1"},
     {"infrared_forward_voltage", forward_voltage<Band::infrared>, "forward-voltage;at=drive;ref=25C;v1"},
@@ -286,39 +282,48 @@ constexpr std::array methods = std::to_array<Method>({
     {"red_warmup", warmup<Band::red>, "warm-up;5 ms to warm;magnitude;v1"},
     {"infrared_warmup", warmup<Band::infrared>, "warm-up;5 ms to warm;magnitude;v1"},
     {"red_peak", peak<Band::red>, "peak;fit=cubic;top=0.2;window=605-785;ref=25C;v1"},
-    {"infrared_peak", peak<Band::infrared>, "peak;fit=cubic;top=0.2;window=800-1045;ref=25C;v1"},
+    {"infrared_peak", peak<Band::infrared>, "peak;fit=cubic;top=0.2;window=800-1045;less=red alone;ref=25C;v2"},
     {"red_centroid", centroid<Band::red>, "centroid;threshold=0.01;window=605-785;ref=25C;v1"},
-    {"infrared_centroid", centroid<Band::infrared>, "centroid;threshold=0.01;window=800-1045;ref=25C;v1"},
+    {"infrared_centroid", centroid<Band::infrared>,
+     "centroid;threshold=0.01;window=800-1045;less=red alone;ref=25C;v2"},
     {"red_half_power_centre", half_power_centre<Band::red>,
      "half-power-centre;fit=0.38-0.62;window=605-785;ref=25C;v1"},
     {"infrared_half_power_centre", half_power_centre<Band::infrared>,
-     "half-power-centre;fit=0.38-0.62;window=800-1045;ref=25C;v1"},
+     "half-power-centre;fit=0.38-0.62;window=800-1045;less=red alone;ref=25C;v2"},
     {"red_width", width<Band::red>, "fwhm;fit=0.38-0.62;slit=removed;window=605-785;ref=25C;v1"},
-    {"infrared_width", width<Band::infrared>, "fwhm;fit=0.38-0.62;slit=removed;window=800-1045;ref=25C;v1"},
+    {"infrared_width", width<Band::infrared>,
+     "fwhm;fit=0.38-0.62;slit=removed;window=800-1045;less=red alone;ref=25C;v2"},
     {"secondary_emission", secondary_emission, "secondary-emission;800-1000 over 605-785 and 800-1000;red alone;v1"},
     {"dark_current", dark_current, "dark-current;connected minus open;ref=25C;law=doubling;v1"},
     {"dark_current_as_found", dark_as_found, "dark-current;connected minus open;as found;v1"},
-    {"red_transfer", transfer_of<Band::red>, "transfer;dc of the fit;per=delivered mA;ref=25C;v1"},
-    {"infrared_transfer", transfer_of<Band::infrared>, "transfer;dc of the fit;per=delivered mA;ref=25C;v1"},
+    {"red_transfer", transfer_of<Band::red>, "transfer;dc of the fit;per=delivered mA;ref=25C;v2"},
+    {"infrared_transfer", transfer_of<Band::infrared>, "transfer;dc of the fit;per=delivered mA;ref=25C;v2"},
     {"closed_path_light", closed_path_light, "closed-path;blade in over open;dark=two neighbours;larger band;v1"},
     {"slot_crosstalk", slot_crosstalk,
-     "slot-crosstalk;slopes of both bands' AC/DC over 1/R and R;secondary=red alone;from=certificate;v1"},
+     "slot-crosstalk;one LED alone;other slot over its own;dark=two neighbours;larger direction;v2"},
     {"ambient_uptake", ambient_uptake, "ambient;dark slots;lamp on minus off;at=full lamp;v1"},
     {"red_modulation_deviation", modulation_of<Band::red>,
-     "modulation;fit=hann,slope,harmonics 2 3;dark=two neighbours;largest of set points;from=certificate;v1"},
+     "modulation;fit=hann,slope,curvature,harmonics 2 3;dark=two neighbours;largest of set points;from=certificate;v2"},
     {"infrared_modulation_deviation", modulation_of<Band::infrared>,
-     "modulation;fit=hann,slope,harmonics 2 3;dark=two neighbours;largest of set points;from=certificate;v1"},
-    {"ratio_deviation_0p4", ratio_0p4, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
-    {"ratio_deviation_1p0", ratio_1p0, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
-    {"ratio_deviation_1p6", ratio_1p6, "ratio;fit=hann,slope,harmonics 2 3;dark=two neighbours;from=certificate;v1"},
-    {"ratio_slope", ratio_line_of<RatioLineValue::slope>, "ratio-line;least squares over set points;v1"},
-    {"ratio_offset", ratio_line_of<RatioLineValue::offset>, "ratio-line;least squares over set points;v1"},
+     "modulation;fit=hann,slope,curvature,harmonics 2 3;dark=two neighbours;largest of set points;from=certificate;v2"},
+    {"ratio_deviation_0p4", ratio_0p4,
+     "ratio;fit=hann,slope,curvature,harmonics 2 3;dark=two neighbours;from=certificate;v2"},
+    {"ratio_deviation_1p0", ratio_1p0,
+     "ratio;fit=hann,slope,curvature,harmonics 2 3;dark=two neighbours;from=certificate;v2"},
+    {"ratio_deviation_1p6", ratio_1p6,
+     "ratio;fit=hann,slope,curvature,harmonics 2 3;dark=two neighbours;from=certificate;v2"},
+    {"ratio_slope", ratio_line_of<RatioLineValue::slope>, "ratio-line;least squares over set points;v2"},
+    {"ratio_offset", ratio_line_of<RatioLineValue::offset>, "ratio-line;least squares over set points;v2"},
     {"ratio_nonlinearity", ratio_line_of<RatioLineValue::nonlinearity>,
-     "ratio-line;least squares over set points;largest distance;v1"},
-    {"saturation_error_100", saturation_of<100>, "saturation-error;at=100;threshold=0.01;ref=25C;nominal=coded bin;v1"},
-    {"saturation_error_90", saturation_of<90>, "saturation-error;at=90;threshold=0.01;ref=25C;nominal=coded bin;v1"},
-    {"saturation_error_80", saturation_of<80>, "saturation-error;at=80;threshold=0.01;ref=25C;nominal=coded bin;v1"},
-    {"saturation_error_70", saturation_of<70>, "saturation-error;at=70;threshold=0.01;ref=25C;nominal=coded bin;v1"},
+     "ratio-line;least squares over set points;largest distance;v2"},
+    {"saturation_error_100", saturation_of<100>,
+     "saturation-error;at=100;threshold=0.01;less=red alone;ref=25C;nominal=coded bin;v2"},
+    {"saturation_error_90", saturation_of<90>,
+     "saturation-error;at=90;threshold=0.01;less=red alone;ref=25C;nominal=coded bin;v2"},
+    {"saturation_error_80", saturation_of<80>,
+     "saturation-error;at=80;threshold=0.01;less=red alone;ref=25C;nominal=coded bin;v2"},
+    {"saturation_error_70", saturation_of<70>,
+     "saturation-error;at=70;threshold=0.01;less=red alone;ref=25C;nominal=coded bin;v2"},
 });
 
 /// A modelled saturation error also depends on what the model file names for it.
@@ -359,11 +364,6 @@ bool wants_saturation_error(const Model& model) {
                      [](const std::string& check) { return check.starts_with("saturation_error_"); });
 }
 
-bool no_probe(const Run& run) {
-  const Outcome present = probe_present(run);
-  return present.found && present.found->value == 0.0;
-}
-
 }  // namespace
 
 Outcome checks::centroid_of(const Run& run, Band band) {
@@ -386,18 +386,22 @@ bool carries_uncertainty(std::string_view check) {
 }
 
 std::vector<Reading> evaluate(const Model& model, const Certificates& certificates, const Captures& captures) {
+  const PerBand<Result<Spectrum>> spectra{band_spectrum(certificates, captures, Band::red),
+                                          band_spectrum(certificates, captures, Band::infrared)};
   Run run{model,
           certificates,
           captures,
-          {line_of(model, certificates, captures, Band::red), line_of(model, certificates, captures, Band::infrared)},
+          spectra,
+          {line_of(certificates, captures, spectra.red, Band::red),
+           line_of(certificates, captures, spectra.infrared, Band::infrared)},
           fit_all(model, certificates, captures)};
-  const bool absent = no_probe(run);
-  if (!absent && wants_saturation_error(model)) run.weighed = weigh(run);
+  if (wants_saturation_error(model)) run.weighed = weigh(run);
+  const std::string fault = hard_fault(run);
   std::vector<Reading> readings;
   for (const Method& method : methods) {
     if (!model.has_check(method.check)) continue;
-    const bool blocked = absent && method.check != "probe_present";
-    readings.push_back(finished(model, method, blocked ? none("blocked_by:probe_present") : method.compute(run)));
+    const bool blocked = !fault.empty() && means_nothing(run, fault, method.check);
+    readings.push_back(finished(model, method, blocked ? none("blocked_by:" + fault) : method.compute(run)));
   }
   return readings;
 }

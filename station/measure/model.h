@@ -69,12 +69,10 @@ struct ClosedPathPlan {
   double capture_s = 0.0;
   bool operator==(const ClosedPathPlan&) const = default;
 };
-/// What the red LED's secondary emission does to its photocurrent.
-struct SecondaryLight {
-  double current_per_power = 0.0;  ///< photocurrent per power of the secondary line, through the phantom, over the same
-                                   ///< of the red line
-  double current_per_power_u = 0.0;
-  bool operator==(const SecondaryLight&) const = default;
+/// How the slots of one LED alone are captured, for each of the two.
+struct AloneSlotsPlan {
+  double capture_s = 0.0;
+  bool operator==(const AloneSlotsPlan&) const = default;
 };
 
 /// A probe type: what is asked of the devices, what is expected, and which checks are made.
@@ -91,7 +89,8 @@ struct Model {
   PerBand<double> quarter_drive_mA;  ///< the second current of the forward voltage
   double ceiling_mA = 0.0;           ///< never exceeded, whatever a file says
   double slot_s = 0.0;               ///< a cycle is four slots: red, dark, infrared, dark
-  double warmup_s = 0.0;             ///< drive on before anything optical is read
+  double warmup_s = 0.0;             ///< both LEDs driven before warm voltages, the light's level and spectra are read
+  double pulses_after_s = 0.0;       ///< both LEDs driven before the first pulses; warmup_s unless the file says so
   double reverse_bias_V = 0.0;       ///< for the LED's reverse leakage
   double mains_time_s = 0.0;         ///< averaging of the mains pick-up
 
@@ -111,7 +110,7 @@ struct Model {
   // Only where the routine's checks need them.
   std::optional<AmbientPlan> ambient;
   std::optional<ClosedPathPlan> closed_path;
-  std::optional<SecondaryLight> secondary_light;
+  std::optional<AloneSlotsPlan> alone_slots;
   std::optional<SaturationModel> saturation;
   TemperatureModel temperature;
   std::vector<Budget> budgets;       ///< one for each check that carries an uncertainty
@@ -127,6 +126,12 @@ struct Model {
   unsigned needs() const;
   /// The set points that the routine's checks need, rising.
   std::vector<SetPoint> needed_set_points() const;
+  /// The needed set points in the order of their captures: rising, but the one that stands for the light's level last,
+  /// when the LEDs are warmest.
+  std::vector<SetPoint> set_points_in_order() const;
+  /// Whether the spectrum of the red LED alone is wanted: for its secondary emission, and to take its light out of the
+  /// infrared line's window.
+  bool wants_red_alone() const;
   /// The set point whose capture stands for the light's level: the one nearest to ratio 1; nullptr: no set points.
   const SetPoint* level_set_point() const;
   const Budget* budget(std::string_view check) const;
@@ -149,7 +154,6 @@ struct Model {
 ///   model_capture_short, model_id_kind, model_bins_missing, model_budget_empty, model_routine_empty,
 ///   model_unknown_word
 ///   model_section_missing   a check of the routine needs a section that the file lacks
-///   model_check_needs_check a check of the routine is computed with another one, which the routine lacks
 ///   model_set_points_few    a check needs more set points than there are
 ///   model_curve_not_falling, model_curve_kind, model_curve_short, model_bad_sha256: of the saturation section
 /// The haemoglobin table that the model names is not read here: see attach_haemoglobin.

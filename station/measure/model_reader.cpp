@@ -61,6 +61,16 @@ void read_leds(yaml::Map& map, Model& model, yaml::Faults& faults) {
   read_led(*leds, Band::infrared, model, faults);
   model.slot_s = fields::quantity(*leds, "slot", "s", {100e-6, 2e-3}, out_of_range, faults);
   model.warmup_s = fields::quantity(*leds, "warm-up", "s", {0.0, 60.0}, out_of_range, faults);
+  model.pulses_after_s = model.warmup_s;
+  if (const auto after = leds->maybe("pulses after")) {
+    model.pulses_after_s = after->quantity("s", faults).value_or(model.warmup_s);
+    if (!(model.pulses_after_s >= 0.0) || model.pulses_after_s > model.warmup_s)
+      faults.add(after->place(), out_of_range,
+                 {{"key", "pulses after"},
+                  {"value", shortest(model.pulses_after_s)},
+                  {"least", "0"},
+                  {"most", "the warm-up, " + shortest(model.warmup_s)}});
+  }
   model.reverse_bias_V = fields::quantity(*leds, "reverse bias", "V", {0.0, 5.0}, out_of_range, faults);
   leds->finish(faults);
 }
@@ -216,12 +226,9 @@ void read_optional_sections(yaml::Map& map, Model& model, yaml::Faults& faults) 
     model.closed_path = ClosedPathPlan{fields::quantity(*part, "capture", "s", {0.05, 10.0}, out_of_range, faults)};
     part->finish(faults);
   }
-  if (auto part = maybe_map(map, "secondary light", faults)) {
-    SecondaryLight light;
-    light.current_per_power = fields::number(*part, "current_per_power", {0.0, 10.0}, out_of_range, faults);
-    light.current_per_power_u = fields::number(*part, "u", {0.0, 10.0}, out_of_range, faults);
+  if (auto part = maybe_map(map, "cross-talk", faults)) {
+    model.alone_slots = AloneSlotsPlan{fields::quantity(*part, "capture", "s", {0.05, 10.0}, out_of_range, faults)};
     part->finish(faults);
-    model.secondary_light = light;
   }
   if (auto part = maybe_map(map, "saturation", faults)) model.saturation = read_saturation(*part, faults);
 }
@@ -303,16 +310,17 @@ const SetPoint* find_set_point(const Model& model, double ratio) {
 
 /// Set points without which a check cannot be computed.
 std::size_t least_set_points(std::string_view check) {
-  if (check == "slot_crosstalk" || check == "ratio_nonlinearity") return 3;
+  if (check == "ratio_nonlinearity") return 3;
   if (check == "ratio_slope" || check == "ratio_offset") return 2;
+  if (check == "slot_crosstalk") return 0;
   const Check* known = find_check(check);
   return known != nullptr && (known->needs & needs_pulses) != 0 ? 1 : 0;
 }
 
 /// Whether a check is computed from all set points of the model.
 bool takes_all_set_points(std::string_view check) {
-  return check == "slot_crosstalk" || check == "ratio_nonlinearity" || check == "ratio_slope" ||
-         check == "ratio_offset" || check == "red_modulation_deviation" || check == "infrared_modulation_deviation";
+  return check == "ratio_nonlinearity" || check == "ratio_slope" || check == "ratio_offset" ||
+         check == "red_modulation_deviation" || check == "infrared_modulation_deviation";
 }
 
 void check_routine_entry(const Model& model, const std::string& check, yaml::Place place, yaml::Faults& faults) {
@@ -328,7 +336,7 @@ void check_routine_entry(const Model& model, const std::string& check, yaml::Pla
   };
   if (check == "ambient_uptake") need_section(model.ambient.has_value(), "ambient light");
   if (check == "closed_path_light") need_section(model.closed_path.has_value(), "closed path");
-  if (check == "slot_crosstalk") need_section(model.secondary_light.has_value(), "secondary light");
+  if (check == "slot_crosstalk") need_section(model.alone_slots.has_value(), "cross-talk");
   if (check.starts_with("saturation_error_")) need_section(model.saturation.has_value(), "saturation");
   if (const std::size_t least = least_set_points(check); model.set_points.size() < least)
     faults.add(place, "model_set_points_few", {{"check", check}, {"count", std::to_string(least)}});
@@ -354,8 +362,6 @@ void read_routine(yaml::Map& map, Model& model, yaml::Faults& faults) {
     before = std::max(before, index);
     check_routine_entry(model, *check, item.place(), faults);
     model.routine.push_back(*check);
-    if (*check == "slot_crosstalk" && seen.count("secondary_emission") == 0)
-      faults.add(item.place(), "model_check_needs_check", {{"check", *check}, {"other", "secondary_emission"}});
   }
   if (model.routine.empty()) faults.add(fields::place_of(map, "routine"), "model_routine_empty");
 }
@@ -402,6 +408,16 @@ std::vector<SetPoint> Model::needed_set_points() const {
   }
   return needed;
 }
+
+std::vector<SetPoint> Model::set_points_in_order() const {
+  std::vector<SetPoint> ordered = needed_set_points();
+  const SetPoint* level = level_set_point();
+  std::stable_partition(ordered.begin(), ordered.end(),
+                        [&](const SetPoint& point) { return level == nullptr || point.ratio != level->ratio; });
+  return ordered;
+}
+
+bool Model::wants_red_alone() const { return (needs() & needs_spectra) != 0; }
 
 const Budget* Model::budget(std::string_view check) const {
   const auto found = std::find_if(budgets.begin(), budgets.end(), [&](const Budget& b) { return b.check == check; });

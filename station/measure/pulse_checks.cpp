@@ -4,7 +4,6 @@
 
 #include "station/base/catalogue.h"
 #include "station/measure/checks.h"
-#include "station/measure/crosstalk.h"
 #include "station/measure/ratio_line.h"
 
 namespace probewright::measure::checks {
@@ -43,7 +42,7 @@ FittedPulses fitted(const PulseCapture& capture, double nA_per_code) {
   if (is_clipped_capture(capture)) return out.reason = "clipped", out;
   const auto trains = trains_of(capture, nA_per_code);
   if (!trains) return out.reason = reason_of(trains.error()), out;
-  const PulseRules rules{capture.modulator_Hz, false};
+  const PulseRules rules{capture.modulator_Hz, false, true};  // LEDs may still warm up
   for (const Band band : {Band::red, Band::infrared}) {
     auto fit = fit_pulses(trains->of(band), rules);
     if (!fit) return out.reason = reason_of(fit.error()), out;
@@ -61,11 +60,11 @@ FittedSet fitted_set(const Run& run, const std::vector<SetPoint>& set_points) {
   FittedSet out;
   for (const SetPoint& point : set_points) {
     const FittedPulses* pulse = run.pulse(point.ratio);
-    if (pulse == nullptr) return out.reason = not_captured(run).reason, out;
+    if (pulse == nullptr) return out.reason = not_captured().reason, out;
     if (!pulse->reason.empty()) return out.reason = pulse->reason, out;
     out.all.push_back(pulse);
   }
-  if (out.all.empty()) out.reason = not_captured(run).reason;
+  if (out.all.empty()) out.reason = not_captured().reason;
   return out;
 }
 
@@ -90,17 +89,6 @@ Result<Level> dark_level(const std::vector<std::int32_t>& first, const std::vect
     train.t_s.push_back(start_s + slot_moments[3] * cycle_s), train.level.push_back(nA_per_code * second[i]);
   }
   return fit_level(train, flicker_Hz);
-}
-
-/// The secondary emission's part of the red photocurrent.
-std::optional<Share> secondary_share(const Run& run) {
-  Outcome emission = secondary_emission(run);
-  if (!emission.found || !run.model.secondary_light) return std::nullopt;
-  add_budget(run.model, "secondary_emission", *emission.found);
-  const SecondaryLight& light = *run.model.secondary_light;
-  const double power = emission.found->value / 100.0, power_u = combined(emission.found->components) / 100.0;
-  return Share{light.current_per_power * power,
-               std::hypot(light.current_per_power * power_u, light.current_per_power_u * power)};
 }
 
 }  // namespace
@@ -145,7 +133,7 @@ Outcome cable_noise(const Run& run) {
 /// nothing reads 0: that is a reading.
 Outcome transfer(const Run& run, Band band) {
   const auto& electrical = run.captures.electrical;
-  if (!electrical || !electrical->led.of(band).at_drive) return not_captured(run);
+  if (!electrical || !electrical->led.of(band).at_drive) return not_captured();
   const FittedSet set = level_capture(run);
   if (!set.reason.empty()) return none(set.reason);
   const double drive_mA = electrical->led.of(band).at_drive->delivered_mA * run.certificates.adapter.drive_scale;
@@ -166,7 +154,7 @@ Outcome transfer(const Run& run, Band band) {
 /// The band with more of it counts: light that gets around the blade in one band gets around the phantom.
 Outcome closed_path_light(const Run& run) {
   const auto& closed = run.captures.closed_path;
-  if (!closed) return not_captured(run);
+  if (!closed) return not_captured();
   const FittedSet open = level_capture(run);
   if (!open.reason.empty()) return none(open.reason);
   if (is_clipped_capture(*closed)) return none("clipped");
@@ -185,34 +173,43 @@ Outcome closed_path_light(const Run& run) {
   return out;
 }
 
-Outcome slot_crosstalk(const Run& run) {
-  const FittedSet set = fitted_set(run, run.model.set_points);
-  if (!set.reason.empty()) return none(set.reason);
-  std::vector<ModulationPoint> points;
-  for (const FittedPulses* pulse : set.all) {
-    const CalibratedSetPoint* calibrated = calibration_of(run, *pulse);
-    if (calibrated == nullptr) return none("not_certified");
-    ModulationPoint point{calibrated->modulation, {}, {}};
-    for (const Band band : {Band::red, Band::infrared}) {
-      const PulseFit& fit = pulse->fits.of(band);
-      if (const auto modulated = is_modulated(fit); !modulated) return none(reason_of(modulated.error()));
-      point.measured.of(band) = fit.modulation, point.noise_u.of(band) = fit.modulation_u;
-    }
-    points.push_back(point);
+std::optional<PerBand<Level>> alone_levels(const Run& run, Band lit) {
+  const auto& alone = run.captures.alone_slots.of(lit);
+  if (!alone || is_clipped_capture(*alone)) return std::nullopt;
+  const auto trains = trains_of(*alone, run.certificates.adapter.nA_per_code);
+  if (!trains) return std::nullopt;
+  PerBand<Level> levels;
+  for (const Band slot : {Band::red, Band::infrared}) {
+    const auto level = fit_level(trains->of(slot), 0.0);
+    if (!level) return std::nullopt;
+    levels.of(slot) = *level;
   }
-  const auto secondary = secondary_share(run);
-  if (!secondary) return none("blocked_by:secondary_emission");
-  const PerBand<PulseFit>& level = level_capture(run).all.front()->fits;
-  const auto crosstalk = crosstalk_of(points, level.infrared.dc / level.red.dc, *secondary);
-  if (!crosstalk) return none(reason_of(crosstalk.error()));
-  return found(100.0 * crosstalk->share, {noise(100.0 * crosstalk->noise_u),
-                                          {"secondary_emission", 100.0 * crosstalk->secondary_u, Scope::per_probe}});
+  return levels;
+}
+
+/// What the one LED that is lit leaves in the other one's slot, over its own; the worse of both directions.
+Outcome slot_crosstalk(const Run& run) {
+  Outcome out;
+  for (const Band lit : {Band::red, Band::infrared}) {
+    const auto& alone = run.captures.alone_slots.of(lit);
+    if (!alone) return not_captured();
+    if (is_clipped_capture(*alone)) return none("clipped");
+    const auto levels = alone_levels(run, lit);
+    if (!levels) return none("pulses_too_few");
+    const Level& own = levels->of(lit);
+    const Level& other = levels->of(lit == Band::red ? Band::infrared : Band::red);
+    if (!(own.value > 10.0 * own.noise_u)) return none("too_dark");
+    const double percent = 100.0 * other.value / own.value;
+    if (out.found && percent <= out.found->value) continue;
+    out = found(percent, {noise(std::hypot(100.0 * other.noise_u, percent * own.noise_u) / own.value)});
+  }
+  return out;
 }
 
 /// Lamp on less lamp off, brought to the lamp's full level.
 Outcome ambient_uptake(const Run& run) {
   const auto& capture = run.captures.ambient;
-  if (!capture) return not_captured(run);
+  if (!capture) return not_captured();
   if (is_clipped({&capture->lit_a, &capture->lit_b, &capture->unlit_a, &capture->unlit_b})) return none("clipped");
   const double scale = run.certificates.adapter.nA_per_code;
   const auto lit = dark_level(capture->lit_a, capture->lit_b, capture->cycle_s, scale, capture->flicker_Hz);
@@ -244,7 +241,7 @@ Outcome modulation_deviation(const Run& run, Band band) {
 /// Deviation of R from its certificate at one set point, in %.
 Outcome ratio_deviation(const Run& run, double nominal) {
   const FittedPulses* pulse = run.pulse(nominal);
-  if (pulse == nullptr) return not_captured(run);
+  if (pulse == nullptr) return not_captured();
   const CalibratedSetPoint* calibrated = run.certificates.phantom.set_point(nominal);
   if (calibrated == nullptr) return none("not_certified");
   if (!pulse->reason.empty()) return none(pulse->reason);

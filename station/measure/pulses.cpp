@@ -15,7 +15,14 @@ constexpr double two_pi = 2.0 * std::numbers::pi;
 constexpr std::size_t least_samples = 16;
 
 /// Columns of the model: offset, slope, then sine and cosine of the fundamental and of harmonics 2 and 3.
-enum Column : std::size_t { offset, slope, sine, cosine, first_harmonic, linear_columns = 8, rate_column = 8 };
+/// Then come a parabola, when the drift bends, and the derivative by the rate, when that is free.
+enum Column : std::size_t { offset, slope, sine, cosine, first_harmonic, linear_columns = 8 };
+
+/// What is fitted beside that.
+struct Shape {
+  bool curvature = false;
+  std::size_t columns() const { return linear_columns + (curvature ? 1 : 0); }
+};
 
 Problem problem(std::string_view id, std::initializer_list<std::pair<std::string, std::string>> arguments = {}) {
   return {id, "", arguments};
@@ -43,10 +50,12 @@ void add_lines(std::vector<double>& row, double t_s, std::span<const double> lin
 }
 
 /// One row per sample. With `previous` also the derivative with respect to the rate, for the fit of a free rate.
-std::vector<double> design_of(const Train& train, double rate_Hz, const LinearFit* previous) {
-  const double middle = middle_of(train);
+std::vector<double> design_of(const Train& train, double rate_Hz, Shape shape, const LinearFit* previous) {
+  const double middle = middle_of(train), half = 0.5 * length_of(train);
+  // Mean of x^2 over -1 to 1 with the weights (1 + cos(pi x))/2: the parabola then leaves the mean level alone.
+  constexpr double mean_square = 1.0 / 3.0 - 2.0 / (std::numbers::pi * std::numbers::pi);
   std::vector<double> design;
-  design.reserve(train.t_s.size() * (linear_columns + 1));
+  design.reserve(train.t_s.size() * (linear_columns + 2));
   for (const double t : train.t_s) {
     const double since = t - middle, angle = two_pi * rate_Hz * since;
     design.push_back(1.0);
@@ -55,6 +64,7 @@ std::vector<double> design_of(const Train& train, double rate_Hz, const LinearFi
       design.push_back(std::sin(harmonic * angle));
       design.push_back(std::cos(harmonic * angle));
     }
+    if (shape.curvature) design.push_back(since / half * (since / half) - mean_square);
     if (previous == nullptr) continue;
     double derivative = 0.0;
     for (int harmonic = 1; harmonic <= 3; ++harmonic) {
@@ -67,8 +77,8 @@ std::vector<double> design_of(const Train& train, double rate_Hz, const LinearFi
   return design;
 }
 
-Result<LinearFit> fit_at(const Train& train, double rate_Hz, std::span<const double> weights) {
-  return fit_linear(design_of(train, rate_Hz, nullptr), linear_columns, train.level, weights);
+Result<LinearFit> fit_at(const Train& train, double rate_Hz, Shape shape, std::span<const double> weights) {
+  return fit_linear(design_of(train, rate_Hz, shape, nullptr), shape.columns(), train.level, weights);
 }
 
 std::optional<Problem> not_a_train(const Train& train) {
@@ -99,13 +109,13 @@ double weighted_squares(const LinearFit& fit, std::span<const double> weights) {
 }
 
 /// The rate on a grid of a quarter of the resolution that leaves the least, from two periods up.
-Result<double> strongest_rate(const Train& train, std::span<const double> weights) {
+Result<double> strongest_rate(const Train& train, Shape shape, std::span<const double> weights) {
   constexpr double highest_Hz = 20.0;  // a pulse train of this trade is slower than this
   const double sampling_Hz = static_cast<double>(train.t_s.size() - 1) / length_of(train);
   const double resolution = 1.0 / length_of(train), limit = std::min(highest_Hz, sampling_Hz / 6.0);
   double best_rate = 0.0, best = 0.0;
   for (double rate = 2.0 * resolution; rate < limit; rate += 0.25 * resolution) {
-    const auto fit = fit_at(train, rate, weights);
+    const auto fit = fit_at(train, rate, shape, weights);
     if (!fit) continue;
     // By the fundamental's amplitude: a subharmonic fits as well through its harmonics, but with a small fundamental.
     const double amplitude = std::hypot(fit->coefficients[sine], fit->coefficients[cosine]);
@@ -118,24 +128,25 @@ Result<double> strongest_rate(const Train& train, std::span<const double> weight
 struct FreeFit {
   LinearFit linear;  ///< at the fitted rate
   double rate_Hz = 0.0, rate_u_Hz = 0.0;
-  LinearFit full;  ///< with the rate as ninth coefficient: its covariance is the one that counts
+  LinearFit full;  ///< with the rate as last coefficient: its covariance is the one that counts
 };
 
 /// Gauss-Newton on the rate; each step is halved until it improves the fit.
-Result<FreeFit> fit_free(const Train& train, double start_Hz, std::span<const double> weights) {
+Result<FreeFit> fit_free(const Train& train, double start_Hz, Shape shape, std::span<const double> weights) {
+  const std::size_t rate_column = shape.columns();
   const double resolution = 1.0 / length_of(train);
   double rate = start_Hz;
-  auto linear = fit_at(train, rate, weights);
+  auto linear = fit_at(train, rate, shape, weights);
   if (!linear) return linear.error();
   for (int round = 0; round < 60; ++round) {
-    const auto full = fit_linear(design_of(train, rate, &*linear), linear_columns + 1, train.level, weights);
+    const auto full = fit_linear(design_of(train, rate, shape, &*linear), rate_column + 1, train.level, weights);
     if (!full) return problem("pulses_no_modulation");
     double step = std::clamp(full->coefficients[rate_column], -0.5 * resolution, 0.5 * resolution);
     const double before = weighted_squares(*linear, weights);
     bool better = false;
     for (; std::abs(step) > 1e-13 * rate; step *= 0.5) {
       if (not_a_rate(train, rate + step)) continue;
-      auto next = fit_at(train, rate + step, weights);
+      auto next = fit_at(train, rate + step, shape, weights);
       if (!next || !(weighted_squares(*next, weights) < before)) continue;
       linear = std::move(next), rate += step, better = true;
       break;
@@ -159,6 +170,7 @@ PulseFit pulse_fit(const Train& train, const LinearFit& fit, const LinearFit& sp
   out.modulation = out.ac / out.dc;
   out.noise_sd = fit.noise_sd;
   out.residuals = fit.residuals;
+  out.columns = fit.coefficients.size();
   const double squares = std::inner_product(fit.residuals.begin(), fit.residuals.end(), fit.residuals.begin(), 0.0);
   const std::size_t n = fit.residuals.size(), p = spread.coefficients.size();
   out.residual_relative = std::sqrt(squares / static_cast<double>(n > p ? n - p : 1)) / std::abs(out.dc);
@@ -223,19 +235,20 @@ Result<PulseFit> fit_pulses(const Train& train, const PulseRules& rules) {
   const auto weights = hann_weights(train);
   if (!rules.rate_Hz && !rules.free_rate)
     return problem("pulses_rate_out_of_range", {{"rate", "none"}, {"highest", "20"}});
+  const Shape shape{rules.curvature};
   double rate = rules.rate_Hz.value_or(0.0);
   if (!rules.rate_Hz) {
-    const auto found = strongest_rate(train, weights);
+    const auto found = strongest_rate(train, shape, weights);
     if (!found) return found.error();
     rate = *found;
   }
   if (auto wrong = not_a_rate(train, rate)) return *wrong;
   if (!rules.free_rate) {
-    const auto fit = fit_at(train, rate, weights);
+    const auto fit = fit_at(train, rate, shape, weights);
     if (!fit) return fit.error();
     return pulse_fit(train, *fit, *fit, rate);
   }
-  const auto free = fit_free(train, rate, weights);
+  const auto free = fit_free(train, rate, shape, weights);
   if (!free) return free.error();
   PulseFit out = pulse_fit(train, free->linear, free->full, free->rate_Hz);
   out.rate_u_Hz = free->rate_u_Hz;
@@ -265,7 +278,7 @@ Result<double> residual_without_lines(const Train& train, const PulseFit& fit, s
   if (!lines) return lines.error();
   const auto& rest = lines->residuals;
   const double squares = std::inner_product(rest.begin(), rest.end(), rest.begin(), 0.0);
-  const std::size_t fitted = linear_columns + columns;
+  const std::size_t fitted = fit.columns + columns;
   return std::sqrt(squares / static_cast<double>(n > fitted ? n - fitted : 1)) / std::abs(fit.dc);
 }
 

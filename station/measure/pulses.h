@@ -40,15 +40,17 @@ struct PulseFit {
   double dc_u = 0.0, ac_u = 0.0, modulation_u = 0.0, phase_u_rad = 0.0, rate_u_Hz = 0.0;  ///< standard, from noise
   double noise_sd = 0.0;                                                                  ///< of one sample
   std::vector<double> residuals;
+  std::size_t columns = 0;  ///< of the model that was fitted
 };
 
 struct PulseRules {
   std::optional<double> rate_Hz;  ///< of the modulator; may be left out when free
   bool free_rate = false;         ///< fit the rate too, starting from rate_Hz or else from the strongest line
+  bool curvature = false;         ///< the drift bends: LEDs that still warm up. Its mean level counts as dc
 };
 
 /// Weighted least squares with Hann weights over the length of the train: offset, slope, sine and cosine at the rate,
-/// harmonics 2 and 3.
+/// harmonics 2 and 3; with `curvature` also a parabola whose weighted mean is 0.
 /// Needs two periods or more and at least 16 samples per harmonic model; times strictly rising.
 /// Errors: pulses_too_few, pulses_too_short (under two periods), pulses_time_not_rising, pulses_rate_out_of_range,
 /// pulses_no_modulation (free rate: nothing to hold on to), fit_impossible.

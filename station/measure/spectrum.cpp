@@ -425,14 +425,36 @@ double line_counts(const SpectrumCapture& capture, const PhantomCertificate& cer
   return most;
 }
 
-Result<Line> line_of_capture(const SpectrumCapture& capture, const PhantomCertificate& certificate) {
-  const auto spectrum = spectrum_of(capture, certificate);
-  if (!spectrum) return spectrum.error();
-  auto line = find_line(*spectrum, {capture.band, standard_threshold, certificate.slit_nm});
+Spectrum without(Spectrum spectrum, const Spectrum& other, double times, Window window) {
+  for (std::size_t i = 0; i < spectrum.power.size(); ++i) {
+    const double nm = spectrum.wavelength_nm[i];
+    if (nm < window.from_nm || nm > window.to_nm) continue;
+    spectrum.power[i] -= times * other.power[i];
+    spectrum.variance[i] += times * times * other.variance[i];
+  }
+  return spectrum;
+}
+
+double power_in(const Spectrum& spectrum, Window window) {
+  const auto part = part_within(spectrum, window);
+  if (!part) return 0.0;
+  return integrate(*part, integral_weights(*part, {part->first, part->nm(part->first), true},
+                                           {part->last, part->nm(part->last), true}))
+      .area;
+}
+
+Result<Line> line_in(const Spectrum& spectrum, const SpectrumCapture& capture, const PhantomCertificate& certificate) {
+  auto line = find_line(spectrum, {capture.band, standard_threshold, certificate.slit_nm});
   if (!line) return line.error();
   const double part = line_counts(capture, certificate) / certificate.saturation_counts;
   if (part < too_dark_below) return problem("spectrum_too_dark", {{"percent", fixed(100.0 * part, 1)}});
   return line;
+}
+
+Result<Line> line_of_capture(const SpectrumCapture& capture, const PhantomCertificate& certificate) {
+  const auto spectrum = spectrum_of(capture, certificate);
+  if (!spectrum) return spectrum.error();
+  return line_in(*spectrum, capture, certificate);
 }
 
 }  // namespace probewright::measure

@@ -65,8 +65,16 @@ std::optional<Fraction> secondary_fraction(const Spectrum& spectrum);
 /// brightest pixel under 10 % of full scale over the dark frame).
 Result<Spectrum> spectrum_of(const SpectrumCapture& capture, const PhantomCertificate& certificate);
 
+/// Takes the light of another LED out of a spectrum: `times` x `other` where both lie in `window`, with its noise. Both
+/// must be by the same certificate.
+Spectrum without(Spectrum spectrum, const Spectrum& other, double times, Window window);
+/// Power in a window, by trapezoids: relative, as the spectrum is.
+double power_in(const Spectrum& spectrum, Window window);
+
 /// Counts over the dark frame of the brightest pixel in the window of the capture's band.
 double line_counts(const SpectrumCapture& capture, const PhantomCertificate& certificate);
+/// The same from a spectrum made of that capture by spectrum_of, perhaps with other light taken out of it.
+Result<Line> line_in(const Spectrum& spectrum, const SpectrumCapture& capture, const PhantomCertificate& certificate);
 /// The line of the capture's band, slit removed from its width by the certificate. Both LEDs may be driven: each line
 /// has its own window. Errors: those of spectrum_of and find_line; spectrum_too_dark when there is a line, but its
 /// brightest pixel is under 10 % of full scale.

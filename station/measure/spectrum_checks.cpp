@@ -1,3 +1,4 @@
+#include <algorithm>
 #include <cmath>
 #include <string>
 
@@ -43,7 +44,7 @@ struct Secondary {
 Secondary secondary_of(const Run& run) {
   Secondary out;
   const auto& alone = run.captures.red_alone;
-  if (!alone) return out.reason = not_captured(run).reason, out;
+  if (!alone) return out.reason = not_captured().reason, out;
   const auto spectrum = spectrum_of(alone->spectrum, run.certificates.phantom);
   if (!spectrum) return out.reason = reason_of(spectrum.error()), out;
   const auto line = line_of_capture(alone->spectrum, run.certificates.phantom);
@@ -65,9 +66,24 @@ PerBand<Absorption> nominal_of(const Run& run, const Bin& bin) {
 
 }  // namespace
 
+Result<Spectrum> band_spectrum(const Certificates& certificates, const Captures& captures, Band band) {
+  const auto& capture = captures.spectrum(band);
+  if (!capture) return Problem{"not_captured", ""};
+  auto spectrum = spectrum_of(*capture, certificates.phantom);
+  if (!spectrum || band == Band::red || !captures.red_alone) return spectrum;
+  const auto alone = spectrum_of(captures.red_alone->spectrum, certificates.phantom);
+  const double line = line_counts(captures.red_alone->spectrum, certificates.phantom);
+  // Without a red line of its own there is nothing to go by: clipped, dark or the wrong LED, as its own checks say.
+  if (!alone || line < too_dark_below * certificates.phantom.saturation_counts) return spectrum;
+  const Window red = line_window(Band::red);
+  const double own = power_in(*alone, red), here = power_in(*spectrum, red);
+  if (!(own > 0.0)) return spectrum;
+  return without(*std::move(spectrum), *alone, std::max(0.0, here) / own, line_window(Band::infrared));
+}
+
 Outcome secondary_emission(const Run& run) {
   const auto& alone = run.captures.red_alone;
-  if (!alone) return not_captured(run);
+  if (!alone) return not_captured();
   const auto spectrum = spectrum_of(alone->spectrum, run.certificates.phantom);
   if (!spectrum) return none(reason_of(spectrum.error()));
   const auto fraction = secondary_fraction(*spectrum);
@@ -94,11 +110,10 @@ WeighedSpectra weigh(const Run& run) {
   PerBand<Piece> lines;
   for (const Band band : {Band::red, Band::infrared}) {
     const auto& capture = run.captures.spectrum(band);
-    if (!capture) return out.reason = not_captured(run).reason, out;
+    if (!capture) return out.reason = not_captured().reason, out;
     const auto& line = run.lines.of(band);
     if (!line) return out.reason = reason_of(line.error()), out;
-    // The line was found, so the spectrum can be made.
-    lines.of(band) = {spectrum_of(*capture, run.certificates.phantom).value(), line->run_from_nm, line->run_to_nm};
+    lines.of(band) = {run.spectra.of(band).value(), line->run_from_nm, line->run_to_nm};
   }
   if (!secondary.reason.empty()) return out.reason = secondary.reason, out;
   out.nominal = nominal_of(run, *coded.bin);

@@ -14,6 +14,8 @@ namespace {
 
 namespace fs = std::filesystem;
 
+constexpr std::size_t longest_table_bytes = 1 << 20;
+
 /// The .yaml files of a folder by name, so that faults come in the same order everywhere.
 std::vector<fs::path> yaml_files(const fs::path& folder) {
   std::vector<fs::path> files;
@@ -61,7 +63,7 @@ class Reading {
       add(value.error());
       return documented;
     }
-    documented = Documented<Value>{std::move(*value), {}};
+    documented = Documented<Value>{std::move(*value), {}, {}};
     documented->document.kind = kind;
     documented->document.file = file.string();
     documented->document.digest = db::sha256(*text);
@@ -105,8 +107,30 @@ class Reading {
       if (auto model = parse(file, "model", measure::read_model)) {
         model->document.name = model->value.name;
         model->document.revision = model->value.revision;
+        attach_table(*model);
         keep(configuration_.models, std::move(*model));
       }
+  }
+
+  /// The haemoglobin table that a model names, if it is the very one.
+  void attach_table(Documented<measure::Model>& model) {
+    if (!model.value.saturation) return;
+    const auto& named = *model.value.saturation;
+    const fs::path file = configuration_.folder / "tables" / (named.table + ".csv");
+    auto text = read_file(file, longest_table_bytes);
+    if (!text) {
+      faults_.push_back(text.error());
+      return;
+    }
+    const Digest digest = db::sha256(*text);
+    if (to_hex(digest) != named.table_sha256) {
+      faults_.push_back({"table_not_named",
+                         file.string(),
+                         {{"model", model.document.file}, {"named", named.table_sha256}, {"found", to_hex(digest)}}});
+      return;
+    }
+    add(measure::attach_haemoglobin(model.value, *text, file.string()));
+    model.parts.push_back({"haemoglobin table", named.table, 0, file.string(), std::move(*text), digest});
   }
 
   /// Revisions of one sheet stand side by side in the folder; the highest is the one to use.

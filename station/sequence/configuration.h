@@ -17,7 +17,7 @@ namespace probewright::sequence {
 
 /// A file that can change a verdict, as it was read: the ledger keeps its text by digest when it is first used.
 struct DocumentText {
-  std::string kind;  ///< "station", "model", "sheet", "certificate"
+  std::string kind;  ///< "station", "model", "sheet", "certificate", "haemoglobin table"
   std::string name;  ///< "AQ-20", "PHC-2026-0101"
   int revision = 0;  ///< 0 where the kind has none
   std::string file;
@@ -29,6 +29,7 @@ template <class T>
 struct Documented {
   T value;
   DocumentText document;
+  std::vector<DocumentText> parts;  ///< documents that this one names by their digest: a model's haemoglobin table
 };
 
 /// Everything that the line is told from files, read once before it starts. Plain values; any thread may read it.
@@ -52,7 +53,8 @@ Result<std::filesystem::path> find_configuration(std::string_view chosen, const 
 
 /// Reads stations/NAME.yaml (`station` empty: the only one there), models, sheets and certificates of `folder`.
 /// All faults of all files at once; also: two documents of one name, a model without sheet, a check of a routine
-/// that its sheet does not name, bins that differ, a sheet written for another model file, a nest's certificate that
+/// that its sheet does not name, a haemoglobin table (tables/NAME.csv) that is not there or not the one that the model
+/// names by its digest, bins that differ, a sheet written for another model file, a nest's certificate that
 /// is not there.
 ResultOrFaults<Configuration> read_configuration(const std::filesystem::path& folder, std::string_view station);
 

@@ -9,6 +9,7 @@
 #include "station/base/digest.h"
 #include "station/base/times.h"
 #include "station/measure/reading.h"
+#include "station/sequence/run_step.h"
 
 // What goes into the line and what comes out of it: plain values, used alike by the text, windows and hands.
 namespace probewright::sequence {
@@ -71,8 +72,9 @@ struct RunOutcome {
   std::vector<JudgedReading> readings;
   std::int64_t closing_entry = 0;
   Digest seal{};
-  Duration cycle{};     ///< first device command to verdict told, on the line's clock
-  int asked_again = 0;  ///< exchanges and captures that had to be repeated
+  Duration cycle{};            ///< first device command to verdict told, on the line's clock
+  int asked_again = 0;         ///< exchanges and captures that had to be repeated
+  std::vector<RunStep> steps;  ///< what was done when, in the order of their beginnings
 };
 
 /// What a nest is doing, in one word.

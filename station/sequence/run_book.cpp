@@ -16,11 +16,13 @@ db::DocumentRow ledger_document(const DocumentText& document) {
 
 /// Documents in the order of their roles in the opening entry.
 std::vector<std::pair<std::string, const DocumentText*>> roles(const RunDocuments& documents) {
-  return {{"station", &documents.station.document},
-          {"model", &documents.model.document},
-          {"sheet", &documents.sheet.document},
-          {"phantom certificate", &documents.phantom.document},
-          {"adapter certificate", &documents.adapter.document}};
+  std::vector<std::pair<std::string, const DocumentText*>> all{{"station", &documents.station.document},
+                                                               {"model", &documents.model.document},
+                                                               {"sheet", &documents.sheet.document},
+                                                               {"phantom certificate", &documents.phantom.document},
+                                                               {"adapter certificate", &documents.adapter.document}};
+  for (const DocumentText& part : documents.model.parts) all.emplace_back(part.kind, &part);
+  return all;
 }
 
 bool outside(const JudgedReading& judged) {
@@ -92,6 +94,7 @@ JudgedReading RunBook::judged(const measure::Reading& reading) const {
 }
 
 std::vector<JudgedReading> RunBook::fresh_readings(bool last) {
+  if (readings_.size() == documents_.model.value.routine.size()) return {};
   std::set<std::string, std::less<>> known;
   for (const auto& old : readings_) known.insert(old.reading.check);
   std::vector<JudgedReading> fresh;
@@ -138,6 +141,12 @@ void RunBook::stage_done() {
 
 bool RunBook::any_outside() const { return std::any_of(readings_.begin(), readings_.end(), outside); }
 
+bool RunBook::blocked(const std::string& check) const {
+  return std::any_of(readings_.begin(), readings_.end(), [&](const JudgedReading& judged) {
+    return judged.reading.check == check && judged.reading.none_reason.starts_with("blocked_by:");
+  });
+}
+
 RunOutcome RunBook::outcome_of(const Ending& ending) const {
   std::vector<limits::Judgement> judgements;
   for (const auto& judged : readings_) judgements.push_back(judged.judgement);
@@ -154,12 +163,17 @@ RunOutcome RunBook::outcome_of(const Ending& ending) const {
   outcome.cause = ending.cause;
   outcome.cause_words = ending.words;
   outcome.failing = sheet.not_ok;
-  // Readings that are missing decide a verdict only where the routine went through: else the cause did.
+  // Readings that are missing decide a verdict only where the routine went through: else the cause did. What a hard
+  // fault blocked is no failure of its own.
   if (ending.by == EndedBy::completion)
-    outcome.failing.insert(outcome.failing.end(), sheet.no_reading.begin(), sheet.no_reading.end());
+    for (const std::string& check : sheet.no_reading)
+      if (!blocked(check)) outcome.failing.push_back(check);
   std::sort(outcome.failing.begin(), outcome.failing.end(),
             [](const std::string& a, const std::string& b) { return check_index(a) < check_index(b); });
   if (ending.by == EndedBy::completion && outcome.verdict == RunVerdict::fail) outcome.cause = "limits";
+  outcome.steps = steps_;
+  std::stable_sort(outcome.steps.begin(), outcome.steps.end(),
+                   [](const RunStep& a, const RunStep& b) { return a.from < b.from; });
   outcome.readings = readings_;
   std::sort(outcome.readings.begin(), outcome.readings.end(), [](const JudgedReading& a, const JudgedReading& b) {
     return check_index(a.reading.check) < check_index(b.reading.check);

@@ -46,8 +46,8 @@ class RunBook {
   /// Notes a capture of the stage that goes on. It counts from stage_done() on: a probe that is taken out in mid-stage
   /// leaves nothing of it.
   void add(measure::AnyCapture capture);
-  /// The check after whose hard fault the rest was left out.
-  void block(std::string check) { captures_.blocked_by = std::move(check); }
+  /// Notes a step that was made, for the outcome.
+  void note(RunStep step) { steps_.push_back(std::move(step)); }
   /// Evaluates what is there, judges what is new and hands both to the ledger. Throws ProblemError when the ledger is
   /// in trouble: the run cannot be recorded.
   void stage_done();
@@ -64,6 +64,8 @@ class RunBook {
  private:
   std::vector<JudgedReading> fresh_readings(bool last);
   JudgedReading judged(const measure::Reading& reading) const;
+  /// Whether a hard fault left this check without a reading.
+  bool blocked(const std::string& check) const;
   RunOutcome outcome_of(const Ending& ending) const;
 
   LedgerWriter& ledger_;
@@ -72,6 +74,7 @@ class RunBook {
   measure::Captures captures_;
   std::vector<measure::AnyCapture> stage_;  ///< of the stage that goes on
   std::vector<JudgedReading> readings_;
+  std::vector<RunStep> steps_;
   db::RunOpened opening_;
   db::RunId run_;
   /// Touched by the ledger's jobs only, which run one after the other.

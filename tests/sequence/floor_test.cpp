@@ -192,7 +192,7 @@ TEST_P(Disturbance, ADeviceThatStartsAnewVoidsTheRun) {
   }
 }
 
-INSTANTIATE_TEST_SUITE_P(AtEveryStage, Disturbance, ::testing::Range(1, 5));
+INSTANTIATE_TEST_SUITE_P(AtEveryStage, Disturbance, ::testing::Range(1, 7));
 
 TEST(Readiness, AWrongCertificateIsRefusedInWords) {
   MemoryLedger ledger;

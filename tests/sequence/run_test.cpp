@@ -31,7 +31,8 @@ TEST(Run, AHealthyProbePassesAndIsOnDiskWhenTold) {
   EXPECT_TRUE(report.ok()) << report.first_fault->what;
   EXPECT_EQ(report.runs, 1);
   EXPECT_EQ(report.open_runs, 0);
-  EXPECT_EQ(report.captures, 5);  // electrical, dark, two spectra, one pulse train
+  // Electrical twice, dark, red alone, both spectra, slots of each LED alone, ambient, closed path, three pulse trains.
+  EXPECT_EQ(report.captures, 13);
 }
 
 TEST(Run, TheSameSerialIsCountedAsAnotherTry) {
