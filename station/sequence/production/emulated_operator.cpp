@@ -3,6 +3,7 @@
 #include <algorithm>
 
 #include "station/base/entropy.h"
+#include "station/base/numbers.h"
 
 // What the operator does. What the operator hears and knows stands in emulated_operator_knows.cpp.
 namespace probewright::sequence::production {
@@ -10,7 +11,7 @@ namespace {
 
 /// Between two looks at the line, the clock's time.
 constexpr Duration look_pause = std::chrono::milliseconds(4);
-/// After a refusal of all that is left, before it is scanned again.
+/// After a refusal, before the same probe is scanned again.
 constexpr Duration refusal_pause = std::chrono::seconds(1);
 /// How long the line may take to notice a probe in the wrong nest: longer than a scan holds.
 constexpr Duration notice_pause = std::chrono::seconds(25);
@@ -20,7 +21,7 @@ constexpr Duration clear_pause = std::chrono::seconds(1);
 /// "AQ20-W48-07" of "LOT/AQ20-W48-07/AQ-20/48/AQ20-048-00001"
 std::string lot_of(const std::string& card) {
   const auto begin = card.find('/');
-  if (begin == std::string::npos) return {};
+  if (begin == std::string::npos) return {};  // no card: no lot
   return card.substr(begin + 1, card.find('/', begin + 1) - begin - 1);
 }
 
@@ -46,7 +47,8 @@ EmulatedOperator::EmulatedOperator(wire::LineClock& clock, ProbeHandler& handler
       ask_(std::move(ask)),
       settings_(std::move(settings)),
       pieces_(std::move(pieces)),
-      refusals_(pieces_.size(), 0) {
+      refusals_(pieces_.size(), 0),
+      not_before_(pieces_.size(), SteadyTime{Duration::min()}) {
   for (std::size_t piece = 0; piece < pieces_.size(); ++piece) {
     queue_.push_back(piece);
     mistakes_.push_back(settings_.mistakes.at(piece));
@@ -75,10 +77,10 @@ asio::awaitable<bool> EmulatedOperator::begin() {
     const Answered answer = co_await scan(settings_.badge);
     if (!answer.taken) work_.trouble = answer.words;
   }
-  const bool open = settings_.lot_card.empty() || lot_ == lot_of(settings_.lot_card);
-  if (work_.trouble.empty() && !open) {
+  const std::string lot = lot_of(settings_.lot_card);  // it may be open since an earlier start
+  if (work_.trouble.empty() && lot_ != lot) {
     const Answered answer = co_await scan(settings_.lot_card);
-    if (!answer.taken) work_.trouble = answer.words;
+    if (!answer.taken && lot_ != lot) work_.trouble = answer.words;
   }
   co_return work_.trouble.empty();
 }
@@ -100,8 +102,8 @@ asio::awaitable<void> EmulatedOperator::end() {
   for (const std::size_t piece : queue_) work_.left_out.push_back({piece, "the work ended before it was scanned"});
   queue_.clear();
   if (stopping_ || !work_.trouble.empty()) co_return;
-  if (!settings_.lot_card.empty()) ask_(CloseLot{});
-  if (!settings_.badge.empty()) ask_(SignOut{});
+  if (!settings_.lot_card.empty()) ask(CloseLot{});
+  if (!settings_.badge.empty()) ask(SignOut{});
 }
 
 asio::awaitable<bool> EmulatedOperator::one_thing() {
@@ -207,8 +209,8 @@ asio::awaitable<bool> EmulatedOperator::meddle(int nest) {
 asio::awaitable<bool> EmulatedOperator::take_out(int nest) {
   Spot& spot = spots_[nest];
   const std::size_t piece = spot.piece;
-  if (!stopping_ && !queue_.empty() && pending(queue_.front()) == Mistake::left_in_place)
-    co_await leave_in_place(nest, queue_.front());
+  const auto next = next_in_queue();
+  if (!stopping_ && next && pending(*next) == Mistake::left_in_place) co_await leave_in_place(nest, *next);
   co_await move_hands();
   if (spot.sits && !must(handler_.remove(nest))) co_return true;
   if (spot.lid_open) static_cast<void>(must(handler_.lid(nest, false)));
@@ -239,29 +241,28 @@ asio::awaitable<void> EmulatedOperator::leave_in_place(int nest, std::size_t nex
 
 /// Scans what is next, into any nest that is free. False when there was nothing to scan.
 asio::awaitable<bool> EmulatedOperator::next_piece() {
-  if (stopping_ || queue_.empty() || free_nests() == 0 || clock_.steady_now() < no_scan_before_) co_return false;
-  const std::size_t piece = queue_.front();
+  const auto next = next_in_queue();
+  // One probe is in hand at a time: as long as the line waits for one, another scan would be a mistake.
+  if (stopping_ || !next || free_nests() == 0 || any(Phase::to_seat) || any(Phase::forgotten) || any(Phase::strayed))
+    co_return false;
+  const std::size_t piece = *next;
   if (const auto mistake = pending(piece)) {
-    if (!occasion_for(*mistake)) {
-      if (occasion_may_come(*mistake)) co_return false;
-      not_made(piece);
-    }
+    if (!occasion_for(*mistake) && occasion_may_come(*mistake)) co_return false;
+    if (!occasion_for(*mistake)) not_made(piece);
     const std::string text = mistaken_text(*mistake, pieces_[piece].serial);
     if (!text.empty()) co_await scan_by_mistake(*mistake, piece, 0, text);
   }
-  if (queue_.empty() || queue_.front() != piece) co_return true;
-  queue_.pop_front();
-  const bool armed = co_await scan_piece(piece);
-  static_cast<void>(armed);
+  std::erase(queue_, piece);
+  co_await scan_piece(piece);
   co_return true;
 }
 
-asio::awaitable<bool> EmulatedOperator::scan_piece(std::size_t piece) {
+asio::awaitable<void> EmulatedOperator::scan_piece(std::size_t piece) {
   co_await move_hands();
   const Answered answer = co_await scan(pieces_[piece].serial);
   if (!answer.taken || answer.nest == 0) {
-    put_aside(piece, answer.words);
-    co_return false;
+    put_aside(piece, answer);
+    co_return;
   }
   Spot& spot = spots_[answer.nest];
   spot.piece = piece;
@@ -269,7 +270,6 @@ asio::awaitable<bool> EmulatedOperator::scan_piece(std::size_t piece) {
   const bool forgets = pending(piece) == Mistake::never_put_in;
   if (forgets) blunder(Mistake::never_put_in, piece, answer.nest);
   set(spot, forgets ? Phase::forgotten : Phase::to_seat);
-  co_return true;
 }
 
 /// Scans something that should not be scanned now. Should the line arm a nest for it, that is taken back.
@@ -279,19 +279,22 @@ asio::awaitable<void> EmulatedOperator::scan_by_mistake(Mistake mistake, std::si
   const Answered answer = co_await scan(std::move(text));
   told(mistake, piece, answer.words);
   work_.blunders.back().taken = answer.taken;
-  if (answer.taken && answer.nest != 0) ask_(StopNest{answer.nest, signed_in_});
+  if (answer.taken && answer.nest != 0) ask(StopNest{answer.nest, signed_in_});
+}
+
+void EmulatedOperator::ask(LineRequest request) {
+  ++asked_;
+  ask_(std::move(request));
 }
 
 asio::awaitable<Answered> EmulatedOperator::scan(std::string text) {
-  answers_.clear();
-  ask_(Scan{std::move(text)});
+  ask(Scan{std::move(text)});
+  const std::uint64_t mine = asked_;
   const SteadyTime until = clock_.steady_now() + settings_.patience;
-  while (answers_.empty() && clock_.steady_now() < until) co_await look();
-  if (answers_.empty()) {
-    work_.trouble = "the line does not answer a scan";
-    co_return Answered{false, work_.trouble, std::nullopt, 0};
-  }
-  co_return answers_.front();
+  while (answered_ < mine && clock_.steady_now() < until) co_await look();
+  if (answered_ >= mine) co_return answer_;
+  work_.trouble = "the line does not answer a scan";
+  co_return Answered{false, work_.trouble, std::nullopt, 0};
 }
 
 asio::awaitable<void> EmulatedOperator::move_hands() {
@@ -313,16 +316,23 @@ std::string EmulatedOperator::mistaken_text(Mistake mistake, const std::string& 
   }
 }
 
-/// A piece that the line will not take now: it comes again after the others, and is left out after the third time.
-void EmulatedOperator::put_aside(std::size_t piece, const std::string& words) {
-  if (++refusals_[piece] >= 3) {
-    work_.left_out.push_back({piece, words});
-    return;
-  }
+/// A piece that the line will not take now: it comes again after the others, at the earliest when the line says.
+void EmulatedOperator::put_aside(std::size_t piece, const Answered& answer) {
+  Duration rest = refusal_pause;
+  const bool rests = answer.problem && answer.problem->id == "serial_rests";
+  if (rests)
+    for (const auto& [name, value] : answer.problem->arguments)
+      if (name == "seconds") rest = std::chrono::seconds(parse_integer(value).value_or(1));
+  if (!rests && give_up(piece, answer.words)) return;
+  not_before_[piece] = clock_.steady_now() + rest;
   queue_.push_back(piece);
-  const bool all_refused = std::all_of(queue_.begin(), queue_.end(), [&](std::size_t p) { return refusals_[p] > 0; });
-  if (all_refused && refusals_[queue_.front()] == refusals_[piece])
-    no_scan_before_ = clock_.steady_now() + refusal_pause;
+}
+
+/// After the third refusal a piece is left out, with the line's last word.
+bool EmulatedOperator::give_up(std::size_t piece, const std::string& words) {
+  if (++refusals_[piece] < 3) return false;
+  work_.left_out.push_back({piece, words});
+  return true;
 }
 
 }  // namespace probewright::sequence::production

@@ -71,10 +71,11 @@ class EmulatedOperator {
   asio::awaitable<bool> meddle(int nest);
   asio::awaitable<bool> take_out(int nest);
   asio::awaitable<bool> next_piece();
-  asio::awaitable<bool> scan_piece(std::size_t piece);
+  asio::awaitable<void> scan_piece(std::size_t piece);
   asio::awaitable<void> scan_by_mistake(Mistake mistake, std::size_t piece, int nest, std::string text);
   asio::awaitable<void> leave_in_place(int nest, std::size_t next);
   asio::awaitable<Answered> scan(std::string text);
+  void ask(LineRequest request);
   asio::awaitable<void> move_hands();
   asio::awaitable<void> look();
 
@@ -100,7 +101,9 @@ class EmulatedOperator {
   Blunder& blunder(Mistake mistake, std::size_t piece, int nest);
   void told(Mistake mistake, std::size_t piece, const std::string& words);
   void put_back(std::size_t piece);
-  void put_aside(std::size_t piece, const std::string& words);
+  void put_aside(std::size_t piece, const Answered& answer);
+  bool give_up(std::size_t piece, const std::string& words);
+  std::optional<std::size_t> next_in_queue() const;
   void set(Spot& spot, Phase phase);
   bool must(const Result<void>& done);
   std::string mistaken_text(Mistake mistake, const std::string& serial) const;
@@ -115,9 +118,11 @@ class EmulatedOperator {
   std::deque<std::size_t> queue_;
   std::vector<std::optional<Mistake>> mistakes_;  ///< still to be made, by piece
   std::vector<int> refusals_;                     ///< by piece
-  std::deque<Answered> answers_;
+  std::vector<SteadyTime> not_before_;            ///< by piece: the line asked to set it aside until then
+  std::uint64_t asked_ = 0, answered_ = 0;        ///< requests, and the line's answers to them, in the same order
+  Answered answer_;                               ///< the newest
   std::string lot_, signed_in_;
-  SteadyTime last_sign_, no_scan_before_;
+  SteadyTime last_sign_;
   bool stopping_ = false;
   Work work_;
 };

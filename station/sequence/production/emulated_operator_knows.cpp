@@ -5,6 +5,12 @@
 
 // What the operator hears of the line and has in mind.
 namespace probewright::sequence::production {
+namespace {
+
+/// How long runs that are being stopped may take to tell their end.
+constexpr Duration stop_patience = std::chrono::seconds(5);
+
+}  // namespace
 
 void EmulatedOperator::hear(const LineEvent& event) {
   last_sign_ = clock_.steady_now();
@@ -47,11 +53,14 @@ void EmulatedOperator::heard(const ArmingEnded& ended) {
   const bool mine = spot.phase == Phase::forgotten || stopping_;
   if (spot.phase == Phase::forgotten) told(Mistake::never_put_in, spot.piece, words);
   if (mine && !stopping_) put_back(spot.piece);
-  if (!mine) put_aside(spot.piece, words);
+  if (!mine && !give_up(spot.piece, words)) queue_.push_back(spot.piece);
   set(spot, spot.sits ? Phase::to_take_out : Phase::free);
 }
 
-void EmulatedOperator::heard(const Answered& answer) { answers_.push_back(answer); }
+void EmulatedOperator::heard(const Answered& answer) {
+  ++answered_;
+  answer_ = answer;
+}
 
 void EmulatedOperator::heard(const PersonChanged& changed) {
   signed_in_ = changed.person ? changed.person->name : std::string{};
@@ -76,7 +85,20 @@ bool EmulatedOperator::all_clear() const {
   return std::all_of(spots_.begin(), spots_.end(), [](const auto& item) { return item.second.phase == Phase::free; });
 }
 
-bool EmulatedOperator::stuck() const { return clock_.steady_now() >= last_sign_ + settings_.patience; }
+/// No sign of the line for longer than anybody waits; a probe that has to rest is no reason to wonder.
+bool EmulatedOperator::stuck() const {
+  SteadyTime since = last_sign_;
+  for (const std::size_t piece : queue_) since = std::max(since, not_before_[piece]);
+  return clock_.steady_now() >= since + (stopping_ ? std::min(stop_patience, settings_.patience) : settings_.patience);
+}
+
+/// The first piece that may be scanned now.
+std::optional<std::size_t> EmulatedOperator::next_in_queue() const {
+  const SteadyTime now = clock_.steady_now();
+  const auto next =
+      std::find_if(queue_.begin(), queue_.end(), [&](std::size_t piece) { return not_before_[piece] <= now; });
+  return next == queue_.end() ? std::nullopt : std::optional{*next};
+}
 
 bool EmulatedOperator::any(Phase phase) const {
   return std::any_of(spots_.begin(), spots_.end(), [phase](const auto& item) { return item.second.phase == phase; });
