@@ -72,4 +72,14 @@ std::vector<LotPiece> demo_lot(std::string_view model, int lot, int count, std::
   return pieces;
 }
 
+std::map<std::string, Truth> truths_of(std::span<const LotPiece> pieces, std::uint64_t seed) {
+  std::map<std::string, Truth> truths;
+  for (const LotPiece& piece : pieces) {
+    Probe probe = draw_probe(seed, piece.serial, piece.model);
+    if (piece.fault) probe = with_fault(std::move(probe), *piece.fault, seed);
+    truths.emplace(piece.serial, truth_of(probe));
+  }
+  return truths;
+}
+
 }  // namespace probewright::emulated

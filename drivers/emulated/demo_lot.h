@@ -1,11 +1,14 @@
 #pragma once
 #include <cstdint>
+#include <map>
 #include <optional>
+#include <span>
 #include <string>
 #include <string_view>
 #include <vector>
 
 #include "drivers/emulated/probe_fault.h"
+#include "drivers/emulated/truth.h"
 
 namespace probewright::emulated {
 
@@ -21,5 +24,8 @@ struct LotPiece {
 /// `seed`; what is left over at the end has its share of the causes, rounded down. `lot` is 0 to 999, `count` 0 to
 /// 99999, `model` one that the bench knows; else std::invalid_argument.
 std::vector<LotPiece> demo_lot(std::string_view model, int lot, int count, std::uint64_t seed);
+
+/// What these pieces really are on a bench with this seed, by serial: the same as a bench tells after seating them.
+std::map<std::string, Truth> truths_of(std::span<const LotPiece> pieces, std::uint64_t seed);
 
 }  // namespace probewright::emulated

@@ -326,6 +326,7 @@ constexpr std::array rows = std::to_array<ProblemRow>({
      "check its path and that a bench is running there"},
     {"bench_socket_taken", refused_input, "a bench runs with this control socket already",
      "end the other bench or choose another socket"},
+    {"bench_ended", our_bug, "the emulated bench ended: {reason}", "report this as a mistake in the program"},
     {"bench_truth_unwritable", refused_input, "cannot write the truth file: {reason}",
      "check the path and its permissions"},
     // --- db

@@ -15,8 +15,9 @@ void Line::request(LineRequest request) {
 void Line::begin_serving() {
   serving_ = true;
   asio::co_spawn(executor_, serve(), [this](const std::exception_ptr& error) {
+    if (!error) return;
     serving_ = false;
-    if (error) failed_(error);
+    failed_(error);
   });
 }
 
@@ -37,6 +38,7 @@ asio::awaitable<void> Line::serve() {
     asked_.pop_front();
     co_await answer(std::move(request));
   }
+  serving_ = false;  // here, not when asio tells the end: a request in between would wait for ever
 }
 
 /// Does what was asked, and says in one sentence what came of it.

@@ -6,7 +6,10 @@
 #include <set>
 #include <stdexcept>
 
-#include "drivers/emulated/hands.h"
+#include <boost/asio/io_context.hpp>
+
+#include "drivers/emulated/bench.h"
+#include "drivers/wire/virtual_clock.h"
 
 namespace probewright::emulated {
 namespace {
@@ -91,6 +94,21 @@ TEST(DemoLot, SpreadsItsFaultsOverAllPlaces) {
   }
   const double mean = 2000.0 * static_cast<double>(all_causes().size()) / 48.0;
   for (const int count : hits) EXPECT_NEAR(count, mean, 0.12 * mean);  // five standard deviations
+}
+
+TEST(DemoLot, ItsTruthIsThatOfTheProbesOnceTheySit) {
+  boost::asio::io_context io;
+  wire::VirtualClock clock{UtcTime{}};
+  BenchOptions options;
+  options.seed = 5;
+  Bench bench{io.get_executor(), clock, options};
+  const auto lot = demo_lot("AQ-20", 48, 48, 5);
+  for (const LotPiece& piece : lot) {
+    ASSERT_TRUE(piece.fault ? bench.seat(1, piece.serial, piece.model, *piece.fault)
+                            : bench.seat(1, piece.serial, piece.model));
+    ASSERT_TRUE(bench.remove(1));
+  }
+  EXPECT_EQ(truth_json(5, truths_of(lot, 5)), truth_json(5, bench.truths()));
 }
 
 TEST(DemoLot, RefusesWhatIsNoLot) {

@@ -17,6 +17,7 @@
 #include <sstream>
 #include <thread>
 
+#include "drivers/emulated/bench_thread.h"
 #include "drivers/emulated/control_socket.h"
 #include "drivers/emulated/run_bench.h"
 #include "drivers/wire/owned_fd.h"
@@ -163,6 +164,29 @@ TEST(Hosting, PseudoTerminalsControlSocketAndTruthFile) {
   bench.stop();
   EXPECT_FALSE(fs::exists(fs::symlink_status(folder / "nest1-phantom")));
   EXPECT_FALSE(fs::exists(folder / "control"));
+}
+
+// For a program that runs bench and station: the ports are the same pseudo-terminals, the hands are lent.
+TEST(Hosting, ABenchInAThreadOfItsOwnLendsItsHands) {
+  Folder folder;
+  auto bench = BenchThread::start(options_in(folder));
+  ASSERT_TRUE(bench) << bench.error().text();
+  PlainTty phantom(folder / "nest1-phantom");
+  EXPECT_EQ(phantom.ask("PROB?"), "0\n");
+  const auto seat = [&](const char* serial) {
+    return (*bench)->with_hands([serial](Hands& hands) { return hands.seat(1, serial, "AQ-20"); });
+  };
+  EXPECT_TRUE(seat("AQ20-048-00001"));
+  EXPECT_EQ(phantom.ask("PROB?"), "1\n");
+  const auto again = seat("AQ20-048-00002");
+  ASSERT_FALSE(again);
+  EXPECT_EQ(again.error().id, "bench_nest_occupied");
+  EXPECT_FALSE(fs::exists(folder / "control"));
+  bench->reset();
+  EXPECT_FALSE(fs::exists(fs::symlink_status(folder / "nest1-phantom")));
+  RunBenchOptions impossible = options_in(folder);
+  impossible.bench.nests = 17;
+  EXPECT_EQ(BenchThread::start(impossible).error().id, "bench_options");
 }
 
 TEST(Hosting, PulledCableTakesThePortAwayAndPluggingBringsItBack) {

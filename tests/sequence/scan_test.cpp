@@ -131,6 +131,18 @@ TEST_F(Scans, AChosenNestIsTakenOnce) {
   EXPECT_EQ(refusal("nest 3"), "nest_not_there");
 }
 
+// Two scans in one go, the first answered without any wait: the second was never served, for the line still took itself
+// to be serving the first.
+TEST_F(Scans, AScanRightAfterTheLastAnswerIsServed) {
+  boost::asio::post(station.io(), [this] {
+    station.line().request(sequence::Scan{"nest 1"});
+    station.line().request(sequence::Scan{"nest 2"});
+  });
+  wait(100);
+  ASSERT_EQ(all<Answered>().size(), 2u);
+  EXPECT_EQ(all<Answered>()[1].words, "scan the probe for nest 2");
+}
+
 TEST_F(Scans, AProbeInTheWrongNestStopsInWords) {
   open_up();
   EXPECT_EQ(scan("AQ20-048-00001").nest, 1);
