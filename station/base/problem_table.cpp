@@ -510,6 +510,9 @@ constexpr std::array rows = std::to_array<ProblemRow>({
     {"station_name", refused_input, "a station's name has 1 to 40 letters, digits, '-', '_' or '.'",
      "choose such a name"},
     // --- trace
+    {"day_malformed", refused_input, "\"{text}\" is not a day", "write year, month and day, such as 2026-12-01"},
+    {"moment_malformed", refused_input, "\"{text}\" is not a time",
+     "write 2026-12-01 06:00 in the plant's zone, or 2026-12-01T05:00:00Z in UTC"},
     // --- pages
     {"page_no_application", our_bug, "a page was asked for before anything can be drawn",
      "report this as a mistake in the program, with what was asked of it"},
