@@ -4,7 +4,7 @@
 #include <gtest/gtest.h>
 
 #include "db/queries/seal.h"
-#include "made_ledger.h"
+#include "tests/made/ledger.h"
 
 namespace probewright::trace {
 namespace {

@@ -10,7 +10,6 @@
 #include <vector>
 
 #include "db/store.h"
-#include "station/measure/capture_format.h"
 
 /// A ledger that a test writes entry by entry, at times that it chooses.
 namespace probewright::made {
@@ -65,7 +64,7 @@ struct Run {
   std::string likely_cause, likely_cause_words;
   double cycle_s = 0.0;  ///< 0: not told
   std::vector<db::ReadingRow> readings = {centroid(660.0)};
-  std::vector<measure::AnyCapture> captures = {};
+  std::vector<std::pair<std::string, Bytes>> captures = {};  ///< kind and decoded bytes
 };
 
 class Ledger {
@@ -98,8 +97,7 @@ class Ledger {
     change([&](db::Change& change) {
       id = change.open_run(opened(change, wanted));
       change.add_readings(id, wanted.readings);
-      for (const measure::AnyCapture& capture : wanted.captures)
-        change.add_capture(id, measure::capture_kind(capture), "", measure::encode(capture));
+      for (const auto& [kind, bytes] : wanted.captures) change.add_capture(id, kind, "", bytes);
       if (!wanted.verdict.empty()) change.close_run(closed(id, wanted));
     });
     return id;
