@@ -22,7 +22,7 @@ LAYERS = {
     "station/sequence/production": ROUTINE | {"drivers/emulated"},
     "station/tuning": FROM_THE_LEDGER,
     "station/trace": FROM_THE_LEDGER,
-    "station/pages": BASE,
+    "station/pages": READERS,
     "station/text": ROUTINE | READERS,
     "station/windows": ROUTINE | READERS | {"station/pages"},
 }
