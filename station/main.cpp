@@ -7,6 +7,7 @@
 #include "commit_stamp.h"
 #include "station/main_hands.h"
 #include "station/main_options.h"
+#include "station/main_pages.h"
 #include "station/text/console.h"
 
 // Wires things together and nothing else: what was asked for, where it prints, what it ends with.
@@ -37,6 +38,16 @@ struct Dispatch {
   }
   int operator()(const text::CheckupOptions& options) const { return text::checkup(options, console); }
   int operator()(const text::TraceOptions& options) const { return text::trace(options, console); }
+  int operator()(const text::ReportRunOptions& options) const {
+    return text::report_run(options, page_maker().get(), console);
+  }
+  int operator()(const text::ReportSerialOptions& options) const {
+    return text::report_serial(options, page_maker().get(), console);
+  }
+  int operator()(const text::ReportShiftOptions& options) const {
+    return text::report_shift(options, page_maker().get(), console);
+  }
+  int operator()(const text::LabelOptions& options) const { return text::label(options, page_maker().get(), console); }
   int operator()(const text::LedgerVerifyOptions& options) const { return text::ledger_verify(options, console); }
   int operator()(const text::LedgerSealOptions& options) const { return text::ledger_seal(options, console); }
   int operator()(const text::LimitsCheckOptions& options) const { return text::limits_check(options, console); }

@@ -101,6 +101,9 @@ class Reader {
   void add_test();
   void add_checkup();
   void add_trace();
+  void add_report();
+  void add_label();
+  void add_page(CLI::App& app, text::ReportOptions& options);
   void add_ledger();
   void add_limits();
   void add_measure();
@@ -119,6 +122,10 @@ class Reader {
   text::TestOptions test_;
   text::CheckupOptions checkup_;
   text::TraceOptions trace_;
+  text::ReportRunOptions report_run_;
+  text::ReportSerialOptions report_serial_;
+  text::ReportShiftOptions report_shift_;
+  text::LabelOptions label_;
   text::LedgerVerifyOptions verify_;
   text::LedgerSealOptions seal_;
   text::LimitsCheckOptions check_;
@@ -146,6 +153,8 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   add_test();
   add_checkup();
   add_trace();
+  add_report();
+  add_label();
   add_ledger();
   add_limits();
   add_measure();
@@ -232,11 +241,82 @@ void Reader::add_checkup() {
 }
 
 void Reader::add_trace() {
-  CLI::App& app = command(app_, "trace", "print all that is known of one serial", "probewright trace AQ20-048-00001");
-  app.add_option("SERIAL", trace_.serial, "serial number of the probe")->required()->type_name("");
+  CLI::App& app =
+      command(app_, "trace", "print all that is known of one serial, or what belongs to a lot, a person, a day",
+              "probewright trace AQ20-048-00001\n  probewright trace --lot AQ20-W48-07");
+  app.add_option("SERIAL", trace_.serial, "serial number of the probe")->type_name("");
+  app.add_option("--lot", trace_.lot, "runs and entries of this lot")->type_name("LOT");
+  app.add_option("--person", trace_.person, "what this person tested, signed and did")->type_name("NAME");
+  add_whole(app, "--entry", trace_.entry, "one entry, and the run that it is of");
+  app.add_option("--day", trace_.day, "runs and entries of a day in the plant's zone")->type_name("DAY");
   app.add_option("--ledger", trace_.ledger, "ledger instead of the station's")->type_name("FILE");
   add_json(app);
-  answers(app, trace_);
+  app.final_callback([this, &app] {
+    const std::vector<std::pair<const char*, bool>> asked{{"SERIAL", !trace_.serial.empty()},
+                                                          {"--lot", !trace_.lot.empty()},
+                                                          {"--person", !trace_.person.empty()},
+                                                          {"--entry", trace_.entry.has_value()},
+                                                          {"--day", !trace_.day.empty()}};
+    std::vector<std::string> given;
+    for (const auto& [name, is_given] : asked)
+      if (is_given) given.emplace_back(name);
+    if (given.empty())
+      throw Refused(Problem{"usage_missing", full_name(app), {{"what", "SERIAL"}, {"command", full_name(app)}}});
+    if (given.size() > 1)
+      throw Refused(Problem{"usage_not_together", full_name(app), {{"first", given[0]}, {"second", given[1]}}});
+    trace_.choice = choice_;
+    line_.request = trace_;
+  });
+}
+
+/// Options that every report has.
+void Reader::add_page(CLI::App& app, text::ReportOptions& options) {
+  app.add_option("--out", options.out, "PDF to write; with --json only then")->type_name("FILE");
+  app.add_option("--ledger", options.ledger, "ledger instead of the station's")->type_name("FILE");
+  add_json(app);
+}
+
+void Reader::add_report() {
+  CLI::App& report = group("report", "draw a run, a serial's life or a shift as PDF");
+  CLI::App& run = command(report, "run", "one run: readings, limits, plots of its captures, devices, documents",
+                          "probewright report run 123 --out run.pdf");
+  add_whole(run, "ENTRY", report_run_.entry, "number of the run, or of any entry of it")->required()->type_name("");
+  add_page(run, report_run_);
+  answers(run, report_run_);
+  CLI::App& serial = command(report, "serial", "the life of one serial: its runs, verdicts, labels",
+                             "probewright report serial AQ20-048-00001");
+  serial.add_option("SERIAL", report_serial_.serial, "serial number of the probe")->required()->type_name("");
+  add_page(serial, report_serial_);
+  answers(serial, report_serial_);
+  CLI::App& shift = command(report, "shift", "what a shift or a lot did: yield, failing checks, nests, charts",
+                            "probewright report shift --from \"2026-12-01 06:00\" --to \"2026-12-01 14:00\"");
+  shift
+      .add_option("--from", report_shift_.from, "begin of the shift, such as \"2026-12-01 06:00\" in the plant's zone")
+      ->type_name("TIME");
+  shift.add_option("--to", report_shift_.to, "its end; the newest entry unless told")->type_name("TIME");
+  shift.add_option("--day", report_shift_.day, "a whole day of the plant's zone; that of the newest entry unless told")
+      ->type_name("DAY");
+  shift.add_option("--lot", report_shift_.lot, "runs of this lot only; of all days unless told")->type_name("LOT");
+  add_page(shift, report_shift_);
+  answers(shift, report_shift_);
+}
+
+void Reader::add_label() {
+  CLI::App& app = command(app_, "label", "make the label of a serial's last production run as PDF and PNG",
+                          "probewright label AQ20-048-00001 --out labels");
+  app.add_option("SERIAL", label_.serial, "serial number of the probe")->required()->type_name("");
+  app.add_option("--out", label_.folder, "folder for the files; the current one unless told")->type_name("DIR");
+  add_word(
+      app, "--kind", {"pass", "fail"}, [this](const std::string& word) { label_.kind = word; },
+      "refuse where the verdict is another");
+  app.add_option("--reason", label_.reason, "why it is printed again; needed for a reprint")->type_name("TEXT");
+  app.add_option("--operator", label_.who, "who asks for it; kept with the entry")->type_name("NAME");
+  add_number(app, "--width-mm", label_.form.width_mm, "width of the label, 40 unless told");
+  add_number(app, "--height-mm", label_.form.height_mm, "height of the label, 20 unless told");
+  add_whole(app, "--dpi", label_.form.dots_per_inch, "dots per inch of the picture, 300 unless told");
+  app.add_option("--ledger", label_.ledger, "ledger instead of the station's")->type_name("FILE");
+  add_json(app);
+  answers(app, label_);
 }
 
 void Reader::add_ledger() {

@@ -83,6 +83,7 @@ struct Model {
   std::string reason;          ///< why this revision was made
   std::string description;     ///< for people
   std::string serial_pattern;  ///< ECMAScript regular expression for the whole serial number
+  std::string gtin;            ///< GTIN-8, 12, 13 or 14 of what is sold, for its label; empty: none
   Wiring wiring = Wiring::separate;
 
   PerBand<double> drive_mA;          ///< current in the LED's slot
@@ -151,6 +152,7 @@ struct Model {
 ///   model_set_point_missing a ratio check without its set point
 ///   model_budget_missing    a check of the routine that carries an uncertainty has no budget
 ///   model_bad_pattern       the serial-number pattern is not a regular expression
+///   model_bad_gtin          not 8, 12, 13 or 14 digits, or a wrong check digit
 ///   model_capture_short, model_id_kind, model_bins_missing, model_budget_empty, model_routine_empty,
 ///   model_unknown_word
 ///   model_section_missing   a check of the routine needs a section that the file lacks

@@ -17,6 +17,26 @@ namespace {
 using fields::Range;
 constexpr std::string_view out_of_range = "model_out_of_range";
 
+/// Digits with weights 3, 1, 3, 1 ... from the one before the last; the last makes the sum a multiple of ten
+/// (GS1 General Specifications, "Check digit calculations").
+bool is_gtin(std::string_view text) {
+  const std::size_t n = text.size();
+  if (n != 8 && (n < 12 || n > 14)) return false;
+  int sum = 0;
+  for (std::size_t i = 0; i < n; ++i) {
+    if (text[i] < '0' || text[i] > '9') return false;
+    sum += (text[i] - '0') * ((n - i) % 2 == 0 ? 3 : 1);
+  }
+  return sum % 10 == 0;
+}
+
+void read_gtin(yaml::Map& map, Model& model, yaml::Faults& faults) {
+  const auto gtin = fields::maybe_text(map, "gtin", faults);
+  if (!gtin) return;
+  model.gtin = *gtin;
+  if (!is_gtin(model.gtin)) faults.add(fields::place_of(map, "gtin"), "model_bad_gtin", {{"gtin", model.gtin}});
+}
+
 void read_head(yaml::Map& map, Model& model, yaml::Faults& faults) {
   model.name = fields::text(map, "model", faults);
   model.revision = static_cast<int>(fields::integer(map, "revision", {1, 1e6}, out_of_range, faults));
@@ -29,6 +49,7 @@ void read_head(yaml::Map& map, Model& model, yaml::Faults& faults) {
   } catch (const std::regex_error&) {
     faults.add(fields::place_of(map, "serial pattern"), "model_bad_pattern", {{"pattern", model.serial_pattern}});
   }
+  read_gtin(map, model, faults);
 }
 
 Wiring read_wiring(yaml::Map& map, yaml::Faults& faults) {

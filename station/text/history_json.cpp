@@ -3,8 +3,6 @@
 namespace probewright::text {
 namespace {
 
-Json json_of(const db::RunRecord& run);
-
 Json json_of(const db::NamedDocument& document) {
   Json json = Json::object();
   json.set("role", document.role).set("kind", document.kind).set("name", document.name);
@@ -41,13 +39,6 @@ Json json_of(const db::CaptureRecord& capture) {
   return json;
 }
 
-template <class T>
-Json list_of(const std::vector<T>& items) {
-  Json list = Json::array();
-  for (const T& item : items) list.add(json_of(item));
-  return list;
-}
-
 Json words_of(const std::vector<std::string>& items) {
   Json list = Json::array();
   for (const std::string& item : items) list.add(item);
@@ -68,6 +59,16 @@ void set_closing(Json& json, const std::optional<db::ClosingRecord>& closing) {
   json.set("failing", words_of(closing->failing)).set("provisional", closing->provisional);
 }
 
+}  // namespace
+
+/// Outside the unnamed namespace: from there it would not see the functions that the header names.
+template <class T>
+static Json list_of(const std::vector<T>& items) {
+  Json list = Json::array();
+  for (const T& item : items) list.add(json_of(item));
+  return list;
+}
+
 Json json_of(const db::RunRecord& run) {
   const db::RunOpened& opened = run.opened;
   Json json = Json::object();
@@ -85,13 +86,17 @@ Json json_of(const db::RunRecord& run) {
   return json;
 }
 
-}  // namespace
+Json json_of(const db::EntryRecord& entry) {
+  Json json = Json::object();
+  json.set("entry", entry.number).set("time", to_text(entry.time)).set("kind", entry.kind).set("who", entry.who);
+  return std::move(json.set("data", json_of(entry.data)));
+}
 
 Json json_of(const trace::History& history) {
   Json json = Json::object();
   json.set("format", 1).set("serial", history.serial);
   json.set("seal", to_hex(history.seal.hash)).set("seal_entry", history.seal.entry);
-  json.set("runs", list_of(history.runs));
+  json.set("runs", list_of(history.runs)).set("entries", list_of(history.entries));
   return json;
 }
 

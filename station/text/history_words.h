@@ -10,6 +10,15 @@ namespace probewright::text {
 std::string words_of(const trace::History& history);
 /// The same as JSON (FORMATS.md, "trace").
 Json json_of(const trace::History& history);
+/// One run for people, with its readings.
+std::string words_of(const db::RunRecord& run);
+/// Entries as a table for people.
+std::string words_of(const std::vector<db::EntryRecord>& entries);
+/// "Read from the ledger up to entry 12, seal ..."
+std::string words_of(const db::Seal& seal);
+/// The same as JSON (FORMATS.md): a run as in "trace", an entry as in "trace --entry".
+Json json_of(const db::RunRecord& run);
+Json json_of(const db::EntryRecord& entry);
 /// Text and integers of a ledger body as JSON.
 Json json_of(const Body& body);
 

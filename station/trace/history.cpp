@@ -1,15 +1,45 @@
 #include "station/trace/history.h"
 
+#include <map>
+#include <set>
+
+#include "db/queries/entries_naming.h"
+#include "db/queries/lot_entries.h"
 #include "db/queries/runs_of_serial.h"
 #include "db/queries/seal.h"
+#include "db/queries/sign_in.h"
 #include "db/transaction.h"
 #include "limits/limits.h"
 
 namespace probewright::trace {
+namespace {
+
+std::vector<db::EntryRecord> entries_beside(db::Reader& reader, const History& history) {
+  std::map<std::int64_t, db::EntryRecord> found;  // by number: each once, in order
+  const auto take = [&](std::vector<db::EntryRecord> entries) {
+    for (db::EntryRecord& entry : entries) found.emplace(entry.number, std::move(entry));
+  };
+  take(db::entries_naming_serial(reader, history.serial));
+  std::set<std::string> lots;
+  for (const db::RunRecord& run : history.runs) {
+    lots.insert(run.opened.lot);
+    if (auto signed_in = db::sign_in_before(reader, run.opened.operator_name, run.run.value))
+      found.emplace(signed_in->number, *std::move(signed_in));
+  }
+  for (const std::string& lot : lots)
+    if (!lot.empty()) take(db::lot_entries(reader, lot));
+  std::vector<db::EntryRecord> entries;
+  for (auto& [number, entry] : found) entries.push_back(std::move(entry));
+  return entries;
+}
+
+}  // namespace
 
 History history_of(db::Reader& reader, std::string_view serial) {
   const db::Snapshot one_state{reader.connection()};
-  return {std::string{serial}, db::runs_of_serial(reader, serial), db::newest_seal(reader)};
+  History history{std::string{serial}, db::runs_of_serial(reader, serial), db::newest_seal(reader)};
+  history.entries = entries_beside(reader, history);
+  return history;
 }
 
 Tally tally_of(const History& history) {

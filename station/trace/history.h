@@ -3,6 +3,7 @@
 #include <string_view>
 #include <vector>
 
+#include "db/queries/entries.h"
 #include "db/queries/run_record.h"
 #include "db/reader.h"
 #include "db/rows.h"
@@ -21,6 +22,9 @@ struct History {
   std::string serial;
   std::vector<db::RunRecord> runs;
   db::Seal seal;
+  /// What else belongs to these runs, oldest first: labels and whatever else names the serial, entries of its lots,
+  /// the sign-ins under which it was tested.
+  std::vector<db::EntryRecord> entries = {};
 };
 
 /// All that the ledger holds of one serial, in one state of the ledger. A serial that it does not know has no runs.

@@ -112,6 +112,11 @@ TEST(Model, EachFaultHasItsName) {
   const auto with = [&](const char* what, const char* instead) { return model_faults(replaced(good, what, instead)); };
   EXPECT_EQ(model_faults(good), Ids{});
   EXPECT_EQ(with("'AQ20-[0-9]{3}-[0-9]{5}'", "'AQ20-[0-9'"), Ids{"model_bad_pattern"});
+  EXPECT_EQ(with("'09520000000202'", "'09520000000203'"), Ids{"model_bad_gtin"}) << "another check digit";
+  EXPECT_EQ(with("'09520000000202'", "'0952000000020'"), Ids{"model_bad_gtin"}) << "the same digits, cut short";
+  EXPECT_EQ(with("'09520000000202'", "AQ-20"), Ids{"model_bad_gtin"});
+  EXPECT_EQ(with("'09520000000202'", "9520000000202"), Ids{}) << "13 digits without the leading zero are the same GTIN";
+  EXPECT_EQ(with("gtin: '09520000000202'", "# none"), Ids{});
   EXPECT_EQ(with("capture: 0.6 s", "capture: 0.3 s"), Ids{"model_capture_short"});
   EXPECT_EQ(with("kind: resistor", "kind: chip"), Ids{"model_id_kind"});
   EXPECT_EQ(with("    - {ratio: 1.0, red: 1.0 %, infrared: 1.0 %}\n", ""), Ids{"model_set_point_missing"});
