@@ -183,6 +183,12 @@ const char* order_of(const ProjectedTable& table) {
 
 std::span<const ProjectedTable> projected_tables() { return tables; }
 
+std::span<const ProjectedTable> projected_tables_at(std::int64_t step) {
+  const auto newer = [step](const ProjectedTable& table) { return table.since > step; };
+  const auto end = std::find_if(tables.begin(), tables.end(), newer);  // later steps stand at the end
+  return {tables.begin(), end};
+}
+
 bool is_projected(std::string_view kind) {
   return std::any_of(tables.begin(), tables.end(), [kind](const ProjectedTable& table) { return kind == table.kind; });
 }

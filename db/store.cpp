@@ -1,6 +1,7 @@
 #include "db/store.h"
 
 #include <algorithm>
+#include <filesystem>
 
 #include "db/chain.h"
 #include "db/hex.h"
@@ -16,6 +17,11 @@ namespace {
 
 constexpr std::int64_t recent_entries = 100;
 
+bool there_is(const std::string& path) {
+  std::error_code unknown;
+  return std::filesystem::exists(path, unknown) || unknown;
+}
+
 std::vector<Result<void>> all_failed(std::size_t count, const Problem& problem) {
   std::vector<Result<void>> outcomes;
   for (std::size_t i = 0; i < count; ++i) outcomes.emplace_back(problem);
@@ -25,6 +31,9 @@ std::vector<Result<void>> all_failed(std::size_t count, const Problem& problem) 
 }  // namespace
 
 Result<std::unique_ptr<Store>> Store::open(const StoreOptions& options, const Clock& clock) {
+  // Nothing is left beside a ledger that is not there: no lease, no empty file.
+  if (!options.create && options.vfs.empty() && !there_is(options.path))
+    return Problem{"ledger_cannot_open", options.path, {{"reason", "there is no such file"}, {"code", "14"}}};
   std::optional<Lease> lease;
   if (options.lease) {
     auto taken = Lease::take(options.path);

@@ -24,14 +24,14 @@ struct SchemaObject {
 
 /// Objects of a database, sorted by type and name. Automatic indexes have an empty text.
 std::vector<SchemaObject> schema_objects(Connection& connection);
-/// What schema_objects must give after `step` steps.
-const std::vector<SchemaObject>& expected_schema();
+/// What schema_objects must give after `step` steps, 1 to newest_step.
+const std::vector<SchemaObject>& expected_schema(std::int64_t step = newest_step);
 /// SHA-256 over type, name, table and text of each object in that order, each followed by a zero byte.
 Digest schema_digest(const std::vector<SchemaObject>& objects);
-/// The first difference between a file and the expected text, in words; empty where they agree.
+/// The first difference between a file and the text expected after `step` steps, in words; empty where they agree.
 struct SchemaDifference {
   std::string name, what;
 };
-SchemaDifference schema_difference(Connection& connection);
+SchemaDifference schema_difference(Connection& connection, std::int64_t step = newest_step);
 
 }  // namespace probewright::db

@@ -369,6 +369,8 @@ constexpr std::array rows = std::to_array<ProblemRow>({
      "end the other line, or give this one a station of its own"},
     {"ledger_network", not_ready, "the ledger lies on {type}, where locks and syncs cannot be trusted",
      "keep the ledger on a disk of this machine"},
+    {"verify_stopped", not_ready, "the check of the ledger was stopped before its end", "start it again"},
+    {"verify_from_beyond", refused_input, "the ledger ends at entry {newest}", "begin at an entry that it has"},
     {"ledger_other_station", not_ready, "the ledger belongs to station {found}, not to {wanted}",
      "check the ledger's path in the station file"},
     {"ledger_has_wal", refused_input, "a write-ahead log lies beside the archive, so it is not closed",
