@@ -83,6 +83,14 @@ constexpr std::array pruned_columns = std::to_array<ProjectedColumn>({
     {"entry", entry_number, ""},
 });
 
+constexpr std::array carried_try_columns = std::to_array<ProjectedColumn>({
+    {"serial", text, "serial"},
+    {"purpose", text, "purpose"},
+    {"tries", integer, "tries"},
+    {"entry", entry_number, ""},
+    {"place", place, ""},
+});
+
 constexpr std::array tables = std::to_array<ProjectedTable>({
     {"document", "document", "", "entry", document_columns},
     {"signature", "document_signed", "", "entry", signature_columns},
@@ -92,6 +100,7 @@ constexpr std::array tables = std::to_array<ProjectedTable>({
     {"run_device", "run_opened", "devices", "run", run_device_columns},
     {"run_closed", "run_closed", "", "entry", run_closed_columns},
     {"pruned", "prune", "captures", "entry", pruned_columns},
+    {"carried_try", "tries_carried", "tries", "entry", carried_try_columns, 2},
 });
 
 std::optional<Cell> digest_cell(const Body& member) {

@@ -12,6 +12,9 @@ namespace {
 constexpr std::string_view step_1 =
 #include "db/schema/step_1.inc"
     ;
+constexpr std::string_view step_2 =
+#include "db/schema/step_2.inc"
+    ;
 
 /// The layout after each step, the first one at place 0.
 std::vector<std::vector<SchemaObject>> schemas_of_steps() {
@@ -28,6 +31,7 @@ std::vector<std::vector<SchemaObject>> schemas_of_steps() {
 
 std::string_view schema_step(std::int64_t step) {
   if (step == 1) return step_1;
+  if (step == 2) return step_2;
   throw std::logic_error("no such step of the layout");
 }
 

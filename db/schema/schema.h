@@ -11,7 +11,7 @@ namespace probewright::db {
 /// "PWLG": says in the file's header that it is a ledger of this program.
 inline constexpr std::int64_t application_id = 0x50574c47;
 /// The newest step of the layout that this program knows; `user_version` of the file.
-inline constexpr std::int64_t newest_step = 1;
+inline constexpr std::int64_t newest_step = 2;
 
 /// SQL of one step, 1 to newest_step.
 std::string_view schema_step(std::int64_t step);
