@@ -123,15 +123,22 @@ const std::string& select_captures() {
   return sql;
 }
 
+void RowsDigest::clear() {
+  rows_ = 0;
+  bytes_.clear();
+  row_tags_.clear();
+  for (std::string& bytes : column_bytes_) bytes.clear();
+}
+
 int RowsDigest::add(const Row& row) {
-  std::string bytes;
+  const std::size_t row_begin = bytes_.size();
   for (std::size_t i = 0; i < columns_.size(); ++i) {
-    const std::size_t before = bytes.size();
-    if (!put(bytes, row, static_cast<int>(i), columns_[i].field)) return static_cast<int>(i);
-    column_bytes_[i].append(bytes, before);
+    const std::size_t before = bytes_.size();
+    if (!put(bytes_, row, static_cast<int>(i), columns_[i].field)) return static_cast<int>(i);
+    if (with_tags_) column_bytes_[i].append(bytes_, before);
   }
-  row_tags_.push_back(tag(bytes));
-  bytes_ += bytes;
+  if (with_tags_) row_tags_.push_back(tag(std::string_view{bytes_}.substr(row_begin)));
+  ++rows_;
   return -1;
 }
 
@@ -142,14 +149,17 @@ std::vector<Tag> RowsDigest::column_tags() const {
 }
 
 Digest run_proof(RunId run, const RowsDigest& readings, const RowsDigest& captures) {
-  std::string bytes;
-  put_integer(bytes, recipe);
-  put_integer(bytes, run.value);
-  put_integer(bytes, static_cast<std::int64_t>(readings.rows()));
-  bytes += readings.bytes();
-  put_integer(bytes, static_cast<std::int64_t>(captures.rows()));
-  bytes += captures.bytes();
-  return sha256(bytes);
+  Sha256 hash;
+  return run_proof(run, readings, captures, hash);
+}
+
+Digest run_proof(RunId run, const RowsDigest& readings, const RowsDigest& captures, Sha256& hash) {
+  std::string head, middle;
+  put_integer(head, recipe);
+  put_integer(head, run.value);
+  put_integer(head, static_cast<std::int64_t>(readings.rows()));
+  put_integer(middle, static_cast<std::int64_t>(captures.rows()));
+  return hash.add(head).add(readings.bytes()).add(middle).add(captures.bytes()).finish();
 }
 
 std::string tags_text(std::span<const Tag> tags) {

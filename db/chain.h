@@ -7,6 +7,7 @@
 #include <vector>
 
 #include "db/rows.h"
+#include "db/sha256.h"
 #include "db/statement.h"
 
 // How entries are chained and how readings and captures are digested. CHAIN.md says the same in words; a script written
@@ -43,20 +44,26 @@ const std::string& select_captures();
 /// First four bytes of a SHA-256, to name a place after a mismatch.
 using Tag = std::array<std::byte, 4>;
 
-/// Bytes of rows, gathered for the proof and for the tags.
+/// Bytes of rows, gathered for the proof and, where wanted, for the tags (which cost more than the proof).
 class RowsDigest {
  public:
-  explicit RowsDigest(std::span<const DigestedColumn> columns) : columns_(columns), column_bytes_(columns.size()) {}
+  enum class Tags { none, wanted };
+  explicit RowsDigest(std::span<const DigestedColumn> columns, Tags tags = Tags::wanted)
+      : columns_(columns), with_tags_(tags == Tags::wanted), column_bytes_(with_tags_ ? columns.size() : 0) {}
+  /// Forgets all rows and keeps the memory.
+  void clear();
   /// Takes the row that stands in `row`, whose columns are those of the select. Returns the place of a column that
   /// holds a type or value which cannot be there, or -1.
   int add(const Row& row);
-  std::size_t rows() const { return row_tags_.size(); }
+  std::size_t rows() const { return rows_; }
   const std::string& bytes() const { return bytes_; }
   std::vector<Tag> row_tags() const { return row_tags_; }
   std::vector<Tag> column_tags() const;
 
  private:
   std::span<const DigestedColumn> columns_;
+  bool with_tags_;
+  std::size_t rows_ = 0;
   std::string bytes_;
   std::vector<std::string> column_bytes_;
   std::vector<Tag> row_tags_;
@@ -64,6 +71,8 @@ class RowsDigest {
 
 /// SHA-256 over recipe, run, number of readings, readings, number of captures, captures.
 Digest run_proof(RunId run, const RowsDigest& readings, const RowsDigest& captures);
+/// The same with a hash that is used again and again.
+Digest run_proof(RunId run, const RowsDigest& readings, const RowsDigest& captures, Sha256& hash);
 
 /// Tags as hexadecimal, one after another.
 std::string tags_text(std::span<const Tag> tags);

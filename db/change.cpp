@@ -87,7 +87,9 @@ std::int64_t Change::add_entry(std::string_view kind, std::string_view who, cons
 Reader Change::reader() { return Reader(store_.connection_); }
 
 int Change::tries(std::string_view serial, std::string_view purpose) {
-  Row row = store_.connection_.begin("SELECT count(*) FROM run_opened WHERE serial = ? AND purpose = ?");
+  Row row = store_.connection_.begin(
+      "SELECT (SELECT count(*) FROM run_opened WHERE serial = ?1 AND purpose = ?2)"
+      " + coalesce((SELECT tries FROM carried_try WHERE serial = ?1 AND purpose = ?2), 0)");
   row.values(serial, purpose).step();
   return static_cast<int>(row.integer(0));
 }

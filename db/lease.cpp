@@ -11,8 +11,11 @@
 #include <array>
 #include <cerrno>
 #include <cstring>
+#include <filesystem>
 #include <fstream>
 #include <sstream>
+
+#include "station/base/numbers.h"
 
 namespace probewright::db {
 namespace {
@@ -101,6 +104,42 @@ Result<Lease> Lease::take(const std::string& ledger_path) {
   if (::flock(file, LOCK_EX | LOCK_NB) == 0) return lease;
   if (errno == EWOULDBLOCK) return Problem{"ledger_in_use", ledger_path, {{"lease", path}}};
   return cannot_open(path);
+}
+
+std::optional<Lease::Identity> Lease::noted() const {
+  std::string text(5000, '\0');
+  const ssize_t size = ::pread(file_, text.data(), text.size(), 0);
+  if (size <= 0) return std::nullopt;
+  std::istringstream lines(text.substr(0, static_cast<std::size_t>(size)));
+  Identity identity;
+  std::string numbers;
+  if (!std::getline(lines, identity.path) || !std::getline(lines, numbers)) return std::nullopt;
+  const auto blank = numbers.find(' ');
+  const auto device = parse_integer(std::string_view{numbers}.substr(0, blank));
+  const auto inode = blank == std::string::npos ? std::nullopt : parse_integer(std::string_view{numbers}.substr(blank + 1));
+  if (!device || !inode) return std::nullopt;
+  identity.device = *device;
+  identity.inode = *inode;
+  return identity;
+}
+
+Result<void> Lease::note(const Identity& identity) const {
+  const std::string text =
+      identity.path + '\n' + std::to_string(identity.device) + ' ' + std::to_string(identity.inode) + '\n';
+  const bool written = ::pwrite(file_, text.data(), text.size(), 0) == static_cast<ssize_t>(text.size()) &&
+                       ::ftruncate(file_, static_cast<off_t>(text.size())) == 0;
+  if (written) return {};
+  return Problem{
+      "ledger_io", "lease", {{"reason", std::strerror(errno)}, {"code", "errno " + std::to_string(errno)}}};
+}
+
+Result<Lease::Identity> Lease::identity_of(const std::string& ledger_path) {
+  struct stat file {};
+  if (::stat(ledger_path.c_str(), &file) != 0) return cannot_open(ledger_path);
+  std::error_code unknown;
+  const auto full = std::filesystem::weakly_canonical(ledger_path, unknown);
+  return Identity{unknown ? ledger_path : full.string(), static_cast<std::int64_t>(file.st_dev),
+                  static_cast<std::int64_t>(file.st_ino)};
 }
 
 Lease::Lease(Lease&& other) noexcept : file_(std::exchange(other.file_, -1)) {}

@@ -1,4 +1,6 @@
 #pragma once
+#include <cstdint>
+#include <optional>
 #include <string>
 #include <string_view>
 #include <utility>
@@ -11,11 +13,24 @@ namespace probewright::db {
 /// process, however that ends. Other commands may still append: this keeps out a second line only.
 class Lease {
  public:
+  /// Which file a ledger was when it was last written under its lease, kept in the lease's own file.
+  struct Identity {
+    std::string path;  ///< full path
+    std::int64_t device = 0, inode = 0;
+    bool operator==(const Identity&) const = default;
+  };
   /// Errors: ledger_in_use (another line has it), ledger_network, ledger_cannot_open.
   static Result<Lease> take(const std::string& ledger_path);
   Lease(Lease&& other) noexcept;
   Lease& operator=(Lease&& other) noexcept;
   ~Lease();
+
+  /// What the last holder noted; nothing where nobody did.
+  std::optional<Identity> noted() const;
+  /// Notes which file the ledger is now. Errors: ledger_io.
+  Result<void> note(const Identity& identity) const;
+  /// The file at this path as it is now. Errors: ledger_cannot_open.
+  static Result<Identity> identity_of(const std::string& ledger_path);
 
  private:
   explicit Lease(int file) : file_(file) {}

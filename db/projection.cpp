@@ -83,6 +83,14 @@ constexpr std::array pruned_columns = std::to_array<ProjectedColumn>({
     {"entry", entry_number, ""},
 });
 
+constexpr std::array carried_try_columns = std::to_array<ProjectedColumn>({
+    {"serial", text, "serial"},
+    {"purpose", text, "purpose"},
+    {"tries", integer, "tries"},
+    {"entry", entry_number, ""},
+    {"place", place, ""},
+});
+
 constexpr std::array tables = std::to_array<ProjectedTable>({
     {"document", "document", "", "entry", document_columns},
     {"signature", "document_signed", "", "entry", signature_columns},
@@ -92,6 +100,7 @@ constexpr std::array tables = std::to_array<ProjectedTable>({
     {"run_device", "run_opened", "devices", "run", run_device_columns},
     {"run_closed", "run_closed", "", "entry", run_closed_columns},
     {"pruned", "prune", "captures", "entry", pruned_columns},
+    {"carried_try", "tries_carried", "tries", "entry", carried_try_columns, 2},
 });
 
 std::optional<Cell> digest_cell(const Body& member) {
@@ -182,6 +191,12 @@ const char* order_of(const ProjectedTable& table) {
 }  // namespace
 
 std::span<const ProjectedTable> projected_tables() { return tables; }
+
+std::span<const ProjectedTable> projected_tables_at(std::int64_t step) {
+  const auto newer = [step](const ProjectedTable& table) { return table.since > step; };
+  const auto end = std::find_if(tables.begin(), tables.end(), newer);  // later steps stand at the end
+  return {tables.begin(), end};
+}
 
 bool is_projected(std::string_view kind) {
   return std::any_of(tables.begin(), tables.end(), [kind](const ProjectedTable& table) { return kind == table.kind; });

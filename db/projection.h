@@ -40,10 +40,13 @@ struct ProjectedTable {
   const char* list;       ///< member of data with one row each, or "" for one row an entry
   const char* entry_key;  ///< the column that holds the entry's number
   std::span<const ProjectedColumn> columns;
+  int since = 1;  ///< the step of the layout that made the table
 };
 
 /// All of them, in the order in which rows must be put in.
 std::span<const ProjectedTable> projected_tables();
+/// Those that a ledger has after `step` steps of the layout.
+std::span<const ProjectedTable> projected_tables_at(std::int64_t step);
 /// True where entries of this kind have rows in a projected table, so that only their own function may add them.
 bool is_projected(std::string_view kind);
 

@@ -1,6 +1,10 @@
 #include "db/store.h"
 
+#include <sqlite3.h>
+
 #include <algorithm>
+#include <cstdio>
+#include <filesystem>
 
 #include "db/chain.h"
 #include "db/hex.h"
@@ -10,11 +14,28 @@
 #include "db/schema/schema.h"
 #include "db/transaction.h"
 #include "db/verify.h"
+#include "db/volumes.h"
 
 namespace probewright::db {
 namespace {
 
 constexpr std::int64_t recent_entries = 100;
+
+bool there_is(const std::string& path) {
+  std::error_code unknown;
+  return std::filesystem::exists(path, unknown) || unknown;
+}
+
+std::chrono::microseconds utc_minus_steady(const Clock& clock) {
+  const auto steady = std::chrono::duration_cast<std::chrono::microseconds>(clock.steady_now().since_start);
+  return std::chrono::microseconds{clock.utc_now().microseconds} - steady;
+}
+
+/// Where closing a volume was cut short between its last two steps, the next volume lies ready beside.
+void finish_exchange(const std::string& path) {
+  if (there_is(next_volume_path(path)) && std::rename(next_volume_path(path).c_str(), path.c_str()) == 0)
+    sync_folder(folder_of(path)).value();
+}
 
 std::vector<Result<void>> all_failed(std::size_t count, const Problem& problem) {
   std::vector<Result<void>> outcomes;
@@ -25,6 +46,9 @@ std::vector<Result<void>> all_failed(std::size_t count, const Problem& problem) 
 }  // namespace
 
 Result<std::unique_ptr<Store>> Store::open(const StoreOptions& options, const Clock& clock) {
+  // Nothing is left beside a ledger that is not there: no lease, no empty file.
+  if (!options.create && options.vfs.empty() && !there_is(options.path) && !there_is(next_volume_path(options.path)))
+    return Problem{"ledger_cannot_open", options.path, {{"reason", "there is no such file"}, {"code", "14"}}};
   std::optional<Lease> lease;
   if (options.lease) {
     auto taken = Lease::take(options.path);
@@ -34,8 +58,11 @@ Result<std::unique_ptr<Store>> Store::open(const StoreOptions& options, const Cl
     if (const std::string type = network_file_system_of(folder_of(options.path)); !type.empty())
       return Problem{"ledger_network", options.path, {{"type", type}}};
   }
+  if (options.vfs.empty() && !there_is(options.path)) finish_exchange(options.path);
   try {
-    return std::unique_ptr<Store>(new Store(options, clock, std::move(lease)));
+    auto store = std::unique_ptr<Store>(new Store(options, clock, std::move(lease)));
+    store->notice_move(options.restored);
+    return store;
   } catch (const ProblemError& error) {
     return error.problem();
   }
@@ -55,10 +82,13 @@ Store::Store(const StoreOptions& options, const Clock& clock, std::optional<Leas
   if (fresh) prepare_new_file();
   set_modes(options);
   if (fresh) begin_ledger(options);
+  if (!fresh) climb(options);
   prepare();
   read_first_entry(options);
   check_recent();
+  refuse_closed_volume();
   seal_ = newest_entry();
+  utc_minus_steady_ = utc_minus_steady(clock_);
   data_version_ = connection_.ask_number("PRAGMA data_version");
 }
 
@@ -104,11 +134,11 @@ void Store::begin_ledger(const StoreOptions& options) {
                Body::Object{{"emulated", options.emulated},
                             {"layout", newest_step},
                             {"layout_digest", to_hex(schema_digest(expected_schema()))},
-                            {"previous_seal", nullptr},
+                            {"previous_seal", options.continues ? Body{to_hex(options.continues->seal.hash)} : Body{}},
                             {"software_commit", options.program_commit},
                             {"software_version", options.program_version},
                             {"station", options.station},
-                            {"volume", 1}});
+                            {"volume", options.continues ? options.continues->volume + 1 : 1}});
   change.commit();
   if (options.vfs.empty()) sync_folder(folder_of(options.path)).value();
 }
@@ -128,8 +158,78 @@ void Store::read_first_entry(const StoreOptions& options) {
     throw ProblemError(altered_problem(options.path, {1, "entry", "1", "body", "does not say how the ledger began"}));
   emulated_ = *emulated->boolean();
   station_ = data->text("station");
+  volume_ = data->number("volume", 1);
   if (!options.station.empty() && station_ != options.station)
     throw ProblemError({"ledger_other_station", options.path, {{"found", station_}, {"wanted", options.station}}});
+}
+
+/// Does the steps of the layout that an earlier program did not know.
+void Store::climb(const StoreOptions& options) {
+  const auto step_of_file = [this] { return connection_.ask_number("PRAGMA user_version"); };
+  const std::int64_t found = step_of_file();
+  if (found == newest_step) return;
+  if (!options.lease && options.vfs.empty())
+    throw ProblemError(
+        {"ledger_older", path(), {{"found", std::to_string(found)}, {"known", std::to_string(newest_step)}}});
+  if (const auto difference = schema_difference(connection_, found); !difference.what.empty())
+    throw ProblemError({"ledger_layout_altered", path(), {{"name", difference.name}, {"what", difference.what}}});
+  Transaction change{connection_};
+  for (std::int64_t step = found + 1; step <= newest_step; ++step) connection_.run(std::string{schema_step(step)});
+  connection_.run("PRAGMA user_version=" + std::to_string(newest_step));
+  prepare();
+  Change first{*this, newest_entry()};
+  first.append("layout_step", "station",
+               Body::Object{{"from", found},
+                            {"layout_digest", to_hex(schema_digest(expected_schema()))},
+                            {"software_commit", options.program_commit},
+                            {"software_version", options.program_version},
+                            {"to", newest_step}});
+  change.commit();
+}
+
+void Store::refuse_closed_volume() {
+  Row row = connection_.begin("SELECT kind FROM entry ORDER BY number DESC LIMIT 1");
+  if (row.step() && row.text_view(0) == "volume_closed") throw ProblemError({"ledger_volume_closed", path()});
+}
+
+namespace {
+
+Body identity_body(const Lease::Identity& identity) {
+  return Body::Object{{"device", std::to_string(identity.device)},
+                      {"inode", std::to_string(identity.inode)},
+                      {"path", identity.path}};
+}
+
+}  // namespace
+
+/// Compares the file with what the last holder of the lease noted.
+void Store::notice_move(bool restored) {
+  if (!lease_) return;
+  const Lease::Identity now = Lease::identity_of(path()).value();
+  const auto before = lease_->noted();
+  const bool begun_now = seal_.entry == 1;
+  if (!begun_now && !restored && before != now) {
+    const Job job = [&](Change& change) {
+      change.append("file_moved", "station",
+                    Body::Object{{"before", before ? identity_body(*before) : Body{}}, {"now", identity_body(now)}});
+    };
+    if (const auto outcome = commit(job); !outcome) throw ProblemError(outcome.error());
+  }
+  if (before != now) lease_->note(now).value();
+}
+
+/// SQLite goes on writing into a file that was moved or unlinked under it; what it writes would be lost.
+void Store::demand_in_place() {
+  int moved = 0;
+  if (sqlite3_file_control(connection_.handle(), "main", SQLITE_FCNTL_HAS_MOVED, &moved) != SQLITE_OK) return;
+  if (moved != 0) throw Error({"ledger_moved_away", path()}, SQLITE_READONLY_DBMOVED, "begin");
+}
+
+void Store::note_clock_step(Change& change) {
+  const auto now = utc_minus_steady(clock_);
+  const auto step = now - std::exchange(utc_minus_steady_, now);
+  if (std::chrono::abs(step) <= clock_tolerance) return;
+  change.append("clock_step", "station", Body::Object{{"microseconds", static_cast<std::int64_t>(step.count())}});
 }
 
 void Store::check_recent() {
@@ -148,7 +248,9 @@ std::vector<Result<void>> Store::commit_group(std::span<const Job> jobs) {
   std::vector<Result<void>> outcomes;
   try {
     Transaction transaction{connection_};
+    demand_in_place();
     Change change{*this, notice(newest_entry())};
+    note_clock_step(change);
     for (const Job& job : jobs) outcomes.push_back(attempt(change, job));
     transaction.commit();
     seal_ = change.seal();
@@ -157,6 +259,12 @@ std::vector<Result<void>> Store::commit_group(std::span<const Job> jobs) {
     trouble_ = error.problem();
     return all_failed(jobs.size(), error.problem());
   }
+}
+
+void Store::give_space_back() {
+  // One answer row for each page: ask() goes through them all.
+  connection_.ask("PRAGMA incremental_vacuum");
+  connection_.ask("PRAGMA wal_checkpoint(PASSIVE)");
 }
 
 Result<void> Store::commit(const Job& job) { return commit_group({&job, 1}).front(); }

@@ -17,6 +17,12 @@
 
 namespace probewright::db {
 
+/// The volume that a new ledger goes on from.
+struct Continuation {
+  std::int64_t volume = 1;  ///< its number
+  Seal seal;                ///< of its closing entry
+};
+
 struct StoreOptions {
   std::string path;
   std::string vfs;         ///< SQLite VFS by name; empty: the machine's files
@@ -25,6 +31,9 @@ struct StoreOptions {
   bool create = true;      ///< make the ledger where there is none
   std::string station;     ///< name of the station; one ledger serves one station. Empty: take what the ledger says
   bool emulated = false;   ///< only when the ledger begins: it is begun on an emulated bench
+  /// Only when the ledger begins: it is the next volume of an earlier one (db/volumes.h).
+  std::optional<Continuation> continues;
+  bool restored = false;  ///< the file was just made from a backup: that it is another file is no news
   std::string program_version, program_commit;
   int wait_for_locks_ms = 5000;
   int checkpoint_pages = 1000;  ///< pages in the write-ahead log after which it is copied into the file
@@ -88,6 +97,7 @@ class Change {
 
  private:
   friend class Store;
+  friend struct Carrying;  // volumes.cpp
   Change(Store& store, Seal seal) : store_(store), seal_(seal) {}
   std::int64_t append(std::string_view kind, std::string_view who, const Body& data, const std::string& digested = {});
   std::int64_t set_state(const Digest& document, std::string_view state, UtcTime from, std::string_view who,
@@ -105,18 +115,25 @@ class Store {
 
   /// Opens a ledger or begins one. Checks the layout, the newest 100 entries and the open runs.
   /// `clock` must outlive the store; it gives every time stamp.
-  /// Errors: ledger_in_use, ledger_network, ledger_cannot_open, ledger_not_a_ledger, ledger_newer,
-  /// ledger_layout_altered, ledger_altered, ledger_other_station, ledger_mode, and what SQLite meets on the way.
+  /// A ledger of an earlier layout gets the steps that it lacks, and an entry that says so, but only under the lease.
+  /// Under the lease it is also noticed when the file was moved or copied since it was last opened: an entry says so.
+  /// Errors: ledger_in_use, ledger_network, ledger_cannot_open, ledger_not_a_ledger, ledger_newer, ledger_older (no
+  /// lease), ledger_volume_closed, ledger_layout_altered, ledger_altered, ledger_other_station, ledger_mode, and what SQLite meets on the way.
   static Result<std::unique_ptr<Store>> open(const StoreOptions& options, const Clock& clock);
   ~Store();
 
   /// Does all jobs in one transaction with one sync at its end. Each job has a savepoint: one that throws is taken back
   /// alone and gets its problem; the others stay. When this returns, jobs without a problem are on the disk.
   /// Ledger trouble (anything but a refused change) fails all jobs, and the store takes nothing more until it is opened
-  /// anew: whether a commit that failed is on the disk is known only then.
+  /// anew: whether a commit that failed is on the disk is known only then. A file that was moved or exchanged under the
+  /// store is such trouble (ledger_moved_away). Where the machine's clock was set since the last commit, an entry
+  /// `clock_step` comes first.
   std::vector<Result<void>> commit_group(std::span<const Job> jobs);
   /// commit_group for one job.
   Result<void> commit(const Job& job);
+
+  /// Gives pages that hold nothing back to the disk, after a prune. Throws Error.
+  void give_space_back();
 
   /// The trouble that ended this store, if any.
   const std::optional<Problem>& trouble() const { return trouble_; }
@@ -127,6 +144,8 @@ class Store {
   /// How far the clock stands behind the newest entry; 0 where it does not.
   std::chrono::microseconds clock_behind();
   const std::string& station() const { return station_; }
+  /// Number of this volume, from 1.
+  std::int64_t volume() const { return volume_; }
   bool emulated() const { return emulated_; }
   /// Questions over the writing connection, for the ledger thread.
   Reader reader() { return Reader(connection_); }
@@ -140,6 +159,11 @@ class Store {
   void prepare_new_file();
   void set_modes(const StoreOptions& options);
   void begin_ledger(const StoreOptions& options);
+  void refuse_closed_volume();
+  void climb(const StoreOptions& options);
+  void notice_move(bool restored);
+  void demand_in_place();
+  void note_clock_step(Change& change);
   void read_first_entry(const StoreOptions& options);
   void check_recent();
   void prepare();
@@ -154,8 +178,10 @@ class Store {
   Seal seal_;
   std::optional<Problem> trouble_;
   std::string station_;
+  std::int64_t volume_ = 1;
   bool emulated_ = false;
   bool others_wrote_ = false;
+  std::chrono::microseconds utc_minus_steady_{0};
   std::int64_t data_version_ = 0;
 };
 

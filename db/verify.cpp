@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <atomic>
+#include <functional>
 #include <iterator>
 #include <memory>
 #include <mutex>
@@ -20,48 +21,80 @@ namespace {
 
 Fault file_fault(const Problem& problem) { return {0, "file", "", "", problem.what()}; }
 
-/// Runs are taken by range, by as many threads as there are; the lowest run with a fault counts.
-class RunRanges {
+/// Entries are taken by range, by as many threads as there are; of the faults the one in the lowest range counts.
+class Ranges {
  public:
-  explicit RunRanges(std::int64_t newest_run) : newest_run_(newest_run) {}
+  Ranges(std::int64_t first, std::int64_t last, std::stop_token stop)
+      : first_(first), last_(last), next_(first), stop_(std::move(stop)) {}
 
-  /// Works until no range is left or a fault was found. Any thread, with its own connection.
-  void work(Connection& connection) {
+  /// Works until no range is left, a fault was found or the work was stopped. Any thread, with its own connection.
+  /// `after_each` is called after each range.
+  void work(Connection& connection, const std::function<void()>& after_each = {}) {
+    std::int64_t at = 0;
     try {
+      RangeWalker walker(connection);
       for (;;) {
-        const std::int64_t first = next_.fetch_add(span);
-        if (first > newest_run_ || stop_) return;
-        take(walk_runs(connection, first, std::min(first + span - 1, newest_run_)));
+        at = next_.fetch_add(span);
+        if (at > last_ || ended_ || stop_.stop_requested()) return;
+        take(at, walker.walk(at, std::min(at + span - 1, last_)));
+        if (after_each) after_each();
       }
     } catch (const Error& error) {
-      RunWalk unreadable;
+      RangeWalk unreadable;
       unreadable.fault = file_fault(error.problem());
-      take(unreadable);
+      take(at, unreadable);
     }
   }
-  const RunWalk& total() const { return total_; }
+  /// Entries that were walked by now. Any thread.
+  std::int64_t done() const { return done_; }
+  /// Runs that an earlier entry opened and that end in these entries or not at all: for a walk that does not begin at
+  /// the first entry.
+  void work_earlier_runs(Connection& connection) {
+    std::vector<std::int64_t> runs;
+    {
+      Row row = connection.begin(
+          "SELECT run FROM run_closed WHERE entry >= ? AND run < ? UNION ALL SELECT o.run FROM run_opened AS o"
+          " WHERE o.run < ? AND NOT EXISTS (SELECT 1 FROM run_closed AS c WHERE c.run = o.run) ORDER BY 1");
+      for (row.values(first_, first_, first_); row.step();) runs.push_back(row.integer(0));
+    }
+    RangeWalker walker(connection);
+    for (const std::int64_t run : runs) {
+      RangeWalk walk;
+      walk.fault = walker.run_fault(run, walk);
+      take(run, walk);
+    }
+  }
+  const RangeWalk& total() const { return total_; }
 
  private:
   static constexpr std::int64_t span = 1000;
 
-  void take(const RunWalk& walk) {
+  void take(std::int64_t range, const RangeWalk& walk) {
     const std::lock_guard lock(mutex_);
+    done_ += walk.entries;
+    total_.entries += walk.entries;
     total_.runs += walk.runs;
     total_.open_runs += walk.open_runs;
     total_.readings += walk.readings;
     total_.captures += walk.captures;
-    if (!walk.fault) return;
-    stop_ = true;
-    if (total_.fault && total_.fault_run <= walk.fault_run) return;
+    if (!walk.fault) {
+      if (walk.seal.entry > total_.seal.entry) total_.seal = walk.seal;
+      return;
+    }
+    ended_ = true;
+    if (total_.fault && fault_range_ <= range) return;
     total_.fault = walk.fault;
-    total_.fault_run = walk.fault_run;
+    fault_range_ = range;
+    if (walk.seal.entry < range + span) total_.seal = walk.seal;
   }
 
-  std::int64_t newest_run_;
-  std::atomic<std::int64_t> next_{1};
-  std::atomic<bool> stop_{false};
+  std::int64_t first_, last_;
+  std::atomic<std::int64_t> next_, done_{0};
+  std::atomic<bool> ended_{false};
+  std::stop_token stop_;
   std::mutex mutex_;
-  RunWalk total_;
+  RangeWalk total_;
+  std::int64_t fault_range_ = 0;
 };
 
 /// A connection for looking only, in the manner that the options ask for. Throws ProblemError.
@@ -74,9 +107,9 @@ std::unique_ptr<Connection> look_at(const std::string& path, const VerifyOptions
 }
 
 std::optional<Fault> layout_fault(Connection& connection) {
-  if (connection.ask_number("PRAGMA user_version") != newest_step)
-    return Fault{0, "file", "", "user_version", "is not the step of the layout that was written"};
-  const SchemaDifference difference = schema_difference(connection);
+  const std::int64_t step = connection.ask_number("PRAGMA user_version");
+  if (step < 1) return Fault{0, "file", "", "user_version", "is not the step of the layout that was written"};
+  const SchemaDifference difference = schema_difference(connection, step);
   if (difference.what.empty()) return std::nullopt;
   return Fault{0, "sqlite_schema", difference.name, "sql", difference.what};
 }
@@ -98,40 +131,72 @@ std::optional<Fault> page_fault(Connection& connection) {
   return Fault{0, "file", "", "", answer};
 }
 
-void keep_first(std::optional<Fault>& first, const std::optional<Fault>& other) {
-  if (other && (!first || other->entry < first->entry)) first = other;
+/// What is left to look at when all ranges agree.
+std::optional<Fault> rest_fault(Connection& connection, const VerifyOptions& options, std::int64_t newest) {
+  if (auto fault = row_out_of_range(connection, options.from > 1 ? 0 : 1, newest)) return fault;
+  if (auto fault = stray_bytes(connection)) return fault;
+  return page_fault(connection);
 }
 
-/// The chain and all that hangs on it, in the calling thread.
-ChainWalk chain_part(Connection& connection, const VerifyOptions& options) {
-  ChainWalk walk = walk_chain(connection, 1);
-  keep_first(walk.fault, stray_projected_row(connection));
-  if (options.printed) keep_first(walk.fault, printed_fault(connection, *options.printed, walk.seal.entry));
-  return walk;
+VerifyReport report_of(const RangeWalk& walk) {
+  VerifyReport report;
+  report.entries = walk.entries;
+  report.seal = walk.seal;
+  report.runs = walk.runs;
+  report.open_runs = walk.open_runs;
+  report.readings = walk.readings;
+  report.captures = walk.captures;
+  report.first_fault = walk.fault;
+  return report;
 }
+
+/// Tells how far it is; the pages at the end count as one twentieth.
+class Telling {
+ public:
+  Telling(const VerifyOptions& options, std::int64_t entries) : options_(options), entries_(entries) {}
+  void at(std::int64_t done) const {
+    if (options_.progress) options_.progress(done, entries_ + entries_ / 20 + 1);
+  }
+  void end() const { at(entries_ + entries_ / 20 + 1); }
+
+ private:
+  const VerifyOptions& options_;
+  std::int64_t entries_;
+};
 
 VerifyReport walk_all(Connection& connection, Connection* second, const VerifyOptions& options) {
-  VerifyReport report;
-  if ((report.first_fault = layout_fault(connection))) return report;
-  RunRanges ranges(connection.ask_number("SELECT coalesce(max(run), 0) FROM run_opened"));
-  ChainWalk chain;
+  if (auto fault = layout_fault(connection)) {
+    VerifyReport report;
+    report.first_fault = std::move(fault);
+    return report;
+  }
+  const std::int64_t newest = connection.ask_number("SELECT max(number) FROM entry");
+  if (newest == 0) {
+    VerifyReport report;
+    report.first_fault = Fault{1, "entry", "1", "number", "is missing"};
+    return report;
+  }
+  if (newest < options.from && options.printed) {  // cut back: the seal shows it
+    VerifyReport report;
+    report.first_fault = printed_fault(connection, *options.printed, newest);
+    if (report.first_fault) return report;
+  }
+  if (newest < options.from)
+    throw ProblemError({"verify_from_beyond", connection.path(), {{"newest", std::to_string(newest)}}});
+  const Telling telling(options, newest - options.from + 1);
+  Ranges ranges(options.from, newest, options.stop);
   {
     std::jthread beside;
     if (second) beside = std::jthread([&] { ranges.work(*second); });
-    chain = chain_part(connection, options);
-    ranges.work(connection);
+    if (options.from > 1) ranges.work_earlier_runs(connection);
+    ranges.work(connection, [&] { telling.at(ranges.done()); });
   }
-  const RunWalk& runs = ranges.total();
-  report.entries = chain.entries;
-  report.seal = chain.seal;
-  report.runs = runs.runs;
-  report.open_runs = runs.open_runs;
-  report.readings = runs.readings;
-  report.captures = runs.captures;
-  report.first_fault = chain.fault;
-  keep_first(report.first_fault, runs.fault);
-  if (!report.first_fault) report.first_fault = stray_run_row(connection);
-  if (!report.first_fault) report.first_fault = page_fault(connection);
+  if (options.stop.stop_requested()) throw ProblemError({"verify_stopped", connection.path()});
+  VerifyReport report = report_of(ranges.total());
+  const auto printed = options.printed ? printed_fault(connection, *options.printed, newest) : std::nullopt;
+  if (printed && (!report.first_fault || printed->entry < report.first_fault->entry)) report.first_fault = printed;
+  if (!report.first_fault) report.first_fault = rest_fault(connection, options, newest);
+  telling.end();
   return report;
 }
 
@@ -182,7 +247,8 @@ Body report_body(const VerifyReport& report) {
 std::optional<Fault> recent_fault(Connection& connection, std::int64_t count) {
   const std::int64_t newest = connection.ask_number("SELECT coalesce(max(number), 0) FROM entry");
   const std::int64_t from = std::max<std::int64_t>(1, newest - count + 1);
-  if (const ChainWalk walk = walk_chain(connection, from); walk.fault) return walk.fault;
+  RangeWalker walker(connection);
+  if (const RangeWalk walk = walker.walk_entries(from, newest); walk.fault) return walk.fault;
   std::vector<std::int64_t> runs;
   {
     Row row = connection.begin(
@@ -190,8 +256,9 @@ std::optional<Fault> recent_fault(Connection& connection, std::int64_t count) {
         " WHERE NOT EXISTS (SELECT 1 FROM run_closed AS c WHERE c.run = o.run)");
     for (row.values(from); row.step();) runs.push_back(row.integer(0));
   }
+  RangeWalk walk;
   for (const std::int64_t run : runs)
-    if (const RunWalk walk = walk_runs(connection, run, run); walk.fault) return walk.fault;
+    if (auto fault = walker.run_fault(run, walk)) return fault;
   return std::nullopt;
 }
 

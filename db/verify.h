@@ -1,6 +1,8 @@
 #pragma once
 #include <cstdint>
+#include <functional>
 #include <optional>
+#include <stop_token>
 #include <string>
 
 #include "db/connection.h"
@@ -22,6 +24,10 @@ struct VerifyOptions {
   bool exclusive = false;       ///< for a VFS without shared memory; one connection, one thread
   bool archive = false;         ///< immutable=1: nobody writes the file
   std::optional<Seal> printed;  ///< a seal from an earlier report that must be in the chain
+  std::int64_t from = 1;  ///< first entry to walk; the hash before it is taken as it stands (use a printed seal for it)
+  /// Called now and then, in the calling thread, with how much of how much is done.
+  std::function<void(std::int64_t done, std::int64_t total)> progress;
+  std::stop_token stop;
 };
 
 struct VerifyReport {
@@ -32,9 +38,10 @@ struct VerifyReport {
 };
 
 /// Walks a whole ledger: layout with triggers, the chain, every projection, every run's digests, every capture's bytes,
-/// then SQLite's own check of its pages. Two threads: the chain, and the runs by range. Readings of open runs are not
-/// yet covered by a digest; only their shape is looked at. Never throws for what is in the file: that is the first
-/// fault. Errors (the file cannot be looked at): ledger_cannot_open, ledger_newer.
+/// rows that belong to nothing, then SQLite's own check of its pages. Two threads, by range of entries. With `from`,
+/// the entries from there on, the runs that they open or close, and open runs. Readings of open runs are not yet covered
+/// by a digest; only their shape is looked at. Never throws for what is in the file: that is the first fault.
+/// Errors (the file cannot be looked at): ledger_cannot_open, ledger_newer, verify_stopped, verify_from_beyond.
 Result<VerifyReport> verify(const std::string& path, const VerifyOptions& options = {});
 
 /// {"captures","entries","first_fault","ok","open_runs","readings","runs","seal"}: the JSON of `ledger verify`.

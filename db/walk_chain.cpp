@@ -1,4 +1,6 @@
-#include <map>
+#include <limits>
+#include <memory>
+#include <vector>
 
 #include "db/chain.h"
 #include "db/hex.h"
@@ -8,6 +10,26 @@
 #include "db/walk.h"
 
 namespace probewright::db {
+
+/// Statements for the projected tables, found by the kind of entry, and how many rows agreed since the last count.
+class Projections {
+ public:
+  explicit Projections(Connection& connection);
+  std::optional<Fault> fault(std::string_view kind, std::int64_t number, const Body& data);
+  /// A row of a table whose entry's number lies from first to last and that no entry has made: looked for only where
+  /// there are more rows than agreed.
+  std::optional<Fault> stray(Connection& connection, std::int64_t first, std::int64_t last);
+  void count_anew();
+
+ private:
+  struct Projected {
+    const ProjectedTable* table;
+    std::unique_ptr<Statement> select, count;
+    std::int64_t agreed = 0;
+  };
+  std::vector<Projected> tables_;
+};
+
 namespace {
 
 Cell cell_of(const Row& row, int column) {
@@ -49,8 +71,9 @@ bool agrees(const ProjectedColumn& column, const Cell& found, const Cell& expect
   return text && to_hex(sha256(*text)) == data.text(column.key);
 }
 
-/// Rows of one entry in one table.
-std::optional<Fault> rows_fault(Statement& select, const ProjectedTable& table, std::int64_t number, const Body& data) {
+/// Rows of one entry in one table; how many there must be is added to `rows`.
+std::optional<Fault> rows_fault(Statement& select, const ProjectedTable& table, std::int64_t number, const Body& data,
+                                std::int64_t& rows) {
   const auto expected = project(table, number, data, "");
   if (!expected) return entry_fault(number, "body", std::string{"lacks what table "} + table.table + " shows");
   Row row = select.begin();
@@ -70,42 +93,24 @@ std::optional<Fault> rows_fault(Statement& select, const ProjectedTable& table, 
     }
   }
   if (place < expected->size()) return Fault{number, table.table, row_name(table, number, place), "", "is missing"};
+  rows += static_cast<std::int64_t>(place);
   return std::nullopt;
 }
 
-/// One statement for each projected table, found by the kind of entry.
-class Projections {
- public:
-  explicit Projections(Connection& connection) {
-    for (const ProjectedTable& table : projected_tables())
-      by_kind_[table.kind].push_back({&table, std::make_unique<Statement>(connection, select_sql(table))});
-  }
-  std::optional<Fault> fault(const std::string& kind, std::int64_t number, const Body& data) {
-    const auto found = by_kind_.find(kind);
-    if (found == by_kind_.end()) return std::nullopt;
-    for (auto& [table, select] : found->second)
-      if (auto fault = rows_fault(*select, *table, number, data)) return fault;
-    return std::nullopt;
-  }
-
- private:
-  std::map<std::string, std::vector<std::pair<const ProjectedTable*, std::unique_ptr<Statement>>>> by_kind_;
-};
-
 /// One entry: what follows from the hash before it, and what its columns and rows say.
 std::optional<Fault> entry_fault_of(const Row& row, std::int64_t number, const Digest& previous,
-                                    Projections& projections) {
+                                    Projections& projections, Sha256& hash) {
   if (row.integer(0) != number) return entry_fault(number, "number", "is missing");
   if (!row.is_text(4)) return entry_fault(number, "body", "is not text");
   if (!row.is_blob(5) || row.blob(5).size() != 32) return entry_fault(number, "hash", "is not 32 bytes");
-  if (entry_hash(previous, row.text_view(4)) != row.digest(5))
+  if (hash.add(previous).add(row.text_view(4)).finish() != row.digest(5))
     return entry_fault(number, "hash", "is not that of the hash before it and this body");
   const auto body = parse_body(row.text_view(4));
   if (!body) return entry_fault(number, "body", "is not canonical: " + body.error().what());
   if (auto fault = head_fault(row, number, *body)) return fault;
   if ((number == 1) != (row.text_view(2) == "ledger_begun"))
     return entry_fault(number, "kind", "ledger_begun is the first entry and no other");
-  return projections.fault(row.text(2), number, *body->find("data"));
+  return projections.fault(row.text_view(2), number, *body->find("data"));
 }
 
 std::optional<Digest> hash_before(Connection& connection, std::int64_t from) {
@@ -115,62 +120,148 @@ std::optional<Digest> hash_before(Connection& connection, std::int64_t from) {
   return row.digest(0);
 }
 
-/// The lowest key of a table's rows for which `counterpart` finds nothing.
+Fault stray_fault(std::int64_t entry, const std::string& table, const std::string& key, std::int64_t value) {
+  return {entry, table, key + " " + std::to_string(value), key, "belongs to nothing"};
+}
+
+/// The lowest key from first to last of a table's rows for which `counterpart` finds nothing.
 std::optional<std::int64_t> lowest_stray(Connection& connection, const std::string& table, const std::string& key,
-                                         const std::string& counterpart) {
-  Statement statement(connection, "SELECT min(" + key + ") FROM " + table + " AS t WHERE NOT EXISTS (SELECT 1 FROM " +
-                                      counterpart + " = t." + key + ")");
+                                         const std::string& counterpart, std::int64_t first, std::int64_t last) {
+  Statement statement(connection, "SELECT min(" + key + ") FROM " + table + " AS t WHERE t." + key +
+                                      " BETWEEN ? AND ? AND NOT EXISTS (SELECT 1 FROM " + counterpart + " = t." + key +
+                                      ")");
   Row row = statement.begin();
-  if (!row.step() || row.is_null(0)) return std::nullopt;
+  if (!row.values(first, last).step() || row.is_null(0)) return std::nullopt;
   return row.integer(0);
 }
 
-Fault stray(std::int64_t entry, const std::string& table, const std::string& key, std::int64_t value) {
-  return {entry, table, key + " " + std::to_string(value), key, "belongs to nothing"};
+std::string of_kind(const ProjectedTable& table) {
+  return "entry AS e WHERE e.kind = '" + std::string{table.kind} + "' AND e.number";
+}
+
+std::string count_sql(const ProjectedTable& table) {
+  return std::string{"SELECT count(*) FROM "} + table.table + " WHERE " + table.entry_key + " BETWEEN ? AND ?";
 }
 
 }  // namespace
 
-ChainWalk walk_chain(Connection& connection, std::int64_t from) {
-  ChainWalk walk;
-  const auto before = hash_before(connection, from);
+Projections::Projections(Connection& connection) {
+  for (const ProjectedTable& table : projected_tables_at(connection.ask_number("PRAGMA user_version")))
+    tables_.push_back({&table, std::make_unique<Statement>(connection, select_sql(table)),
+                       std::make_unique<Statement>(connection, count_sql(table))});
+}
+
+std::optional<Fault> Projections::fault(std::string_view kind, std::int64_t number, const Body& data) {
+  for (Projected& projected : tables_)
+    if (kind == projected.table->kind)
+      if (auto fault = rows_fault(*projected.select, *projected.table, number, data, projected.agreed)) return fault;
+  return std::nullopt;
+}
+
+void Projections::count_anew() {
+  for (Projected& projected : tables_) projected.agreed = 0;
+}
+
+std::optional<Fault> Projections::stray(Connection& connection, std::int64_t first, std::int64_t last) {
+  std::optional<Fault> lowest;
+  for (Projected& projected : tables_) {
+    const ProjectedTable& table = *projected.table;
+    Row row = projected.count->begin();
+    row.values(first, last).step();
+    if (row.integer(0) == projected.agreed) continue;
+    const auto key = lowest_stray(connection, table.table, table.entry_key, of_kind(table), first, last);
+    if (key && (!lowest || *key < lowest->entry)) lowest = stray_fault(*key, table.table, table.entry_key, *key);
+  }
+  return lowest;
+}
+
+RangeWalker::RangeWalker(Connection& connection)
+    : connection_(connection),
+      projections_(std::make_unique<Projections>(connection)),
+      runs_(make_run_walker(connection)) {}
+
+RangeWalker::~RangeWalker() = default;
+
+RangeWalk RangeWalker::walk_entries(std::int64_t first, std::int64_t last) {
+  RangeWalk walk;
+  const auto before = hash_before(connection_, first);
   if (!before) {
-    walk.fault = entry_fault(from - 1, "number", "is missing");
+    walk.fault = entry_fault(first - 1, "number", "is missing");
     return walk;
   }
-  walk.seal = {from - 1, *before};
-  Projections projections(connection);
-  Statement entries(connection,
-                    "SELECT number, time, kind, who, body, hash FROM entry WHERE number >= ? ORDER BY number");
-  Row row = entries.begin();
-  for (row.values(from); row.step();) {
+  walk.seal = {first - 1, *before};
+  Sha256 hash;
+  Row row = connection_.begin(
+      "SELECT number, time, kind, who, body, hash FROM entry WHERE number BETWEEN ? AND ? ORDER BY number");
+  for (row.values(first, last); row.step();) {
     const std::int64_t number = walk.seal.entry + 1;
-    walk.fault = entry_fault_of(row, number, walk.seal.hash, projections);
+    walk.fault = entry_fault_of(row, number, walk.seal.hash, *projections_, hash);
     if (walk.fault) return walk;
     walk.seal = {number, row.digest(5)};
     ++walk.entries;
   }
-  if (walk.seal.entry == 0) walk.fault = entry_fault(1, "number", "is missing");
+  if (walk.seal.entry != last) walk.fault = entry_fault(walk.seal.entry + 1, "number", "is missing");
   return walk;
 }
 
-std::optional<Fault> stray_projected_row(Connection& connection) {
-  std::optional<Fault> first;
-  for (const ProjectedTable& table : projected_tables()) {
-    const std::string of_kind = "entry AS e WHERE e.kind = '" + std::string{table.kind} + "' AND e.number";
-    const auto key = lowest_stray(connection, table.table, table.entry_key, of_kind);
-    if (key && (!first || *key < first->entry)) first = stray(*key, table.table, table.entry_key, *key);
-  }
-  return first;
+RangeWalk RangeWalker::walk(std::int64_t first, std::int64_t last) {
+  projections_->count_anew();
+  RangeWalk walk = walk_entries(first, last);
+  const auto keep_first = [&](std::optional<Fault> other) {
+    if (other && (!walk.fault || other->entry < walk.fault->entry)) walk.fault = std::move(other);
+  };
+  const bool whole = !walk.fault;
+  keep_first(walk_runs(*runs_, first, last, walk));
+  // Counting finds strays only where everything was counted; after a fault they are looked for in any case.
+  if (!whole) projections_->count_anew();
+  keep_first(projections_->stray(connection_, first, last));
+  if (!walk.fault) keep_first(stray_run_row(connection_, first, last, walk));
+  return walk;
 }
 
-std::optional<Fault> stray_run_row(Connection& connection) {
+std::optional<Fault> RangeWalker::run_fault(std::int64_t run, RangeWalk& walk) {
+  return walk_runs(*runs_, run, run, walk);
+}
+
+std::optional<Fault> row_out_of_range(Connection& connection, std::int64_t first, std::int64_t last) {
+  const auto look = [&](const std::string& table, const std::string& key) -> std::optional<Fault> {
+    for (const char* where : {" < ?", " > ?"}) {
+      Statement statement(connection, "SELECT " + key + " FROM " + table + " WHERE " + key + where + " ORDER BY " +
+                                          key + " LIMIT 1");
+      Row row = statement.begin();
+      if (row.values(where[1] == '<' ? first : last).step())
+        return stray_fault(row.integer(0), table, key, row.integer(0));
+    }
+    return std::nullopt;
+  };
+  for (const ProjectedTable& table : projected_tables_at(connection.ask_number("PRAGMA user_version")))
+    if (auto fault = look(table.table, table.entry_key)) return fault;
   for (const char* table : {"reading", "capture"})
-    if (const auto run = lowest_stray(connection, table, "run", "run_opened AS o WHERE o.run"))
-      return stray(*run, table, "run", *run);
-  if (const auto capture = lowest_stray(connection, "capture_bytes", "capture", "capture AS c WHERE c.number"))
-    return stray(0, "capture_bytes", "capture", *capture);
+    if (auto fault = look(table, "run")) return fault;
   return std::nullopt;
+}
+
+std::optional<Fault> stray_run_row(Connection& connection, std::int64_t first, std::int64_t last,
+                                   const RangeWalk& walked) {
+  const auto rows = [&](const char* sql) {
+    Row row = connection.begin(sql);
+    row.values(first, last).step();
+    return row.integer(0);
+  };
+  if (rows("SELECT count(*) FROM reading WHERE run BETWEEN ? AND ?") == walked.readings &&
+      rows("SELECT count(*) FROM capture WHERE run BETWEEN ? AND ?") == walked.captures)
+    return std::nullopt;
+  for (const char* table : {"reading", "capture"})
+    if (const auto run = lowest_stray(connection, table, "run", "run_opened AS o WHERE o.run", first, last))
+      return stray_fault(*run, table, "run", *run);
+  return std::nullopt;
+}
+
+std::optional<Fault> stray_bytes(Connection& connection) {
+  const auto capture = lowest_stray(connection, "capture_bytes", "capture", "capture AS c WHERE c.number",
+                                    std::numeric_limits<std::int64_t>::min(), std::numeric_limits<std::int64_t>::max());
+  if (!capture) return std::nullopt;
+  return stray_fault(0, "capture_bytes", "capture", *capture);
 }
 
 }  // namespace probewright::db

@@ -3,14 +3,22 @@
 namespace probewright::db {
 namespace {
 
+/// That of the entry, or of the entry of an earlier volume that it repeats.
+UtcTime time_of_signing(const Row& row) {
+  const auto body = parse_body(row.text_view(7));
+  const Body* data = body ? body->find("data") : nullptr;
+  const Body* carried = data ? data->find("carried") : nullptr;
+  return parse_utc(carried ? carried->text("time") : row.text(1)).value();
+}
+
 std::vector<SignatureRecord> signatures_of(Reader& reader, const Digest& digest) {
   std::vector<SignatureRecord> signatures;
   Row row = reader.begin(
-      "SELECT s.entry, e.time, s.signer, s.role, s.meaning, s.public_key, s.signature FROM signature AS s"
+      "SELECT s.entry, e.time, s.signer, s.role, s.meaning, s.public_key, s.signature, e.body FROM signature AS s"
       " JOIN entry AS e ON e.number = s.entry WHERE s.document = ? ORDER BY s.entry");
   for (row.values(digest); row.step();)
-    signatures.push_back({row.integer(0), parse_utc(row.text_view(1)).value(), row.text(2), row.text(3), row.text(4),
-                          row.text(5), row.text(6)});
+    signatures.push_back({row.integer(0), time_of_signing(row), row.text(2), row.text(3), row.text(4), row.text(5),
+                          row.text(6)});
   return signatures;
 }
 

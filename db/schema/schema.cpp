@@ -12,17 +12,26 @@ namespace {
 constexpr std::string_view step_1 =
 #include "db/schema/step_1.inc"
     ;
+constexpr std::string_view step_2 =
+#include "db/schema/step_2.inc"
+    ;
 
-std::vector<SchemaObject> schema_of_steps() {
+/// The layout after each step, the first one at place 0.
+std::vector<std::vector<SchemaObject>> schemas_of_steps() {
   Connection scratch(":memory:", Access::create_read_write);
-  for (std::int64_t step = 1; step <= newest_step; ++step) scratch.run(std::string{schema_step(step)});
-  return schema_objects(scratch);
+  std::vector<std::vector<SchemaObject>> after;
+  for (std::int64_t step = 1; step <= newest_step; ++step) {
+    scratch.run(std::string{schema_step(step)});
+    after.push_back(schema_objects(scratch));
+  }
+  return after;
 }
 
 }  // namespace
 
 std::string_view schema_step(std::int64_t step) {
   if (step == 1) return step_1;
+  if (step == 2) return step_2;
   throw std::logic_error("no such step of the layout");
 }
 
@@ -35,9 +44,9 @@ std::vector<SchemaObject> schema_objects(Connection& connection) {
   return objects;
 }
 
-const std::vector<SchemaObject>& expected_schema() {
-  static const std::vector<SchemaObject> expected = schema_of_steps();
-  return expected;
+const std::vector<SchemaObject>& expected_schema(std::int64_t step) {
+  static const std::vector<std::vector<SchemaObject>> expected = schemas_of_steps();
+  return expected.at(static_cast<std::size_t>(step - 1));
 }
 
 Digest schema_digest(const std::vector<SchemaObject>& objects) {
@@ -48,10 +57,10 @@ Digest schema_digest(const std::vector<SchemaObject>& objects) {
   return hash.finish();
 }
 
-SchemaDifference schema_difference(Connection& connection) {
+SchemaDifference schema_difference(Connection& connection, std::int64_t step) {
   std::map<std::pair<std::string, std::string>, SchemaObject> found;
   for (SchemaObject& object : schema_objects(connection)) found[{object.type, object.name}] = object;
-  for (const SchemaObject& expected : expected_schema()) {
+  for (const SchemaObject& expected : expected_schema(step)) {
     const auto at = found.find({expected.type, expected.name});
     if (at == found.end()) return {expected.name, expected.type + " is missing"};
     if (at->second != expected) return {expected.name, expected.type + " has another text"};

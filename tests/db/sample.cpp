@@ -6,6 +6,7 @@
 #include <cmath>
 
 #include "db/sha256.h"
+#include "db/volumes.h"
 
 namespace probewright::db::sample {
 
@@ -153,6 +154,15 @@ RunId whole_run(Store& store, const std::string& serial, Entropy& entropy, const
   }));
   demand(store.commit([&](Change& change) { change.close_run(closing(run, verdict)); }));
   return run;
+}
+
+void begin_second_volume(const std::string& path, const Clock& clock) {
+  SeededEntropy entropy(20);
+  {
+    auto store = open(options(path), clock);
+    whole_run(*store, "AQ20-047-00099", entropy, "fail");
+  }
+  close_volume({path, "Piet Hallgrim", "end of the year", "0.1.0", "0000000"}, clock).value();
 }
 
 }  // namespace probewright::db::sample

@@ -46,6 +46,9 @@ Bytes wave(Entropy& entropy, std::size_t samples);
 RunClosed closing(RunId run, const std::string& verdict);
 /// One whole run, each step a commit of its own, as the line does it.
 RunId whole_run(Store& store, const std::string& serial, Entropy& entropy, const std::string& verdict = "pass");
+/// Begins a ledger that is a second volume: the first one beside it holds a failed serial, whose try is carried over as
+/// entry 2.
+void begin_second_volume(const std::string& path, const Clock& clock);
 /// Throws ProblemError where an outcome is a problem.
 void demand(const Result<void>& outcome);
 

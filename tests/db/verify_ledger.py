@@ -1,7 +1,7 @@
 #!/usr/bin/env python3
 """Checks a ledger with stock python3, from db/CHAIN.md alone.
 
-    verify_ledger.py LEDGER [--entry N --seal HASH]
+    verify_ledger.py LEDGER [--entry N --seal HASH] [--from N]
     verify_ledger.py --list FILE     lines "LEDGER" or "LEDGER<tab>N<tab>HASH"
 
 Prints one line of JSON for each ledger; exit status 0 if all agree, 1 if one does not.
@@ -16,7 +16,8 @@ import struct
 import sys
 
 APPLICATION_ID = 0x50574C47
-LAYOUTS = {1: "c259876579837accc7a983fb3ae6fb3b0c5496d5c1b1cd66066ceb4bbb043cbf"}
+LAYOUTS = {1: "c259876579837accc7a983fb3ae6fb3b0c5496d5c1b1cd66066ceb4bbb043cbf",
+           2: "3ec2680e60e7a7dc27ea23099fdad174d5aec008406285d89a83a317a6645048"}
 
 # table: (kind of entry, list in data or None, column that holds the entry's number, [(column, how, member)])
 TABLES = {
@@ -50,7 +51,11 @@ TABLES = {
         ("provisional", "flag", "provisional"), ("readings", "integer", "readings"),
         ("captures", "integer", "captures"), ("proof", "digest", "proof")]),
     "pruned": ("prune", "captures", "entry", [("capture", "item", None), ("entry", "entry", None)]),
+    "carried_try": ("tries_carried", "tries", "entry", [
+        ("serial", "text", "serial"), ("purpose", "text", "purpose"), ("tries", "integer", "tries"),
+        ("entry", "entry", None), ("place", "place", None)]),
 }
+SINCE = {"carried_try": 2}  # tables that an earlier layout lacks
 
 READING = [("place", "integer"), ("check_slug", "text"), ("value", "maybe_real"), ("none_reason", "maybe_text"),
            ("expanded_uncertainty", "maybe_real"), ("unit", "text"), ("lower_limit", "maybe_real"),
@@ -89,6 +94,7 @@ def check_layout(db):
             digest.update(text.encode() + b"\0")
     if digest.hexdigest() != LAYOUTS[step]:
         raise Fault("sqlite_schema", "", "sql", "is not the layout of this step")
+    return {name: table for name, table in TABLES.items() if SINCE.get(name, 1) <= step}
 
 
 def expected_cell(how, member, item, number, place):
@@ -139,10 +145,15 @@ def check_projected(db, table, number, data):
                 raise Fault(table, f"{number}.{place}", column, "is not what the entry says")
 
 
-def check_entries(db):
+def check_entries(db, tables, first):
     previous, count = bytes(32), 0
+    if first > 1:
+        before = db.execute("SELECT hash FROM entry WHERE number = ?", (first - 1,)).fetchone()
+        if before is None:
+            raise Fault("entry", first - 1, "number", "is missing")
+        previous, count = before[0], first - 1
     for number, time, kind, who, body, stored in db.execute(
-            "SELECT number, time, kind, who, body, hash FROM entry ORDER BY number"):
+            "SELECT number, time, kind, who, body, hash FROM entry WHERE number >= ? ORDER BY number", (first,)):
         count += 1
         if number != count:
             raise Fault("entry", count, "number", "is missing")
@@ -160,19 +171,19 @@ def check_entries(db):
                 raise Fault("entry", number, name, "is not what the body says")
         if (number == 1) != (kind == "ledger_begun"):
             raise Fault("entry", number, "kind", "ledger_begun is entry 1 and no other")
-        for table, (its_kind, _, _, _) in TABLES.items():
+        for table, (its_kind, _, _, _) in tables.items():
             if kind == its_kind:
                 check_projected(db, table, number, parsed["data"])
         previous = stored
-    if count == 0:
-        raise Fault("entry", 1, "number", "is missing")
-    return count, previous
+    if count < first:
+        raise Fault("entry", first, "number", "is missing")
+    return count - first + 1, previous
 
 
-def check_nothing_over(db):
+def check_nothing_over(db, tables):
     """Rows that belong to no entry, no run, no capture."""
     questions = [(table, f"SELECT count(*) FROM {table} WHERE {key} NOT IN (SELECT number FROM entry WHERE kind = '{kind}')")
-                 for table, (kind, _, key, _) in TABLES.items()]
+                 for table, (kind, _, key, _) in tables.items()]
     for table, key, parent, parent_key in (("reading", "run", "run_opened", "run"), ("capture", "run", "run_opened", "run"),
                                            ("capture_bytes", "capture", "capture", "number")):
         questions.append((table, f"SELECT count(*) FROM {table} WHERE {key} NOT IN (SELECT {parent_key} FROM {parent})"))
@@ -259,10 +270,11 @@ def check_bytes(db, number, packing, decoded_size, stored_size, decoded_digest, 
         raise Fault("capture_bytes", number, "bytes", "do not have the decoded digest")
 
 
-def check_runs(db):
+def check_runs(db, first):
     runs = readings = captures = 0
     for run, body in db.execute("SELECT o.run, e.body FROM run_opened AS o LEFT JOIN run_closed AS c ON c.run = o.run"
-                                " LEFT JOIN entry AS e ON e.number = c.entry ORDER BY o.run"):
+                                " LEFT JOIN entry AS e ON e.number = c.entry"
+                            " WHERE c.entry IS NULL OR c.entry >= ? ORDER BY o.run", (first,)):
         counts = check_run(db, run, json.loads(body)["data"] if body is not None else None)
         runs, readings, captures = runs + 1, readings + counts[0], captures + counts[1]
     return runs, readings, captures
@@ -274,16 +286,16 @@ def check_seal(db, entry, seal):
         raise Fault("entry", entry, "hash", "is not the printed seal")
 
 
-def verify(path, entry=None, seal=None):
+def verify(path, entry=None, seal=None, first=1):
     answer = {"file": path, "ok": False, "first_fault": None}
     try:
         db = sqlite3.connect(f"file:{path}?mode=ro", uri=True)
         try:
-            check_layout(db)
-            answer["entries"], newest = check_entries(db)
+            tables = check_layout(db)
+            answer["entries"], newest = check_entries(db, tables, first)
             answer["seal"] = newest.hex()
-            check_nothing_over(db)
-            answer["runs"], answer["readings"], answer["captures"] = check_runs(db)
+            check_nothing_over(db, tables)
+            answer["runs"], answer["readings"], answer["captures"] = check_runs(db, first)
             if seal:
                 check_seal(db, entry, seal)
             good = db.execute("PRAGMA integrity_check(1)").fetchone()[0]
@@ -304,6 +316,8 @@ def main():
     parser.add_argument("ledger", nargs="?")
     parser.add_argument("--entry", type=int)
     parser.add_argument("--seal")
+    parser.add_argument("--from", type=int, default=1, dest="first",
+                        help="first entry to check; the hash before it is taken as it stands")
     parser.add_argument("--list")
     given = parser.parse_args()
     if given.list:
@@ -313,7 +327,7 @@ def main():
         asked = [[given.ledger] + ([given.entry, given.seal] if given.seal else [])]
     all_good = True
     for path, *printed in asked:
-        answer = verify(path, int(printed[0]), printed[1]) if printed else verify(path)
+        answer = verify(path, *((int(printed[0]), printed[1]) if printed else (None, None)), given.first)
         print(json.dumps(answer, sort_keys=True), flush=True)
         all_good = all_good and answer["ok"]
     return 0 if all_good else 1

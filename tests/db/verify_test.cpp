@@ -88,6 +88,7 @@ class VerifyTest : public testing::Test {
  protected:
   VerifyTest() {
     SeededEntropy entropy(21);
+    begin_second_volume(good, clock);
     auto store = open(options(good), clock);
     whole_run(*store, "AQ20-048-00001", entropy, "pass");
     whole_run(*store, "AQ20-048-00002", entropy, "fail");
@@ -206,8 +207,8 @@ TEST_F(VerifyTest, AnotherValueInAnyCellOfAnyTableIsFoundByBoth) {
   Raw look(good);
   for (const auto& table : look.rows("SELECT name FROM sqlite_schema WHERE type = 'table' ORDER BY name")) {
     const std::string& name = table[0];
-    const bool keyed = name == "reading" || name == "run_document" || name == "run_device";
-    const std::string key = keyed ? "run || ' ' || place" : "rowid";
+    const bool keyed = name == "reading" || name == "run_document" || name == "run_device" || name == "carried_try";
+    const std::string key = name == "carried_try" ? "serial" : keyed ? "run || ' ' || place" : "rowid";
     const auto rows = look.rows("SELECT " + key + " FROM " + name);
     for (const auto& column : look.rows("SELECT name, type, pk FROM pragma_table_info('" + name + "')")) {
       const bool flag = column[0] == "emulated" || column[0] == "provisional" || column[0] == "cut_short";
@@ -258,7 +259,7 @@ TEST_F(VerifyTest, RowsThatAreGoneAddedOrSwappedAreFoundByBoth) {
   for (const auto& table : look.rows("SELECT name FROM sqlite_schema WHERE type = 'table' ORDER BY name")) {
     const std::string& name = table[0];
     const bool keyed = name == "reading" || name == "run_document" || name == "run_device";
-    const std::string where = keyed ? "run || ' ' || place" : "rowid";
+    const std::string where = name == "carried_try" ? "serial" : keyed ? "run || ' ' || place" : "rowid";
     const std::string from = " FROM " + name + ")";
     for (const std::string& which : {"(SELECT min(" + where + ")" + from, "(SELECT max(" + where + ")" + from})
       add_sql(all, name + ": a row deleted, " + which, "", "DELETE FROM " + name + " WHERE " + where + " = " + which);
@@ -294,12 +295,12 @@ TEST_F(VerifyTest, RowsThatAreGoneAddedOrSwappedAreFoundByBoth) {
            " IN (" + a + ", " + b + ")";
   };
   add_sql(all, "bytes of two captures swapped", "capture_bytes", swap("capture_bytes", "bytes", "capture", "2", "4"));
-  add_sql(all, "texts of two documents swapped", "document", swap("document", "text", "entry", "2", "3"));
+  add_sql(all, "texts of two documents swapped", "document", swap("document", "text", "entry", "3", "4"));
   add_sql(all, "bodies of two entries swapped", "entry", swap("entry", "body", "number", "5", "6"));
   add_sql(all, "values of two readings swapped", "reading",
           "UPDATE reading SET value = (SELECT o.value FROM reading AS o WHERE o.run = reading.run AND o.check_slug ="
           " CASE reading.check_slug WHEN 'red_centroid' THEN 'infrared_centroid' ELSE 'red_centroid' END)"
-          " WHERE run = 5 AND check_slug IN ('red_centroid', 'infrared_centroid')");
+          " WHERE run = 6 AND check_slug IN ('red_centroid', 'infrared_centroid')");
   add_sql(all, "a fail turned into a pass in the table", "run_closed",
           "UPDATE run_closed SET verdict = 'pass', failing = ''");
 
