@@ -269,7 +269,8 @@ constexpr std::array methods = std::to_array<Method>({
     {"bin_mismatch", bin_mismatch,
      "bin-mismatch;red centroid minus nominal of the coded bin;threshold=0.01;window=605-785;ref=25C;v1"},
     {"cable_noise", cable_noise,
-     "cable-noise;residual of the pulse fit over dc;without=100 120 200 240 Hz;largest of bands and captures;v2"},
+     "cable-noise;residual of the pulse fit over dc;without=drift to 4th order,100 120 200 240 Hz;largest of bands and "
+     "captures;v2"},
     {"mains_pickup", mains_pickup, "mains-pickup;rms;v1"},
     {"red_forward_voltage", forward_voltage<Band::red>, "forward-voltage;at=drive;ref=25C;v1"},
     {"infrared_forward_voltage", forward_voltage<Band::infrared>, "forward-voltage;at=drive;ref=25C;v1"},

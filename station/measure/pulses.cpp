@@ -271,9 +271,14 @@ Result<Level> fit_level(const Train& train, double flicker_Hz) {
 }
 
 Result<double> residual_without_lines(const Train& train, const PulseFit& fit, std::span<const double> lines_Hz) {
+  const double middle = middle_of(train), half = 0.5 * length_of(train);
   std::vector<double> design;
-  for (const double t : train.t_s) add_lines(design, t, lines_Hz);
-  const std::size_t columns = 2 * lines_Hz.size(), n = fit.residuals.size();
+  for (const double t : train.t_s) {
+    const double x = (t - middle) / half;
+    design.insert(design.end(), {1.0, x, x * x, x * x * x, x * x * x * x});  // weighted alike, unlike in the fit
+    add_lines(design, t, lines_Hz);
+  }
+  const std::size_t columns = 5 + 2 * lines_Hz.size(), n = fit.residuals.size();
   const auto lines = fit_linear(design, columns, fit.residuals);
   if (!lines) return lines.error();
   const auto& rest = lines->residuals;

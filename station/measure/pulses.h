@@ -67,7 +67,8 @@ struct Level {
 /// Errors: pulses_too_few, pulses_lengths_differ, pulses_time_not_rising, fit_impossible.
 Result<Level> fit_level(const Train& train, double flicker_Hz);
 
-/// Standard deviation of the fit's residuals, over |dc|, after lines at these frequencies are fitted out of them.
+/// Standard deviation of the fit's residuals, over |dc|, after lines at these frequencies and a drift of fourth
+/// order are fitted out of them.
 /// Errors: fit_impossible.
 Result<double> residual_without_lines(const Train& train, const PulseFit& fit, std::span<const double> lines_Hz);
 

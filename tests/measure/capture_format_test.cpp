@@ -43,7 +43,8 @@ std::vector<AnyCapture> one_of_each() {
           some_pulses(),
           RedAloneCapture{red},
           closed_path_capture(signal, 0.01, 10000.0 / 8388608.0),
-          ambient_capture(60.0, 0.5, 100.0, 0.3, 0.1, 10000.0 / 8388608.0)};
+          ambient_capture(60.0, 0.5, 100.0, 0.3, 0.1, 10000.0 / 8388608.0),
+          alone_slots_capture(signal, Band::infrared, 10000.0 / 8388608.0)};
 }
 
 std::vector<std::byte> with_byte(Bytes bytes, std::size_t at, unsigned value) {
@@ -78,6 +79,10 @@ TEST(CaptureFormat, KindsAreNamed) {
   EXPECT_EQ(capture_kind(all[6]), "red_alone_spectrum");
   EXPECT_EQ(capture_kind(all[7]), "closed_path");
   EXPECT_EQ(capture_kind(all[8]), "ambient");
+  EXPECT_EQ(capture_kind(all[9]), "infrared_alone_slots");
+  ElectricalCapture driven;
+  driven.led.red.at_drive = ForwardVoltage{20.0, 20.0, 1.95, false};
+  EXPECT_EQ(capture_kind(driven), "electrical_driven");
 }
 
 // Written out by hand from CAPTURES.md: a stranger's reader must find these bytes.
@@ -106,7 +111,10 @@ TEST(CaptureFormat, LaterKindsByteForByte) {
   EXPECT_EQ(kind(6), 5u);
   EXPECT_EQ(kind(7), 6u);
   EXPECT_EQ(kind(8), 7u);
-  Bytes spectrum = encode(all[3]), alone = encode(all[6]);  // the same spectrum
+  EXPECT_EQ(kind(9), 8u);
+  EXPECT_EQ(encode(all[9]).size(), 4u + 1 + 4 * 8 + 8 + 64 * 12);
+  EXPECT_EQ(problem_of(with_byte(encode(all[9]), 4, 2)), "capture_malformed");  // a third band
+  Bytes spectrum = encode(all[3]), alone = encode(all[6]);                      // the same spectrum
   EXPECT_EQ(std::vector(alone.begin() + 4, alone.end()), std::vector(spectrum.begin() + 4, spectrum.end()));
   EXPECT_EQ(encode(all[7]).size(), 4u + 4 * 8 + 8 + 64 * 12);
   EXPECT_EQ(encode(all[8]).size(), 4u + 4 * 8 + 8 + 64 * 12);
@@ -146,7 +154,7 @@ TEST(CaptureFormat, NonsenseIsRefused) {
   EXPECT_EQ(problem_of({}), "capture_malformed");
   EXPECT_EQ(problem_of(with_byte(dark, 0, 0x51)), "capture_malformed");  // no mark
   EXPECT_EQ(problem_of(with_byte(dark, 2, 0)), "capture_malformed");     // unknown kind
-  EXPECT_EQ(problem_of(with_byte(dark, 2, 9)), "capture_malformed");
+  EXPECT_EQ(problem_of(with_byte(dark, 2, 10)), "capture_malformed");
   EXPECT_EQ(problem_of(with_byte(dark, 3, 2)), "capture_malformed");                           // a later version
   EXPECT_EQ(problem_of(with_byte(with_byte(dark, 11, 0x7F), 10, 0xF0)), "capture_malformed");  // infinite
   EXPECT_EQ(problem_of(with_byte(pulses, 59, 0xFF)), "capture_malformed");  // a count of 4 thousand million cycles
@@ -185,4 +193,21 @@ TEST(Captures, GatherAndTellTwice) {
     EXPECT_EQ(again.error().id, "capture_twice");
   }
   EXPECT_EQ(all_captures(gathered), all_captures(whole));
+}
+
+// What is asked of a probe before its LEDs are warm, and what after.
+TEST(Captures, ElectricalCapturesAddUp) {
+  const ElectricalCapture whole = full_electrical();
+  ElectricalCapture before = whole, after;
+  for (const Band band : {Band::red, Band::infrared}) {
+    after.led.of(band).at_drive = std::exchange(before.led.of(band).at_drive, std::nullopt);
+    after.led.of(band).at_quarter = std::exchange(before.led.of(band).at_quarter, std::nullopt);
+  }
+  after.temperature_C = whole.temperature_C;
+  Captures captures;
+  ASSERT_TRUE(add_capture(captures, before));
+  ASSERT_TRUE(add_capture(captures, after));
+  EXPECT_EQ(*captures.electrical, whole);
+  EXPECT_EQ(add_capture(captures, after).error().id, "capture_twice");
+  EXPECT_EQ(*captures.electrical, whole);
 }

@@ -90,7 +90,7 @@ PulseCapture pulse_capture(const PulseSignal& signal, double nA_per_code, double
   const auto own = [&](Band band, double t) {
     const double angle = 2.0 * std::numbers::pi * signal.rate_Hz * t + signal.phase_rad;
     const double wave = std::sin(angle) + signal.second_harmonic * std::sin(2.0 * angle);
-    const double drift = 1.0 + signal.drift * (t / length_s - 0.5);
+    const double drift = 1.0 + signal.drift * (t / length_s - 0.5) + signal.warming * std::exp(-t / signal.warming_s);
     const double secondary = band == Band::red ? signal.secondary : 0.0;
     const double depth = (1.0 - secondary) * signal.depth.of(band) + secondary * signal.depth.infrared;
     return signal.dc_nA.of(band) * drift * (1.0 + (1.0 - signal.around) * depth * wave);
@@ -125,6 +125,16 @@ SaturationModel saturation_model(const std::string& table_text) {
   SaturationModel model = *all_checks().saturation;
   model.haemoglobin = read_extinction(table_text, "table.csv").value();
   return model;
+}
+
+AloneSlotsCapture alone_slots_capture(const PulseSignal& signal, Band lit, double nA_per_code) {
+  PulseSignal alone = signal;
+  alone.dc_nA = {0.0, 0.0}, alone.dc_nA.of(lit) = signal.dc_nA.of(lit);
+  alone.depth = {0.0, 0.0}, alone.cycles = 64, alone.seed += lit == Band::red ? 200 : 300;
+  const PulseCapture taken = pulse_capture(alone, nA_per_code);
+  PerBand<double> drive_mA{0.0, 0.0};
+  drive_mA.of(lit) = taken.drive_mA.of(lit);
+  return {lit, taken.cycle_s, 0, taken.red, taken.dark_a, taken.infrared, taken.dark_b, drive_mA, taken.temperature_C};
 }
 
 ClosedPathCapture closed_path_capture(const PulseSignal& signal, double share, double nA_per_code) {
@@ -174,6 +184,8 @@ Captures complete(double temperature_C, std::uint64_t seed, PulseSignal signal) 
     captures.pulses.push_back(pulse_capture(signal, both.adapter.nA_per_code, point.ratio));
     captures.pulses.back().temperature_C = temperature_C;
   }
+  for (const Band lit : {Band::red, Band::infrared})
+    captures.alone_slots.of(lit) = alone_slots_capture(signal, lit, both.adapter.nA_per_code);
   captures.closed_path = closed_path_capture(signal, 0.001, both.adapter.nA_per_code);
   captures.ambient = ambient_capture(60.0, 1.0, 100.0, 0.3, signal.noise_nA, both.adapter.nA_per_code);
   return captures;

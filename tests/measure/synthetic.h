@@ -72,6 +72,8 @@ struct PulseSignal {
   int cycles = 352;
   double phase_rad = 0.7;
   double drift = 0.0;            ///< relative change of the light over the whole capture
+  double warming = 0.0;          ///< relative light at its beginning that is lost by and by ...
+  double warming_s = 1.0;        ///< ... with this time constant
   double second_harmonic = 0.0;  ///< of the fundamental
   double crosstalk = 0.0;        ///< share of the other LED's light in each slot
   double secondary = 0.0;        ///< share of the red light that is modulated as infrared
@@ -90,11 +92,14 @@ SaturationModel saturation_model(const std::string& table_text);
 
 /// Captures with the blade in: `share` of the signal's light. With the lamp on and off: dark slots with `lamp_nA` at
 /// its level, flickering by `flicker` of it.
+/// Slots of that signal with one LED lit alone: cross-talk puts some of its light into the other one's slot.
+AloneSlotsCapture alone_slots_capture(const PulseSignal& signal, Band lit, double nA_per_code);
 ClosedPathCapture closed_path_capture(const PulseSignal& signal, double share, double nA_per_code);
 AmbientCapture ambient_capture(double lamp_nA, double level, double flicker_Hz, double flicker, double noise_nA,
                                double nA_per_code);
-/// The same as healthy(), and all that the other checks need: three set points, red alone, closed path, ambient.
-/// `signal`: what the light of the pulse captures is made of; its depths are those of each set point.
+/// The same as healthy(), and all that the other checks need: three set points, red alone, each LED's slots alone,
+/// closed path, ambient. `signal`: what the light of the pulse captures is made of; its depths are those of each set
+/// point.
 Captures complete(double temperature_C, std::uint64_t seed, PulseSignal signal = {});
 
 /// Captures of a healthy nominal probe at this temperature of the nest.
