@@ -7,84 +7,12 @@
 #include <qcustomplot.h>
 
 #include "station/base/numbers.h"
+#include "station/pages/plot_dress.h"
 
 namespace probewright::pages {
 namespace {
 
 constexpr std::size_t most_joined = 600;  // more points than that have no line between them: it would be a blot
-constexpr double px_per_mm = 10.0;        // of a plot's own picture; lines and sizes of it are whole numbers of these
-
-QFont plot_font(double size_mm) {
-  QFont font{font_family};
-  font.setPixelSize(static_cast<int>(std::lround(size_mm * px_per_mm)));
-  font.setHintingPreference(QFont::PreferNoHinting);
-  without_ligatures(font);
-  return font;
-}
-
-void dress(QCPAxis& axis) {
-  axis.setTickLabelFont(plot_font(2.7));
-  axis.setLabelFont(plot_font(2.7));
-  axis.setTickLabelColor(ink::text);
-  axis.setLabelColor(ink::quiet);
-  axis.setBasePen(QPen{ink::quiet, 2});
-  axis.setTickPen(QPen{ink::quiet, 2});
-  axis.setSubTickPen(Qt::NoPen);
-  axis.setTickLength(0, 10);
-  axis.setSubTickLength(0, 0);
-  axis.setTickLabelPadding(12);
-  axis.setLabelPadding(10);
-  axis.grid()->setPen(QPen{ink::rule, 1});
-  axis.grid()->setZeroLinePen(Qt::NoPen);
-}
-
-// A plot without ground of its own: the page's overprint shows through.
-void dress(QCustomPlot& plot) {
-  plot.setLocale(QLocale::c());
-  plot.setBackground(Qt::NoBrush);
-  plot.axisRect()->setMinimumMargins({0, 15, 45, 0});  // room for half of the last number
-  dress(*plot.xAxis);
-  dress(*plot.yAxis);
-}
-
-void draw(QCustomPlot& plot, const Canvas& canvas, const QRectF& box_mm) {
-  const QRectF box = canvas.px(box_mm);
-  canvas.painter->save();
-  canvas.painter->translate(box.topLeft());
-  canvas.painter->scale(canvas.px_per_mm / px_per_mm, canvas.px_per_mm / px_per_mm);
-  plot.toPainter(canvas.plot_painter, static_cast<int>(box_mm.width() * px_per_mm),
-                 static_cast<int>(box_mm.height() * px_per_mm));
-  canvas.painter->restore();
-}
-
-// Whole numbers only, about five.
-QSharedPointer<QCPAxisTickerFixed> whole_numbers(double range) {
-  QSharedPointer<QCPAxisTickerFixed> ticker{new QCPAxisTickerFixed};
-  const double raw = std::max(range / 5, 1.0);
-  const double decade = std::pow(10.0, std::floor(std::log10(raw)));
-  const double steps[] = {1, 2, 5, 10};
-  const double* step =
-      std::find_if(std::begin(steps), std::end(steps) - 1, [&](double s) { return s * decade >= raw; });
-  ticker->setTickStep(*step * decade);
-  ticker->setScaleStrategy(QCPAxisTickerFixed::ssNone);
-  return ticker;
-}
-
-QString elided(const std::string& text, double size_mm, double room_mm) {
-  return QFontMetricsF{plot_font(size_mm)}.elidedText(qt(text), Qt::ElideRight, room_mm * px_per_mm);
-}
-
-void write_at(QCustomPlot& plot, double x, double y, const QString& text, Qt::Alignment where) {
-  auto* words = new QCPItemText{&plot};  // the plot owns its items
-  words->position->setCoords(x, y);
-  words->setPositionAlignment(where);
-  words->setText(text);
-  words->setFont(plot_font(2.7));
-  words->setColor(ink::text);
-  words->setPadding({12, 6, 12, 6});
-  words->setClipToAxisRect(false);
-}
-
 void fill_bars(QCustomPlot& plot, const std::vector<FailingCheck>& checks) {
   QSharedPointer<QCPAxisTickerText> names{new QCPAxisTickerText};
   auto* bars = new QCPBars{plot.yAxis, plot.xAxis};  // the plot owns its bars
@@ -172,6 +100,89 @@ void fill_chart(QCustomPlot& plot, const RunChart& chart) {
   add_points(plot, chart, true);
 }
 
+// About as many bins as the root of the number of values, on the scale of the chart beside it.
+void fill_histogram(QCustomPlot& plot, const RunChart& chart) {
+  const QCPRange range = value_range(chart);
+  std::size_t count = 0;
+  for (const double value : chart.values) count += std::isfinite(value) ? 1 : 0;
+  const int bins = std::clamp(static_cast<int>(std::lround(std::sqrt(static_cast<double>(count)))) + 4, 6, 40);
+  std::vector<int> heights(static_cast<std::size_t>(bins), 0);
+  for (const double value : chart.values) {
+    if (!std::isfinite(value)) continue;
+    const int bin = static_cast<int>(bins * (value - range.lower) / range.size());
+    ++heights[static_cast<std::size_t>(std::clamp(bin, 0, bins - 1))];
+  }
+  auto* bars = new QCPBars{plot.yAxis, plot.xAxis};  // the plot owns its bars
+  bars->setBrush(ink::bar);
+  bars->setPen(Qt::NoPen);
+  bars->setWidth(0.9 * range.size() / bins);
+  for (int bin = 0; bin < bins; ++bin)
+    bars->addData(range.lower + (bin + 0.5) * range.size() / bins, heights[static_cast<std::size_t>(bin)]);
+  const double most = *std::max_element(heights.begin(), heights.end());
+  plot.yAxis->setRange(range);
+  plot.yAxis->setTickLabels(false);
+  plot.xAxis->setRange(0, std::max(1.0, most) * 1.05);
+  plot.xAxis->setTicker(whole_numbers(2 * most));
+  plot.xAxis->setLabel("runs");
+  for (const auto& limit : {chart.lower_limit, chart.upper_limit}) {
+    if (!limit) continue;
+    QCPGraph* line = plot.addGraph();
+    line->setPen(QPen{ink::text, 3});
+    line->setData({plot.xAxis->range().lower, plot.xAxis->range().upper}, {*limit, *limit});
+  }
+}
+
+QCPBars* stack_bars(QCustomPlot& plot, QCPBars* below, const QBrush& brush, const QPen& pen) {
+  auto* bars = new QCPBars{plot.xAxis, plot.yAxis};  // the plot owns its bars
+  bars->setBrush(brush);
+  bars->setPen(pen);
+  bars->setWidth(0.66);
+  if (below) bars->moveAbove(below);
+  return bars;
+}
+
+// Passed in grey, failed in the colour of what lies outside, void hollow.
+void fill_stretches(QCustomPlot& plot, const std::vector<StretchRow>& rows, int most) {
+  QCPBars* passed = stack_bars(plot, nullptr, QBrush{ink::bar}, Qt::NoPen);
+  QCPBars* failed = stack_bars(plot, passed, QBrush{ink::outside}, Qt::NoPen);
+  QCPBars* voided = stack_bars(plot, failed, Qt::NoBrush, QPen{ink::quiet, 2});
+  QSharedPointer<QCPAxisTickerText> names{new QCPAxisTickerText};
+  for (std::size_t i = 0; i < rows.size(); ++i) {
+    const StretchRow& row = rows[i];
+    const double place = static_cast<double>(i);
+    passed->addData(place, row.passed);
+    failed->addData(place, row.failed);
+    voided->addData(place, row.voided);
+    // An hour shows its hour, and its day where that is new; a day its month and day.
+    const bool hour = row.begin.size() > 10;
+    const std::string day = row.begin.substr(5, 5);
+    const bool new_day = i == 0 || rows[i - 1].begin.substr(0, 10) != row.begin.substr(0, 10);
+    names->addTick(place, qt(hour ? row.begin.substr(11, 5) + (new_day ? "\n" + day : "") : day));
+    const int judged = row.passed + row.failed;
+    if (judged > 0)
+      write_at(plot, place, judged + row.voided,
+               qt(fixed(100.0 * row.passed / judged, rows.size() > 12 ? 0 : 1) + " %"),
+               Qt::AlignHCenter | Qt::AlignBottom);
+  }
+  plot.xAxis->setTicker(names);
+  plot.xAxis->setRange(-0.6, std::max(static_cast<double>(rows.size()), 4.0) - 0.4);
+  plot.yAxis->setTicker(whole_numbers(most));
+  plot.yAxis->setRange(0, most * 1.22);
+}
+
+void stretch_key(const Canvas& canvas, const QRectF& box) {
+  double x = box.right() - 66.0;
+  const auto item = [&](const char* words, QColor fill, bool hollow) {
+    canvas.fill({x, box.y() + 0.8, 3.0, 3.0}, fill);
+    if (hollow) canvas.fill({x + 0.25, box.y() + 1.05, 2.5, 2.5}, Qt::white);
+    canvas.line({x + 4.2, box.y(), 18.0, 4.6}, words, 2.7, Weight::plain, Align::left, ink::text);
+    x += 23.0;
+  };
+  item("passed", ink::bar, false);
+  item("failed", ink::outside, false);
+  item("void", ink::quiet, true);
+}
+
 }  // namespace
 
 Block bar_plot(const std::vector<FailingCheck>& checks) {
@@ -189,18 +200,50 @@ Block bar_plot(const std::vector<FailingCheck>& checks) {
   return block;
 }
 
-Block run_chart(const RunChart& chart) {
+Block chart_with_histogram(const RunChart& chart) {
   Block block;
   block.height_mm = 62.0;
   block.draw = [chart](const Canvas& canvas, QRectF box) {
+    constexpr double histogram_mm = 38.0;
     QCustomPlot plot;
     dress(plot);
     plot.xAxis->grid()->setVisible(false);
     plot.yAxis->grid()->setVisible(false);  // the limits are the lines to look at
     fill_chart(plot, chart);
-    draw(plot, canvas, box);
+    draw(plot, canvas, box.adjusted(0, 0, -histogram_mm, 0));
+    QCustomPlot beside;
+    dress(beside);
+    beside.xAxis->grid()->setVisible(false);
+    beside.yAxis->grid()->setVisible(false);
+    fill_histogram(beside, chart);
+    draw(beside, canvas, {box.right() - histogram_mm, box.y(), histogram_mm, box.height()});
   };
   return block;
+}
+
+std::vector<Block> stretch_plots(const std::vector<StretchRow>& stretches) {
+  constexpr std::size_t most_in_a_row = 24;
+  int most = 1;
+  for (const StretchRow& row : stretches) most = std::max(most, row.passed + row.failed + row.voided);
+  std::vector<Block> blocks;
+  for (std::size_t at = 0; at < stretches.size(); at += most_in_a_row) {
+    const auto from = stretches.begin() + static_cast<std::ptrdiff_t>(at);
+    const auto to = from + static_cast<std::ptrdiff_t>(std::min(most_in_a_row, stretches.size() - at));
+    Block block;
+    block.height_mm = 52.0;
+    block.draw = [rows = std::vector<StretchRow>{from, to}, most](const Canvas& canvas, QRectF box) {
+      QCustomPlot plot;
+      dress(plot);
+      plot.xAxis->grid()->setVisible(false);
+      plot.xAxis->setTickPen(Qt::NoPen);
+      plot.yAxis->setLabel("runs");
+      fill_stretches(plot, rows, most);
+      draw(plot, canvas, box.adjusted(0, 5.0, 0, 0));
+      stretch_key(canvas, box);
+    };
+    blocks.push_back(std::move(block));
+  }
+  return blocks;
 }
 
 }  // namespace probewright::pages

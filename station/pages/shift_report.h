@@ -43,12 +43,25 @@ struct RunChart {
   std::string unit;                                ///< "nm"
   std::vector<double> values;                      ///< NaN: no reading in that run
   std::optional<double> lower_limit, upper_limit;  ///< acceptance limits
+  std::string note = {};                           ///< a sentence below; may be empty
+};
+
+/// Runs that ended in one hour or day.
+struct StretchRow {
+  std::string begin;  ///< "2026-12-01 06:00", "2026-12-01"
+  int passed = 0, failed = 0, voided = 0;
+};
+
+/// Production runs: a probe tested again counts again.
+struct ShiftRuns {
+  int all = 0, passed = 0, failed = 0, voided = 0;
 };
 
 /// All that the page says; nothing is looked up.
 struct ShiftReport {
   std::string station;
-  Zone zone;  ///< of the plant: every time on the page is told in it
+  std::string lot;  ///< the report is of this lot alone; empty: of all that was tested
+  Zone zone;        ///< of the plant: every time on the page is told in it
   UtcTime begin, end, printed;
   std::vector<ShiftPerson> people;
   std::vector<std::string>
@@ -56,13 +69,18 @@ struct ShiftReport {
   std::string purpose = "production";
   bool emulated = false;
   ShiftCounts counts;
+  std::optional<ShiftRuns> runs;
+  int rework = 0;                            ///< production runs after rework
+  int left_open = 0;                         ///< runs that had begun and not ended
+  std::vector<std::string> others;           ///< runs of other purposes, in words, one a line
   std::vector<FailingCheck> failing_checks;  ///< any order; drawn with the commonest first
   std::vector<NestRow> nests;
-  std::optional<RunChart> chart;
-  std::string seal;            ///< hash of the newest entry, 64 hexadecimal digits
-  long long entry = 0;         ///< its number
-  std::string verify_command;  ///< what a reader types to compare ledger and seal
-  std::string cautions;        ///< what whoever relies on the page must know; paragraphs end with a line feed
+  std::vector<StretchRow> stretches;  ///< in order
+  std::vector<RunChart> charts;       ///< each with the histogram of its values
+  std::string seal;                   ///< hash of the newest entry, 64 hexadecimal digits
+  long long entry = 0;                ///< its number
+  std::string verify_command;         ///< what a reader types to compare ledger and seal
+  std::string cautions;               ///< what whoever relies on the page must know; paragraphs end with a line feed
 };
 
 /// Writes the report as A4 pages and returns how many. Output of an emulated bench says DEMONSTRATION on every page,

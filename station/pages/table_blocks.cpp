@@ -5,14 +5,13 @@
 namespace probewright::pages {
 namespace {
 
-constexpr double body_mm = 3.1;  // 8.8 points
 constexpr double head_mm = 2.7;
 constexpr double leading = 1.42;
 constexpr double padding_mm = 1.0;
-constexpr double between_mm = 4.5;  // of neighbouring columns
 
 struct Style {
   double size_mm;
+  double between_mm;
   Weight weight;
   QColor colour;
 };
@@ -25,7 +24,7 @@ std::vector<QStringList> wrapped_cells(const std::vector<Column>& columns, const
   std::vector<QStringList> lines;
   for (std::size_t i = 0; i < columns.size(); ++i) {
     lines.push_back(wrapped(canvas, qt(i < cells.size() ? cells[i] : ""), canvas.font(style.size_mm, style.weight),
-                            columns[i].width_mm - between_mm));
+                            columns[i].width_mm - style.between_mm));
     if (lines[i].size() <= most_lines) continue;
     lines[i] = lines[i].first(most_lines);
     lines[i].last() = QString::fromUtf8("\u2026");
@@ -45,7 +44,7 @@ Block row(const std::vector<Column>& columns, const Cells& cells, const Style& s
     for (std::size_t i = 0; i < columns.size(); ++i) {
       double y = box.y() + padding_mm;
       for (const QString& line : lines[i]) {
-        canvas.line({x, y, columns[i].width_mm - between_mm, line_mm}, line, style.size_mm, style.weight,
+        canvas.line({x, y, columns[i].width_mm - style.between_mm, line_mm}, line, style.size_mm, style.weight,
                     columns[i].align, style.colour);
         y += line_mm;
       }
@@ -58,14 +57,15 @@ Block row(const std::vector<Column>& columns, const Cells& cells, const Style& s
 
 }  // namespace
 
-std::vector<Block> table(const std::vector<Column>& columns, const std::vector<Cells>& rows) {
+std::vector<Block> table(const std::vector<Column>& columns, const std::vector<Cells>& rows, TableStyle style) {
   Cells titles;
   for (const Column& column : columns) titles.push_back(column.title);
-  const auto head = std::make_shared<Block>(row(columns, titles, {head_mm, Weight::plain, ink::quiet}));
+  const auto head = std::make_shared<Block>(
+      row(columns, titles, {std::min(head_mm, style.size_mm), style.between_mm, Weight::plain, ink::quiet}));
   head->with_next = true;
   std::vector<Block> blocks{*head};
   for (const Cells& cells : rows) {
-    blocks.push_back(row(columns, cells, {body_mm, Weight::plain, ink::text}));
+    blocks.push_back(row(columns, cells, {style.size_mm, style.between_mm, Weight::plain, ink::text}));
     blocks.back().head = head;
   }
   blocks[1 < blocks.size() ? 1 : 0].head = nullptr;  // the first row stays with its head anyway

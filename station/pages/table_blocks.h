@@ -15,8 +15,14 @@ struct Column {
 
 using Cells = std::vector<std::string>;
 
+/// How a table is set.
+struct TableStyle {
+  double size_mm = 3.1;     ///< of its text: 8.8 points
+  double between_mm = 4.5;  ///< of neighbouring columns
+};
+
 /// A head and a block for each row. Cells wrap within their column; the head stands again on each page.
-std::vector<Block> table(const std::vector<Column>& columns, const std::vector<Cells>& rows);
+std::vector<Block> table(const std::vector<Column>& columns, const std::vector<Cells>& rows, TableStyle style = {});
 
 /// A heading that stays with what follows it.
 Block heading(const std::string& text);

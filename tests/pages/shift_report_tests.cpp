@@ -39,9 +39,9 @@ ShiftReport usual() {
                   {"nest 2", 35, 33, 2, 0, 24.1, "dark current"},
                   {"nest 3", 35, 32, 3, 0, 24.0, "saturation error 70 %"},
                   {"nest 4", 35, 34, 0, 1, 23.8, ""}};
-  report.chart = RunChart{"red centroid", "nm", centroids(141), 657.4, 662.6};
-  report.chart->values[40] = 663.1;
-  report.chart->values[77] = std::numeric_limits<double>::quiet_NaN();
+  report.charts = {RunChart{"red centroid", "nm", centroids(141), 657.4, 662.6}};
+  report.charts[0].values[40] = 663.1;
+  report.charts[0].values[77] = std::numeric_limits<double>::quiet_NaN();
   report.seal = seal;
   report.entry = 4711;
   report.verify_command = "probewright ledger verify /var/lib/probewright/Quay-1/ledger.db --seal " + seal;
@@ -159,7 +159,7 @@ TEST(ShiftReport, AnEmptyShiftIsToldInWords) {
   report.counts = {};
   report.failing_checks.clear();
   report.nests.clear();
-  report.chart = RunChart{"red centroid", "nm", {}, 657.4, 662.6};
+  report.charts = {RunChart{"red centroid", "nm", {}, 657.4, 662.6}};
   ASSERT_FALSE(write_shift_report(report, folder / "empty.pdf").has_error());
   const std::string text = flat(looking::text_of(folder / "empty.pdf"));
   expect_words(text, {"nobody signed in", "none open", "no verdict yet", "No check failed in this shift.",
@@ -178,7 +178,7 @@ TEST(ShiftReport, OddChartsAreDrawn) {
                              {"infinite", "mV", {std::numeric_limits<double>::infinity(), 1.0}, 0.0, {}},
                              {"many", "nm", centroids(5000), 657.4, 662.6}};
   for (const RunChart& chart : charts) {
-    report.chart = chart;
+    report.charts = {chart};
     ASSERT_FALSE(write_shift_report(report, folder / ("chart " + chart.name + ".pdf")).has_error()) << chart.name;
     const std::string text = flat(looking::text_of(folder / ("chart " + chart.name + ".pdf")));
     expect_words(text, {("Run chart: " + chart.name).c_str(), "run of the shift"});
