@@ -6,6 +6,7 @@
 #include "station/base/result.h"
 #include "station/text/checkup.h"
 #include "station/text/choices.h"
+#include "station/text/demo.h"
 #include "station/text/label.h"
 #include "station/text/ledger.h"
 #include "station/text/limits.h"
@@ -23,10 +24,10 @@ struct ShowText {
 
 /// What was asked for: one type for each command.
 using Request =
-    std::variant<ShowText, emulated::RunBenchOptions, text::TestOptions, text::CheckupOptions, text::TraceOptions,
-                 text::LedgerVerifyOptions, text::LedgerSealOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
-                 text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
-                 text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
+    std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::TestOptions, text::CheckupOptions,
+                 text::TraceOptions, text::LedgerVerifyOptions, text::LedgerSealOptions, text::LimitsCheckOptions,
+                 text::LimitsDiffOptions, text::MeasureSpectrumOptions, text::MeasurePulsesOptions,
+                 text::ReportRunOptions, text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
 
 struct CommandLine {
   bool json = false;
