@@ -37,6 +37,10 @@ struct Dispatch {
     if (const auto problem = text::impossible(options)) return console.refuse(*problem);
     return text::demo(options, demo_parts(options), console);
   }
+  int operator()(const text::LineOptions& options) const {
+    const auto hands = bench_hands(options);
+    return text::line(options, hands ? &*hands : nullptr, console);
+  }
   int operator()(const text::TestOptions& options) const {
     const auto hands = bench_hands(options);
     return text::test(options, hands ? &*hands : nullptr, console);

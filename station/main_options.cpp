@@ -99,6 +99,7 @@ class Reader {
 
   void add_demo();
   void add_bench();
+  void add_line();
   void add_test();
   void add_checkup();
   void add_trace();
@@ -122,6 +123,7 @@ class Reader {
 
   text::DemoOptions demo_;
   emulated::RunBenchOptions bench_;
+  text::LineOptions run_line_;
   text::TestOptions test_;
   text::CheckupOptions checkup_;
   text::TraceOptions trace_;
@@ -154,6 +156,7 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   app_.footer("Ask a command for its options and an example: probewright test --help");
   add_demo();
   add_bench();
+  add_line();
   add_test();
   add_checkup();
   add_trace();
@@ -228,6 +231,19 @@ void Reader::add_bench() {
     if (bench_.folder.empty()) bench_.folder = sequence::runtime_port_folder();
     line_.request = bench_;
   });
+}
+
+void Reader::add_line() {
+  CLI::App& app =
+      command(app_, "line", "run the station: scan badges, lot cards and probes, test in all nests",
+              "probewright bench                    (in another terminal)\n  probewright line --text --hands");
+  app.add_flag("--text", run_line_.text, "in the terminal, even where a window could be opened");
+  app.add_option("--ledger", run_line_.ledger, "ledger instead of the station's")->type_name("FILE");
+  app.add_option("--ports", run_line_.ports, "folder of the serial ports instead of the station's")->type_name("DIR");
+  add_number(app, "--speed", run_line_.speed, "speed of the emulated bench instead of the station's");
+  app.add_flag("--hands", run_line_.hands, "let the emulated bench put in what was scanned, and take it out");
+  app.add_option("--control", run_line_.control, "control socket of the emulated bench")->type_name("SOCKET");
+  answers(app, run_line_);
 }
 
 void Reader::add_test() {
