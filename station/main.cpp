@@ -5,6 +5,7 @@
 #include <iostream>
 
 #include "commit_stamp.h"
+#include "station/main_demo.h"
 #include "station/main_hands.h"
 #include "station/main_options.h"
 #include "station/main_pages.h"
@@ -31,6 +32,14 @@ struct Dispatch {
   int operator()(const emulated::RunBenchOptions& options) const {
     const auto ended = emulated::run_bench(options, std::cout);
     return ended ? text::done : console.refuse(ended.error());
+  }
+  int operator()(const text::DemoOptions& options) const {
+    if (const auto problem = text::impossible(options)) return console.refuse(*problem);
+    return text::demo(options, demo_parts(options), console);
+  }
+  int operator()(const text::LineOptions& options) const {
+    const auto hands = bench_hands(options);
+    return text::line(options, hands ? &*hands : nullptr, console);
   }
   int operator()(const text::TestOptions& options) const {
     const auto hands = bench_hands(options);

@@ -97,7 +97,9 @@ class Reader {
   template <class Options>
   void answers(CLI::App& app, Options& options);
 
+  void add_demo();
   void add_bench();
+  void add_line();
   void add_test();
   void add_checkup();
   void add_trace();
@@ -114,11 +116,14 @@ class Reader {
 
   CLI::App app_{"Tests pulse-oximetry probes on a production station and keeps the evidence.", "probewright"};
   text::Build build_;
+  std::string program_ = "probewright";  ///< as it was started
   text::StationChoice choice_;
   bool version_ = false;
   CommandLine line_;
 
+  text::DemoOptions demo_;
   emulated::RunBenchOptions bench_;
+  text::LineOptions run_line_;
   text::TestOptions test_;
   text::CheckupOptions checkup_;
   text::TraceOptions trace_;
@@ -149,7 +154,9 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   app_.add_option("--config", choice_.config, "folder of the configuration")->type_name("DIR");
   app_.add_option("--station", choice_.station, "which station of the configuration")->type_name("NAME");
   app_.footer("Ask a command for its options and an example: probewright test --help");
+  add_demo();
   add_bench();
+  add_line();
   add_test();
   add_checkup();
   add_trace();
@@ -180,8 +187,25 @@ void Reader::answers(CLI::App& app, Options& options) {
   app.final_callback([this, &options] {
     if constexpr (requires { options.choice; }) options.choice = choice_;
     if constexpr (requires { options.build; }) options.build = build_;
+    if constexpr (requires { options.program; }) options.program = program_;
     line_.request = options;
   });
+}
+
+void Reader::add_demo() {
+  CLI::App& app = command(app_, "demo", "test a lot of probes with planted faults on an emulated bench, hands included",
+                          "probewright demo --headless --probes 48 --nests 4 --speed 10");
+  app.add_flag("--headless", demo_.headless, "in text, even where a window could be opened");
+  add_whole(app, "--probes", demo_.probes, "how many probes the lot has, 48 unless told");
+  add_whole(app, "--nests", demo_.nests, "how many nests, 1 to 16; 4 unless told");
+  add_number(app, "--speed", demo_.speed, "how fast the bench's time goes, 1 unless told");
+  add_whole(app, "--seed", demo_.seed, "what probes, faults, noise and mistakes are drawn from, 1 unless told");
+  add_number(app, "--mistakes", demo_.mistakes,
+             "share of the probes with which the operator makes a mistake, 0 to 1; 0 unless told");
+  app.add_option("--out", demo_.out, "folder for ledger, labels, report and all else; a new one unless told")
+      ->type_name("DIR");
+  add_json(app);
+  answers(app, demo_);
 }
 
 void Reader::add_bench() {
@@ -207,6 +231,19 @@ void Reader::add_bench() {
     if (bench_.folder.empty()) bench_.folder = sequence::runtime_port_folder();
     line_.request = bench_;
   });
+}
+
+void Reader::add_line() {
+  CLI::App& app =
+      command(app_, "line", "run the station: scan badges, lot cards and probes, test in all nests",
+              "probewright bench                    (in another terminal)\n  probewright line --text --hands");
+  app.add_flag("--text", run_line_.text, "in the terminal, even where a window could be opened");
+  app.add_option("--ledger", run_line_.ledger, "ledger instead of the station's")->type_name("FILE");
+  app.add_option("--ports", run_line_.ports, "folder of the serial ports instead of the station's")->type_name("DIR");
+  add_number(app, "--speed", run_line_.speed, "speed of the emulated bench instead of the station's");
+  app.add_flag("--hands", run_line_.hands, "let the emulated bench put in what was scanned, and take it out");
+  app.add_option("--control", run_line_.control, "control socket of the emulated bench")->type_name("SOCKET");
+  answers(app, run_line_);
 }
 
 void Reader::add_test() {
@@ -420,6 +457,7 @@ Problem Reader::missing(const std::string& what) const {
 }
 
 Result<CommandLine> Reader::read(int argc, const char* const* argv) {
+  if (argc > 0) program_ = argv[0];
   try {
     app_.parse(argc, argv);
   } catch (const CLI::CallForHelp&) {

@@ -6,9 +6,11 @@
 #include "station/base/result.h"
 #include "station/text/checkup.h"
 #include "station/text/choices.h"
+#include "station/text/demo.h"
 #include "station/text/label.h"
 #include "station/text/ledger.h"
 #include "station/text/limits.h"
+#include "station/text/line.h"
 #include "station/text/measure.h"
 #include "station/text/report.h"
 #include "station/text/test.h"
@@ -22,11 +24,11 @@ struct ShowText {
 };
 
 /// What was asked for: one type for each command.
-using Request =
-    std::variant<ShowText, emulated::RunBenchOptions, text::TestOptions, text::CheckupOptions, text::TraceOptions,
-                 text::LedgerVerifyOptions, text::LedgerSealOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
-                 text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
-                 text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
+using Request = std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions,
+                             text::TestOptions, text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions,
+                             text::LedgerSealOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
+                             text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
+                             text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
 
 struct CommandLine {
   bool json = false;

@@ -48,6 +48,7 @@ class Console {
 
  private:
   friend class Progress;
+  friend class LiveBlock;
   std::ostream& out_;
   std::ostream& err_;
   Manner manner_;

@@ -23,7 +23,7 @@ LAYERS = {
     "station/tuning": FROM_THE_LEDGER,
     "station/trace": FROM_THE_LEDGER,
     "station/pages": READERS,
-    "station/text": ROUTINE | READERS,
+    "station/text": ROUTINE | READERS | {"station/sequence/production"},
     "station/windows": ROUTINE | READERS | {"station/pages"},
 }
 # The program's own files beside main.cpp wire everything together.

@@ -17,6 +17,8 @@ using testing::HasSubstr;
 
 const std::vector<std::vector<std::string>>& commands() {
   static const std::vector<std::vector<std::string>> all{{},
+                                                         {"demo"},
+                                                         {"line"},
                                                          {"bench"},
                                                          {"test"},
                                                          {"checkup"},
