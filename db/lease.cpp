@@ -114,18 +114,20 @@ std::optional<Lease::Identity> Lease::noted() const {
   Identity identity;
   std::string numbers;
   if (!std::getline(lines, identity.path) || !std::getline(lines, numbers)) return std::nullopt;
-  const auto blank = numbers.find(' ');
-  const auto device = parse_integer(std::string_view{numbers}.substr(0, blank));
-  const auto inode = blank == std::string::npos ? std::nullopt : parse_integer(std::string_view{numbers}.substr(blank + 1));
-  if (!device || !inode) return std::nullopt;
-  identity.device = *device;
-  identity.inode = *inode;
+  std::istringstream words(numbers);
+  for (std::int64_t* into : {&identity.device, &identity.inode, &identity.born_us}) {
+    std::string word;
+    words >> word;
+    const auto number = parse_integer(word);
+    if (!number) return std::nullopt;
+    *into = *number;
+  }
   return identity;
 }
 
 Result<void> Lease::note(const Identity& identity) const {
-  const std::string text =
-      identity.path + '\n' + std::to_string(identity.device) + ' ' + std::to_string(identity.inode) + '\n';
+  const std::string text = identity.path + '\n' + std::to_string(identity.device) + ' ' +
+                           std::to_string(identity.inode) + ' ' + std::to_string(identity.born_us) + '\n';
   const bool written = ::pwrite(file_, text.data(), text.size(), 0) == static_cast<ssize_t>(text.size()) &&
                        ::ftruncate(file_, static_cast<off_t>(text.size())) == 0;
   if (written) return {};
@@ -134,12 +136,17 @@ Result<void> Lease::note(const Identity& identity) const {
 }
 
 Result<Lease::Identity> Lease::identity_of(const std::string& ledger_path) {
-  struct stat file {};
-  if (::stat(ledger_path.c_str(), &file) != 0) return cannot_open(ledger_path);
+  struct statx file {};
+  if (::statx(AT_FDCWD, ledger_path.c_str(), 0, STATX_BASIC_STATS | STATX_BTIME, &file) != 0)
+    return cannot_open(ledger_path);
+  // An inode's number is given again soon after its file is gone; the moment of its making is not.
+  const bool known = (file.stx_mask & STATX_BTIME) != 0;
+  const std::int64_t born_us = known ? file.stx_btime.tv_sec * 1'000'000 + file.stx_btime.tv_nsec / 1000 : 0;
   std::error_code unknown;
   const auto full = std::filesystem::weakly_canonical(ledger_path, unknown);
-  return Identity{unknown ? ledger_path : full.string(), static_cast<std::int64_t>(file.st_dev),
-                  static_cast<std::int64_t>(file.st_ino)};
+  return Identity{unknown ? ledger_path : full.string(),
+                  static_cast<std::int64_t>(makedev(file.stx_dev_major, file.stx_dev_minor)),
+                  static_cast<std::int64_t>(file.stx_ino), born_us};
 }
 
 Lease::Lease(Lease&& other) noexcept : file_(std::exchange(other.file_, -1)) {}

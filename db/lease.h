@@ -17,6 +17,7 @@ class Lease {
   struct Identity {
     std::string path;  ///< full path
     std::int64_t device = 0, inode = 0;
+    std::int64_t born_us = 0;  ///< when the file was made; 0 where the file system does not know
     bool operator==(const Identity&) const = default;
   };
   /// Errors: ledger_in_use (another line has it), ledger_network, ledger_cannot_open.
