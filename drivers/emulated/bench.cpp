@@ -87,7 +87,7 @@ Bench::Station Bench::make_station(int number) {
   const int baud = options_.baud > 0 ? options_.baud : 921600;
   Station station;
   station.nest = std::make_shared<Nest>(
-      Nest::Setup{number, options_.seed, options_.ambient_degC, options_.mains_Hz, options_.perfect});
+      Nest::Setup{number, options_.seed, options_.ambient_degC, options_.mains_Hz, options_.perfect, options_.errors});
   const DeviceId phantom{number, DeviceKind::phantom}, adapter{number, DeviceKind::adapter};
   station.phantom = std::make_shared<PhantomDevice>(
       PhantomDevice::Setup{phantom, identity(phantom), options_.seed, baud}, clock_, station.nest, observer_);

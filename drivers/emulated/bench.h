@@ -3,6 +3,7 @@
 #include <functional>
 #include <map>
 #include <memory>
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -11,6 +12,7 @@
 #include "drivers/emulated/hands.h"
 #include "drivers/emulated/nest.h"
 #include "drivers/emulated/phantom_device.h"
+#include "drivers/emulated/station_errors.h"
 #include "drivers/emulated/truth.h"
 #include "drivers/wire/fault_port.h"
 #include "drivers/wire/line_clock.h"
@@ -22,7 +24,8 @@ struct BenchOptions {
   int nests = 1;
   double speed = 1.0;  ///< device time over the clock's time
   std::uint64_t seed = 1;
-  bool perfect = false;  ///< certificates exactly true; noise and seating stay
+  bool perfect = false;                 ///< certificates exactly true; noise and seating stay
+  std::optional<StationErrors> errors;  ///< of every nest, instead of those drawn from the seed; not with `perfect`
   double ambient_degC = 25.0;
   int baud = 921600;  ///< bytes take their time at baud x speed; 0: none
   double mains_Hz = 50.0;

@@ -23,6 +23,11 @@ double drawn_phase(const Nest::Setup& setup, const char* part) {
   return deviates.uniform();
 }
 
+StationErrors errors_of(const Nest::Setup& setup) {
+  if (setup.perfect) return {};
+  return setup.errors ? *setup.errors : draw_station_errors(setup.seed, setup.number);
+}
+
 /// Mean of sin(2 pi (f t + phase)) over a span.
 double mean_sine(double frequency_Hz, double phase_turns, double from_s, double to_s) {
   const double turn = 2.0 * std::numbers::pi;
@@ -34,7 +39,7 @@ double mean_sine(double frequency_Hz, double phase_turns, double from_s, double 
 
 Nest::Nest(const Setup& setup)
     : setup_(setup),
-      errors_(setup.perfect ? StationErrors{} : draw_station_errors(setup.seed, setup.number)),
+      errors_(errors_of(setup)),
       noise_(nest_seed(setup, "noise")),
       spectrometer_(errors_, nest_seed(setup, "pixels")),
       modulator_(drawn_phase(setup, "modulator")),

@@ -27,7 +27,8 @@ class Nest {
     std::uint64_t seed = 1;
     double ambient_degC = 25.0;
     double mains_Hz = 50.0;
-    bool perfect = false;  ///< the station's own errors are zero
+    bool perfect = false;                   ///< the station's own errors are zero
+    std::optional<StationErrors> errors{};  ///< instead of those drawn from the seed
   };
   explicit Nest(const Setup& setup);
 

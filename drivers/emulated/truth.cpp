@@ -3,7 +3,9 @@
 #include <algorithm>
 #include <cmath>
 #include <limits>
+#include <numbers>
 
+#include "drivers/emulated/colour_windows.h"
 #include "drivers/emulated/front_end.h"
 #include "drivers/emulated/model_nominals.h"
 #include "drivers/emulated/modulator.h"
@@ -11,11 +13,6 @@
 namespace probewright::emulated {
 namespace {
 
-struct Window {
-  double low_nm, high_nm;
-};
-constexpr Window red_window{605.0, 785.0}, infrared_window{800.0, 1045.0};
-constexpr double centroid_threshold = 0.01;
 constexpr double none = std::numeric_limits<double>::quiet_NaN();
 
 /// The LED whose light has a colour, if either one does.
@@ -118,6 +115,27 @@ RatioTruth ratio_truth(const Probe& probe, const StoredSetPoint& point) {
   return truth;
 }
 
+/// Variance of one slot's reading, nA^2: the amplifier's and the photons'.
+double slot_variance_nA2(double current_nA) {
+  constexpr double electron_nC = 1.602176634e-10, slot_s = 439e-6;
+  const double photons = electron_nC * std::abs(current_nA) / (FrontEnd::settled_share * slot_s);
+  return FrontEnd::slot_noise_nA * FrontEnd::slot_noise_nA + photons;
+}
+
+/// The dark under a slot is the mean of the two dark slots half a cycle around it. A contact that opens takes the
+/// light away for a share of the slots.
+double cable_noise_of(const Probe& probe, const Led& led) {
+  constexpr double gap_s = 0.004, to_dark_s = 2.0 * 439e-6, mains_Hz = 50.0;
+  const double light_nA = led.standard_drive_mA * led.transfer_nA_per_mA;
+  const double dark_nA = dark_current_nA(probe.photodiode, 25.0, 5.0);
+  const double own = std::hypot(FrontEnd::drive_noise, probe.contact_noise) * light_nA;
+  const double lost = std::min(1.0, probe.contact.gaps_per_s * gap_s);
+  const double mains = probe.mains_pickup_nA * (1.0 - std::cos(2.0 * std::numbers::pi * mains_Hz * to_dark_s));
+  const double variance = slot_variance_nA2(light_nA + dark_nA) + 0.5 * slot_variance_nA2(dark_nA) + own * own +
+                          mains * mains + lost * (1.0 - lost) * light_nA * light_nA;
+  return std::sqrt(variance) / light_nA;
+}
+
 double coded_ohm(const Probe& probe) {
   for (const BinNominals& bin : all_bins()) {
     if (bin.name == probe.coded_bin) return bin.id_ohm;
@@ -142,6 +160,8 @@ Truth truth_of(const Probe& probe) {
   truth.slot_crosstalk_percent = light ? 100.0 * probe.slot_crosstalk : none;
   truth.ambient_uptake_nA = share * probe.ambient_nA;
   truth.mains_pickup_nA = probe.mains_pickup_nA;
+  const bool seen = light && shines(probe.red) && shines(probe.infrared);
+  truth.cable_noise = seen ? std::max(cable_noise_of(probe, probe.red), cable_noise_of(probe, probe.infrared)) : none;
   for (std::size_t i = 0; i < stored_set_points.size(); ++i) {
     truth.ratios[i] = ratio_truth(probe, stored_set_points[i]);
   }

@@ -49,6 +49,9 @@ struct Truth {
   double slot_crosstalk_percent = 0.0;
   double ambient_uptake_nA = 0.0;  ///< lamp at full level
   double mains_pickup_nA = 0.0;
+  /// Root mean square of one slot's light less the dark beside it, about the pulse and without the lines of flicker,
+  /// over the mean: what the cable makes and what a perfect adapter cannot help. The noisier band.
+  double cable_noise = 0.0;
   std::array<RatioTruth, 3> ratios{};
 };
 

@@ -96,6 +96,7 @@ Json measurands(const Truth& truth) {
   to["slot_crosstalk"] = truth.slot_crosstalk_percent;
   to["ambient_uptake"] = truth.ambient_uptake_nA;
   to["mains_pickup"] = truth.mains_pickup_nA;
+  to["cable_noise"] = truth.cable_noise;
   for (const RatioTruth& ratio : truth.ratios) {
     const std::string slug = slug_of(ratio.nominal);
     to["ratio_" + slug] = ratio.ratio;
