@@ -197,7 +197,8 @@ std::string what_to_do(const RunOutcome& outcome) {
       return outcome.purpose == Purpose::production ? "take the probe out and apply its label"
                                                     : "take the probe out; this run releases no label";
     case RunVerdict::fail:
-      return "take the probe out and put it on the tray for failed probes";
+      return outcome.likely.rework.empty() ? "take the probe out and put it on the tray for failed probes"
+                                           : "take the probe out and put it on the tray for " + outcome.likely.rework;
     case RunVerdict::void_run:
       break;
   }

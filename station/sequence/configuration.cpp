@@ -36,6 +36,7 @@ class Reading {
     read_sheets();
     read_certificates();
     read_people();
+    read_diagnosis();
     if (faults_.empty()) cross_check();
     if (!faults_.empty()) return std::move(faults_);
     return std::move(configuration_);
@@ -157,6 +158,22 @@ class Reading {
         certificate->document.name = certificate->value.head.number;
         keep(configuration_.adapter_certificates, std::move(*certificate));
       }
+  }
+
+  /// The rules of diagnosis; there is one document of them.
+  void read_diagnosis() {
+    for (const auto& file : yaml_files(configuration_.folder / "diagnosis")) {
+      auto rules = parse(file, "diagnosis", limits::diagnosis::read_rules);
+      if (!rules) continue;
+      rules->document.name = rules->value.name;
+      rules->document.revision = rules->value.revision;
+      if (configuration_.diagnosis)
+        faults_.push_back(
+            {"document_twice",
+             rules->document.file,
+             {{"kind", "diagnosis"}, {"name", rules->value.name}, {"other", configuration_.diagnosis->document.file}}});
+      configuration_.diagnosis = std::move(*rules);
+    }
   }
 
   /// The people document that carries the station's name, if there is one.

@@ -6,6 +6,7 @@
 #include <string_view>
 #include <vector>
 
+#include "limits/diagnosis/rules.h"
 #include "limits/sheet.h"
 #include "station/base/digest.h"
 #include "station/measure/certificate.h"
@@ -40,7 +41,8 @@ struct Configuration {
   std::map<std::string, Documented<limits::Sheet>, std::less<>> sheets;   ///< by model name, the highest revision
   std::map<std::string, Documented<measure::PhantomCertificate>, std::less<>> phantom_certificates;  ///< by number
   std::map<std::string, Documented<measure::AdapterCertificate>, std::less<>> adapter_certificates;
-  std::optional<Documented<PeopleFile>> people;  ///< of the station; without it nobody can sign in
+  std::optional<Documented<limits::diagnosis::Rules>> diagnosis;  ///< without it no likely cause is named
+  std::optional<Documented<PeopleFile>> people;                   ///< of the station; without it nobody can sign in
 
   /// The model whose serial pattern this serial matches as a whole, or nullptr; two matches give nullptr as well.
   const Documented<measure::Model>* model_of(std::string_view serial) const;

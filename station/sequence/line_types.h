@@ -58,6 +58,15 @@ struct JudgedReading {
   limits::Judgement judgement;
 };
 
+/// What is likely wrong with a probe that failed, by the rules of diagnosis.
+struct LikelyCause {
+  std::string slug;            ///< "detector_leaky"; empty: none of the known, or nobody was asked
+  std::string words;           ///< "leaky detector"
+  std::string rework;          ///< the instruction that the probe goes to
+  std::string sentences;       ///< cause, evidence and rework; or what is out of its limits
+  bool ask_reference = false;  ///< a fault of the nest would look like this: check the nest before the next verdicts
+};
+
 /// How a run ended; told only after the closing entry is on disk.
 struct RunOutcome {
   std::int64_t run = 0;  ///< number of the opening entry
@@ -69,6 +78,7 @@ struct RunOutcome {
   std::string cause;        ///< slug: "limits", "completed", "stopped_by_person", "lid_opened", "device_lost" ...
   std::string cause_words;  ///< one sentence
   std::vector<std::string> failing;  ///< judged checks that are not ok, in catalogue order
+  LikelyCause likely;                ///< of a fail
   std::vector<JudgedReading> readings;
   std::int64_t closing_entry = 0;
   Digest seal{};
@@ -88,6 +98,7 @@ struct NestView {
   std::string serial;  ///< armed or running
   std::string doing;   ///< while running: what is being measured
   int stage = 0, stages = 0;
+  bool operator==(const NestView&) const = default;
 };
 
 struct NestChanged {

@@ -210,8 +210,9 @@ db::RunOpened Nest::opening_of(const Armed& armed) const {
 
 /// From the opening entry to the verdict told. Nothing escapes but cancellation of the whole nest.
 asio::awaitable<void> Nest::run(Armed armed) {
-  const RunDocuments documents{configuration_.station, *armed.model, *armed.sheet, phantom_certificate_,
-                               adapter_certificate_};
+  const RunDocuments documents{configuration_.station, *armed.model,
+                               *armed.sheet,           phantom_certificate_,
+                               adapter_certificate_,   configuration_.diagnosis ? &*configuration_.diagnosis : nullptr};
   RunBook book{services_.ledger, documents};
   stop_run_ = std::make_unique<asio::cancellation_signal>();
   stopped_ = false;
@@ -235,6 +236,8 @@ asio::awaitable<void> Nest::run(Armed armed) {
                                                        adapter_.counts().asked_again - adapter_before.asked_again);
     Body bench{Body::Object{
         {"asked_again", asked_again},
+        {"cycle_us", static_cast<std::int64_t>(seconds(services_.clock.steady_now() - first_command) * 1e6 *
+                                               services_.clock.speed())},
         {"drive_off_confirmed", drive_off},
         {"fences", static_cast<std::int64_t>(phantom_.counts().fences - phantom_before.fences)},
         {"stopped_by", stopped_by_},
@@ -274,6 +277,7 @@ void Nest::keep_last(const RunOutcome& outcome) {
   last.verdict = outcome.verdict;
   last.cause = outcome.cause;
   last.cause_words = outcome.cause_words;
+  last.likely_cause = outcome.likely.words;
   last.what_to_do = what_to_do(outcome);
   last.decided_by = decided_by(outcome.readings);
   last.cycle_s = seconds(outcome.cycle) * services_.clock.speed();

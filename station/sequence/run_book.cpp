@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <set>
 
+#include "limits/diagnosis/diagnose.h"
 #include "station/base/catalogue.h"
 #include "station/measure/evaluate.h"
 
@@ -21,6 +22,7 @@ std::vector<std::pair<std::string, const DocumentText*>> roles(const RunDocument
                                                                {"sheet", &documents.sheet.document},
                                                                {"phantom certificate", &documents.phantom.document},
                                                                {"adapter certificate", &documents.adapter.document}};
+  if (documents.diagnosis) all.emplace_back("diagnosis", &documents.diagnosis->document);
   for (const DocumentText& part : documents.model.parts) all.emplace_back(part.kind, &part);
   return all;
 }
@@ -124,6 +126,17 @@ Stage stage_of(const std::vector<measure::AnyCapture>& captures, const std::vect
   return stage;
 }
 
+/// The closing entry tells the likely cause beside the state of the bench.
+Body with_cause(Body bench, const LikelyCause& likely) {
+  Body::Object& members = *bench.object();
+  if (likely.sentences.empty()) return bench;
+  members["likely_cause"] = likely.slug;
+  members["likely_cause_words"] = likely.words;
+  members["rework"] = likely.rework;
+  members["diagnosis"] = likely.sentences;
+  return bench;
+}
+
 }  // namespace
 
 void RunBook::stage_done() {
@@ -181,6 +194,23 @@ RunOutcome RunBook::outcome_of(const Ending& ending) const {
   return outcome;
 }
 
+LikelyCause RunBook::likely_cause() const {
+  if (!documents_.diagnosis) return {};
+  std::vector<limits::diagnosis::JudgedValue> values;
+  for (const JudgedReading& judged : readings_)
+    values.push_back({judged.judgement, judged.reading.value, judged.reading.expanded_uncertainty.value_or(0.0)});
+  const auto diagnosis = limits::diagnosis::likely_causes(documents_.diagnosis->value, documents_.sheet.value, values);
+  LikelyCause likely;
+  likely.sentences = diagnosis.words;
+  likely.ask_reference = !diagnosis.ask_reference.empty();
+  if (const auto* first = diagnosis.first()) {
+    likely.slug = first->slug;
+    likely.words = first->words;
+    likely.rework = first->rework;
+  }
+  return likely;
+}
+
 asio::awaitable<RunOutcome> RunBook::close(Ending ending, Body bench) {
   const Stage stage = stage_of({}, fresh_readings(true));  // what a stage that never ended took is not to be trusted
   RunOutcome outcome = outcome_of(ending);
@@ -190,7 +220,8 @@ asio::awaitable<RunOutcome> RunBook::close(Ending ending, Body bench) {
   closing.cause = outcome.cause;
   closing.cause_words = outcome.cause_words;
   closing.failing = outcome.failing;
-  closing.bench = std::move(bench);
+  if (outcome.verdict == RunVerdict::fail) outcome.likely = likely_cause();
+  closing.bench = with_cause(std::move(bench), outcome.likely);
   db::Seal seal;
   co_await ledger_.commit([&](db::Change& change) {
     if (*stage_lost_) throw ProblemError({"run_stage_lost", "ledger"});  // a closing entry would make it look whole

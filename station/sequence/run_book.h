@@ -31,6 +31,7 @@ struct RunDocuments {
   const Documented<limits::Sheet>& sheet;
   const Documented<measure::PhantomCertificate>& phantom;
   const Documented<measure::AdapterCertificate>& adapter;
+  const Documented<limits::diagnosis::Rules>* diagnosis = nullptr;  ///< none: no likely cause is named
   measure::Certificates certificates() const { return {phantom.value, adapter.value}; }
 };
 
@@ -67,6 +68,7 @@ class RunBook {
   /// Whether a hard fault left this check without a reading.
   bool blocked(const std::string& check) const;
   RunOutcome outcome_of(const Ending& ending) const;
+  LikelyCause likely_cause() const;
 
   LedgerWriter& ledger_;
   RunDocuments documents_;
