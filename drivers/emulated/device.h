@@ -55,7 +55,8 @@ class DeviceClock {
  public:
   explicit DeviceClock(wire::LineClock& clock, double speed)
       : clock_(clock), epoch_(clock.steady_now()), speed_(speed) {}
-  double now_s() const { return seconds(clock_.steady_now() - epoch_) * speed_; }
+  double now_s() const { return at_s(clock_.steady_now()); }
+  double at_s(SteadyTime moment) const { return seconds(moment - epoch_) * speed_; }
   asio::awaitable<void> wait_until_s(double time_s) const {
     return clock_.wait_until(epoch_ + from_seconds(time_s / speed_));
   }

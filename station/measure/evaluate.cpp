@@ -365,6 +365,14 @@ bool wants_saturation_error(const Model& model) {
                      [](const std::string& check) { return check.starts_with("saturation_error_"); });
 }
 
+/// The check whose hard fault leaves this one without a meaning, or nothing.
+std::string blocked_by(const Run& run, const std::string& fault, std::string_view check, const Outcome& outcome) {
+  if (!fault.empty() && (means_nothing(run, fault, check) || outcome.reason == "not_captured")) return fault;
+  const Check* known = find_check(check);
+  const bool by_bin = known != nullptr && (known->needs & needs_coded_bin) != 0 && check != "id_deviation";
+  return by_bin && outcome.reason == "id_open" ? "id_deviation" : "";
+}
+
 }  // namespace
 
 Outcome checks::centroid_of(const Run& run, Band band) {
@@ -401,8 +409,10 @@ std::vector<Reading> evaluate(const Model& model, const Certificates& certificat
   std::vector<Reading> readings;
   for (const Method& method : methods) {
     if (!model.has_check(method.check)) continue;
-    const bool blocked = !fault.empty() && means_nothing(run, fault, method.check);
-    readings.push_back(finished(model, method, blocked ? none("blocked_by:" + fault) : method.compute(run)));
+    Outcome outcome = method.compute(run);
+    if (const std::string by = blocked_by(run, fault, method.check, outcome); !by.empty())
+      outcome = none("blocked_by:" + by);
+    readings.push_back(finished(model, method, std::move(outcome)));
   }
   return readings;
 }

@@ -135,8 +135,8 @@ asio::awaitable<void> Routine::gather_all() {
   const bool shine = co_await both_shine();
   if (!shine) co_return;  // an LED that cannot shine has no spectrum and no pulses
 
-  if (model_.ambient && model_.has_check("ambient_uptake")) co_await take_ambient();
-  if (model_.closed_path && model_.has_check("closed_path_light")) co_await take_closed_path();
+  begin_stage("ambient light and closed path");
+  co_await both(take_around(), settle_book());
   co_await take_all_pulses(model_.set_points_in_order());
 }
 
@@ -274,14 +274,10 @@ asio::awaitable<bool> Routine::both_shine() {
     co_await devices_.adapter.drive({microamperes(model_.drive_mA.red), microamperes(model_.drive_mA.infrared)});
     both_on_ = clock_.steady_now();
   }
+  co_await take_contact();
   co_await check_stage();
-  begin_stage("contact, ambient light and closed path");
-  co_await both(take_contact(), settle_book());
   const bool dead = contact_.led.red.at_drive.has_value();
-  if (dead) {
-    co_await check_stage();
-    book_.stage_done();
-  }
+  if (dead) book_.stage_done();
   co_return !dead;
 }
 
@@ -301,6 +297,12 @@ asio::awaitable<void> Routine::take_contact() {
     contact_.led.infrared.at_drive = at_infrared;
   }
   book_.add(contact_);
+}
+
+/// Light that reaches the detector around the phantom, from outside and from the LEDs.
+asio::awaitable<void> Routine::take_around() {
+  if (model_.ambient && model_.has_check("ambient_uptake")) co_await take_ambient();
+  if (model_.closed_path && model_.has_check("closed_path_light")) co_await take_closed_path();
 }
 
 /// The lamp shines on the probe's outside; LEDs and blade stand alike in both captures.

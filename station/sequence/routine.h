@@ -77,6 +77,7 @@ class Routine {
 
   asio::awaitable<void> take_contact();
   asio::awaitable<bool> both_shine();
+  asio::awaitable<void> take_around();
   asio::awaitable<void> take_ambient();
   asio::awaitable<void> take_closed_path();
 

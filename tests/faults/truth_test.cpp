@@ -44,9 +44,10 @@ faults::Table errors_of(const std::string& prefix, int count, std::vector<double
 
 TEST(Truth, HealthyProbesOfTheFingerClip) {
   std::vector<double> cycles_s;
-  faults::Table errors = errors_of("AQ20-048-", 200, &cycles_s);
+  faults::Table errors = errors_of(std::getenv("PFX") ? std::getenv("PFX") : "AQ20-048-", 200, &cycles_s);
   std::cout << faults::words_of(errors);
-  for (const auto& [name, m] : errors) if (name.starts_with("U of")) std::cout << name << " " << m.bias() << " +- " << m.sd() << "\n";
+  for (const auto& [name, m] : errors)
+    if (name.starts_with("U of")) std::cout << name << " " << m.bias() << " +- " << m.sd() << "\n";
   std::nth_element(cycles_s.begin(), cycles_s.begin() + cycles_s.size() / 2, cycles_s.end());
   std::cout << "median device time " << cycles_s[cycles_s.size() / 2] << " s\n";
 }

@@ -187,8 +187,9 @@ TEST(AllChecks, UnusableCapturesNameTheirReason) {
   captures.ambient->lit_b.pop_back();
   captures.closed_path->red.resize(1);
   r = readings(captures);
-  EXPECT_EQ(r.at("bin_mismatch").none_reason, "id_open");
-  EXPECT_EQ(r.at("saturation_error_100").none_reason, "id_open");
+  EXPECT_EQ(r.at("id_deviation").none_reason, "id_open");
+  EXPECT_EQ(r.at("bin_mismatch").none_reason, "blocked_by:id_deviation");
+  EXPECT_EQ(r.at("saturation_error_100").none_reason, "blocked_by:id_deviation");
   EXPECT_EQ(r.at("ambient_uptake").none_reason, "pulses_lengths_differ");
   EXPECT_EQ(r.at("closed_path_light").none_reason, "pulses_lengths_differ");
   Model model = all_checks();

@@ -195,7 +195,7 @@ TEST(Evaluate, WhatWasNotCapturedHasNoReading) {
   const auto r = readings(stopped);
   EXPECT_TRUE(r.at("red_forward_voltage").value);
   EXPECT_EQ(r.at("red_centroid").none_reason, "blocked_by:red_forward_voltage");
-  EXPECT_EQ(r.at("dark_current").none_reason, "not_captured");
+  EXPECT_EQ(r.at("dark_current").none_reason, "blocked_by:red_forward_voltage");
 }
 
 TEST(Evaluate, UnusableCapturesNameTheirReason) {

@@ -47,7 +47,7 @@ Trial::Trial(Options options)
   store_ = start->store.get();
   closed_late_ = start->closed_late;
   workers_.emplace(clock_, derived_seed(options_.seed, 2));
-  bench_ = std::make_unique<emulated::Bench>(io_.get_executor(), clock_, options_.bench);
+  bench_ = std::make_unique<emulated::Bench>(io_.get_executor(), clock_, options_.bench, options_.observer);
   ledger_ = std::make_unique<LedgerWriter>(std::move(start->store), *workers_, io_.get_executor());
   const PortOpener ports = [this](const DevicePlace&, int nest, DeviceKind kind) {
     return bench_->source(
@@ -87,7 +87,7 @@ void Trial::let_pass(Duration time) {
   clock_.run_until(io_, [&] { return passed; });
 }
 
-Told Trial::test(const std::string& serial) {
+Told Trial::test(const std::string& serial, std::optional<emulated::PlantedFault> fault) {
   Told told;
   if (!reaches(NestState::empty)) {
     told.hung = true;
@@ -101,7 +101,8 @@ Told Trial::test(const std::string& serial) {
     told.problem = armed.error();
     return told;
   }
-  bench_->seat(1, serial, *emulated::model_of_serial(serial)).value();
+  const std::string_view model = *emulated::model_of_serial(serial);
+  (fault ? bench_->seat(1, serial, model, *fault) : bench_->seat(1, serial, model)).value();
   const std::size_t first = events_.size();
   const auto end_of = [&]() -> const LineEvent* {
     for (std::size_t i = first; i < events_.size(); ++i)

@@ -28,6 +28,7 @@ struct Options {
   UtcTime start{1'796'103'000'000'000};  ///< 2026-12-01T05:30:00Z
   sequence::Purpose purpose = sequence::Purpose::engineering;
   const sequence::Configuration* configuration = nullptr;  ///< nullptr: demonstration()
+  emulated::ActionObserver* observer = nullptr;            ///< of the bench; outlives the trial
 };
 
 /// What came out of one probe.
@@ -48,8 +49,8 @@ class Trial {
   const std::vector<sequence::ClosedLate>& closed_late() const { return closed_late_; }
 
   /// Scans the serial for nest 1, seats the probe when asked to, waits for the end, takes the probe out.
-  /// `when_running`, if any, is called at the first event of the run.
-  Told test(const std::string& serial);
+  /// With a fault in it, if one is given: a serial keeps it for as long as the trial lives.
+  Told test(const std::string& serial, std::optional<emulated::PlantedFault> fault = {});
   /// Goes on until the nest is in this state; false when it never is.
   bool reaches(sequence::NestState state);
   /// Goes on for a while of the clock's time.
