@@ -85,7 +85,8 @@ void drop_small(std::vector<Evidence>& evidence) {
 std::string words(const Deviation& seen) {
   const std::string name{shown_as(seen.check)};
   if (!seen.value) return name + " has no reading (" + reason_words(seen.no_reading) + ")";
-  return name + " " + figure(*seen.value) + " times its tolerance";
+  const std::string size = name + " " + figure(*seen.value) + " times its tolerance";
+  return seen.unusable.empty() ? size : size + " but not usable (" + reason_words(seen.unusable) + ")";
 }
 
 std::vector<Evidence> evidence_for(const Part& part, std::span<const Datum> data, std::span<const Part> explanation,

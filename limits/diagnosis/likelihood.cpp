@@ -17,8 +17,8 @@ constexpr double pi = std::numbers::pi;
 constexpr double anywhere_scale = 3.0;
 /// How often a reading is missing where the cause says so, and where anything may be.
 constexpr double missing_expected = 0.9, missing_possible = 0.3;
-/// Where a check may move, half of the probes show nothing of it.
-constexpr double half = 0.5;
+/// Where a check may move, most probes show nothing of it.
+constexpr double moved_by_chance = 0.2;
 /// Of a severity: neighbours lie closer than figures are known.
 constexpr int steps = 41;
 
@@ -55,7 +55,7 @@ double own_variance(const Datum& datum) {
 double expected_density(const Datum& datum, const Outlook& outlook) {
   const double value = value_of(datum), own = own_variance(datum);
   const double about = normal(value, datum.used->usual + outlook.shift, own + outlook.variance);
-  if (outlook.anywhere) return half * about + (1.0 - half) * anywhere(value);
+  if (outlook.anywhere) return (1.0 - moved_by_chance) * about + moved_by_chance * anywhere(value);
   if (outlook.beyond.empty()) return about;
   const auto alternatives = static_cast<double>(outlook.beyond.size() + (outlook.by ? 1 : 0));
   double sum = outlook.by ? about : 0.0;

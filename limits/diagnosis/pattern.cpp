@@ -42,7 +42,10 @@ bool is_not_ok(const Judgement& judgement) {
 }
 
 Deviation deviation_of(const JudgedValue& reading, const Scale& scale) {
-  Deviation deviation{reading.judgement.check, {}, 0.0, is_not_ok(reading.judgement), {}};
+  Deviation deviation;
+  deviation.check = reading.judgement.check;
+  deviation.not_ok = is_not_ok(reading.judgement);
+  if (reading.judgement.outcome == Outcome::unusable) deviation.unusable = reading.judgement.reason;
   if (!reading.value) {
     deviation.no_reading = reading.judgement.reason.empty() ? "no_reading" : reading.judgement.reason;
   } else if (!std::isfinite(*reading.value)) {

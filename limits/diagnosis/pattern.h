@@ -19,6 +19,7 @@ struct Deviation {
   double standard_u = 0.0;      ///< of it, in tolerances
   bool not_ok = false;          ///< judged or watched, and outside what is accepted; also: judged and no reading
   std::string no_reading;       ///< slug of the reason when there is no value
+  std::string unusable;         ///< slug of the reason when there is one that may not be judged
   bool operator==(const Deviation&) const = default;
 };
 

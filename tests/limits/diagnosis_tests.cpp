@@ -377,6 +377,19 @@ TEST(Diagnosis, AHealthyProbeHasNothingWrong) {
   EXPECT_EQ(told.words, "the readings are those of a healthy probe");
 }
 
+// A reading whose uncertainty is too large is no fault of a probe's: it fails the run, and no cause is made up for it.
+TEST(Diagnosis, AReadingThatMayNotBeJudgedIsNoCause) {
+  std::vector<JudgedValue> readings = nominal_probe().judged();
+  for (JudgedValue& one : readings)
+    if (one.judgement.check == "ambient_uptake") one = {judge(probe_sheet(), "ambient_uptake", 60.0, 9.0), 60.0, 9.0};
+  const Diagnosis told = likely_causes(probe_rules(), probe_sheet(), readings);
+  EXPECT_EQ(first_cause(told), "none_of_known");
+  EXPECT_EQ(
+      told.words,
+      "none of the known causes: ambient light taken up 0.2 times its tolerance but not usable (uncertainty above "
+      "declared)");
+}
+
 // A probe at the end of the healthy spread fails without a fault: there is no cause to name, and that is said.
 TEST(Diagnosis, JustOutsideALimitNeedsNoCause) {
   const Diagnosis told = diagnosed(nominal_probe().with({{"red_width", 24.1}}));
@@ -524,7 +537,7 @@ TEST(Pattern, ALowerLimitAloneIsOneTolerance) {
 TEST(Likelihood, IsTheDocumentedDensity) {
   UsedCheck used;
   used.check = "dark_current", used.usual = 0.1, used.spread = 0.3;
-  Deviation seen{"dark_current", 2.6, 0.4, true, {}};
+  Deviation seen{"dark_current", 2.6, 0.4, true, {}, {}};
   Cause cause;
   cause.slug = "leaky", cause.everything_else_still = true;
   cause.moves = {{"dark_current", {{Expected::Form::by, 2.0, 0.25, ""}}}};
@@ -547,7 +560,7 @@ TEST(Likelihood, IsTheDocumentedDensity) {
 TEST(Likelihood, SeveritiesThatDoNotFitCost) {
   UsedCheck used;
   used.check = "dark_current", used.spread = 0.1;
-  Deviation seen{"dark_current", 1.0, 0.0, true, {}};
+  Deviation seen{"dark_current", 1.0, 0.0, true, {}, {}};
   Cause sure;
   sure.everything_else_still = true;
   sure.moves = {{"dark_current", {{Expected::Form::by, 1.0, 0.1, ""}}}};
