@@ -55,7 +55,10 @@ void Canvas::rule(double x_mm, double y_mm, double width_mm, QColor colour, doub
 QStringList wrapped(const Canvas& canvas, const QString& text, const QFont& font, double width_mm) {
   QStringList lines;
   for (const QString& paragraph : text.split('\n')) {
-    if (paragraph.isEmpty()) lines << QString{};
+    if (paragraph.isEmpty()) {
+      lines << QString{};
+      continue;
+    }
     QTextLayout layout{paragraph, font};
     QTextOption option;
     option.setWrapMode(QTextOption::WrapAtWordBoundaryOrAnywhere);

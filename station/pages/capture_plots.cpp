@@ -14,9 +14,10 @@ namespace {
 // Red in its colour, infrared in ink: told by the words beside the lines as well.
 QColor colour_of_band(const std::string& band) { return band == "red" ? ink::outside : ink::text; }
 
-void add_curve(QCustomPlot& plot, const std::vector<double>& x, const std::vector<double>& y, QColor colour) {
+void add_curve(QCustomPlot& plot, const std::vector<double>& x, const std::vector<double>& y, QColor colour,
+               double thick = 3.0) {
   QCPGraph* curve = plot.addGraph();
-  curve->setPen(QPen{colour, 3.0});
+  curve->setPen(QPen{colour, thick});
   curve->setData(QVector<double>(x.begin(), x.end()), QVector<double>(y.begin(), y.end()), true);
 }
 
@@ -32,7 +33,7 @@ void add_spectrum(QCustomPlot& plot, const trace::SpectrumPlot& spectrum) {
     line->setData({at, at}, {0.0, 1.08});
     words += ", centroid " + fixed(at, 2) + " nm";
   }
-  write_at(plot, at, 1.1, qt(words), (red ? Qt::AlignLeft : Qt::AlignRight) | Qt::AlignVCenter, colour);
+  write_at(plot, at, 1.1, qt(words), (at < 800.0 ? Qt::AlignLeft : Qt::AlignRight) | Qt::AlignVCenter, colour);
 }
 
 double largest(const std::vector<double>& values) {
@@ -47,7 +48,7 @@ void draw_pulses(const trace::PulsePlot& pulse, double most_percent, const Canva
   QCustomPlot plot;
   dress(plot);
   plot.xAxis->grid()->setVisible(false);
-  add_curve(plot, pulse.infrared_s, pulse.infrared_percent, colour_of_band("infrared"));
+  add_curve(plot, pulse.infrared_s, pulse.infrared_percent, colour_of_band("infrared"), 6.0);  // seen below the other
   add_curve(plot, pulse.red_s, pulse.red_percent, colour_of_band("red"));
   const double end_s = std::max(pulse.red_s.empty() ? 0.0 : pulse.red_s.back(),
                                 pulse.infrared_s.empty() ? 0.0 : pulse.infrared_s.back());
@@ -58,7 +59,7 @@ void draw_pulses(const trace::PulsePlot& pulse, double most_percent, const Canva
   plot.xAxis->setLabel("s");
   plot.yAxis->setLabel("% of the mean");
   draw(plot, canvas, box.adjusted(0, 5.0, 0, 0));
-  canvas.line({box.x(), box.y(), box.width(), 4.5}, qt("set point R = " + shortest(pulse.set_point_ratio)), 2.8,
+  canvas.line({box.x(), box.y(), box.width(), 4.5}, qt("set point R = " + fixed(pulse.set_point_ratio, 1)), 2.8,
               Weight::plain, Align::centre, ink::text);
 }
 

@@ -12,8 +12,8 @@ constexpr std::size_t marks_in_a_row = 8;
 constexpr double life_row_mm = 23.0, line_at_mm = 8.0;
 
 // Equal steps: hours lie between tries and months between tests, which no scale of time shows at once.
-double place_of(std::size_t i, std::size_t count, const QRectF& box) {
-  const double step = box.width() / static_cast<double>(std::max<std::size_t>(count, 4));
+double place_of(std::size_t i, std::size_t columns, const QRectF& box) {
+  const double step = box.width() / static_cast<double>(columns);
   return box.x() + step * (static_cast<double>(i) + 0.5);
 }
 
@@ -43,16 +43,16 @@ void draw_mark(const Canvas& canvas, const LifeMark& mark, double x, double room
   words(y + 6.6, local.substr(11, 5), 2.5, ink::quiet, Weight::plain);
 }
 
-Block life_row(std::vector<LifeMark> marks, bool goes_on, const Zone& zone) {
+Block life_row(std::vector<LifeMark> marks, std::size_t columns, bool goes_on, const Zone& zone) {
   Block block;
   block.height_mm = life_row_mm;
-  block.draw = [marks = std::move(marks), goes_on, zone](const Canvas& canvas, QRectF box) {
-    const double step = box.width() / static_cast<double>(std::max<std::size_t>(marks.size(), 4));
+  block.draw = [marks = std::move(marks), columns, goes_on, zone](const Canvas& canvas, QRectF box) {
+    const double step = box.width() / static_cast<double>(columns);
     const double y = box.y() + line_at_mm;
-    const double end = goes_on ? box.right() : place_of(marks.size() - 1, marks.size(), box);
-    canvas.rule(place_of(0, marks.size(), box), y, end - place_of(0, marks.size(), box), ink::bar, 0.3);
+    const double end = goes_on ? box.right() : place_of(marks.size() - 1, columns, box);
+    canvas.rule(place_of(0, columns, box), y, end - place_of(0, columns, box), ink::bar, 0.3);
     for (std::size_t i = 0; i < marks.size(); ++i) {
-      const double x = place_of(i, marks.size(), box);
+      const double x = place_of(i, columns, box);
       if (i + 1 < marks.size())
         canvas.line({x, y - 4.0, step, 3.4}, qt(span_words(marks[i + 1].at.microseconds - marks[i].at.microseconds)),
                     2.2, Weight::plain, Align::centre, ink::quiet);
@@ -66,10 +66,12 @@ Block life_row(std::vector<LifeMark> marks, bool goes_on, const Zone& zone) {
 
 std::vector<Block> life_line(const std::vector<LifeMark>& marks, const Zone& zone) {
   std::vector<Block> blocks;
+  const std::size_t columns = std::clamp<std::size_t>(marks.size(), 4, marks_in_a_row);
   for (std::size_t at = 0; at < marks.size(); at += marks_in_a_row) {
     const std::size_t count = std::min(marks_in_a_row, marks.size() - at);
     const auto from = marks.begin() + static_cast<std::ptrdiff_t>(at);
-    blocks.push_back(life_row({from, from + static_cast<std::ptrdiff_t>(count)}, at + count < marks.size(), zone));
+    blocks.push_back(
+        life_row({from, from + static_cast<std::ptrdiff_t>(count)}, columns, at + count < marks.size(), zone));
   }
   return blocks;
 }

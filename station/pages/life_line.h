@@ -15,8 +15,8 @@ struct LifeMark {
   bool is_run = true;   ///< else an entry such as a label: a small tick below the line
 };
 
-/// Marks in the order of their entries. Time runs from left to right; where runs lie close together they are pushed
-/// apart, so that each can be told, and the times below them say what lies between. At least one mark.
+/// Marks in the order of their entries, from left to right at equal steps, eight in a row; between them how much time
+/// went by, below them the zone's clock. At least one mark.
 std::vector<Block> life_line(const std::vector<LifeMark>& marks, const Zone& zone);
 
 }  // namespace probewright::pages

@@ -83,6 +83,14 @@ QCPRange value_range(const RunChart& chart) {
   return {low - 0.12 * span, high + 0.12 * span};
 }
 
+// Name and unit where there is room for both; the name stands in the heading anyway.
+QString axis_label(const RunChart& chart) {
+  constexpr double room_mm = 40.0;
+  const std::string both = chart.name + (chart.unit.empty() ? "" : ", " + chart.unit);
+  const bool fits = elided(both, 2.7, room_mm) == qt(both);
+  return fits || chart.unit.empty() ? elided(both, 2.7, room_mm) : qt(chart.unit);
+}
+
 void fill_chart(QCustomPlot& plot, const RunChart& chart) {
   const double runs = static_cast<double>(chart.values.size());
   plot.xAxis->setRange(std::max(0.4 - 0.01 * runs, 0.05),
@@ -90,7 +98,7 @@ void fill_chart(QCustomPlot& plot, const RunChart& chart) {
   plot.xAxis->setTicker(whole_numbers(runs));
   plot.xAxis->setLabel("run of the shift");
   plot.yAxis->setRange(value_range(chart));
-  plot.yAxis->setLabel(elided(chart.name + (chart.unit.empty() ? "" : ", " + chart.unit), 2.7, 40.0));
+  plot.yAxis->setLabel(axis_label(chart));
   plot.yAxis->setNumberFormat("g");
   plot.yAxis->setNumberPrecision(7);
   if (chart.values.size() <= most_joined) add_line(plot, chart);

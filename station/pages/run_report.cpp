@@ -30,7 +30,7 @@ std::string run_times(const db::RunRecord& run, const Zone& zone) {
 
 std::string run_cycle(const db::RunRecord& run) {
   const Body* cycle = run.closing ? run.closing->bench.find("cycle_us") : nullptr;
-  return cycle && cycle->integer() ? fixed(static_cast<double>(*cycle->integer()) * 1e-6, 1) + " s" : "not told";
+  return cycle && cycle->integer() ? fixed(static_cast<double>(*cycle->integer()) * 1e-6, 1) + " s" : "";
 }
 
 std::string documents_of_run(const db::RunRecord& run) {
@@ -55,8 +55,8 @@ Pairs facts_of_run(const db::RunRecord& run, const trace::PageNotes& notes) {
               {"place", opened.station + ", nest " + std::to_string(opened.nest)},
               {"operator", opened.operator_name.empty() ? "not told" : opened.operator_name},
               {"purpose", opened.purpose + ", try " + std::to_string(opened.try_number) +
-                              (opened.emulated ? ", on an emulated bench" : "")},
-              {"cycle", run_cycle(run)}};
+                              (opened.emulated ? ", on an emulated bench" : "")}};
+  if (const std::string cycle = run_cycle(run); !cycle.empty()) pairs.push_back({"cycle", cycle});
   if (opened.ambient_temperature_C)
     pairs.push_back({"room", fixed(*opened.ambient_temperature_C, 1) + " \u00b0C at the start"});
   return pairs;
@@ -127,14 +127,14 @@ std::vector<Block> readings_of_run(const db::RunRecord& run) {
     rows.push_back({words.check, words.value, words.expanded, words.unit, words.limits, words.accepted, words.margin,
                     words.state});
   }
-  append(blocks, table({{"check", 39.0, Align::left},
-                        {"value", 19.0, Align::right},
-                        {"U (k = 2)", 16.0, Align::right},
-                        {"unit", 14.0, Align::left},
-                        {"limits", 24.0, Align::left},
-                        {"accepted", 24.0, Align::left},
-                        {"margin", 11.0, Align::right},
-                        {"state", 23.0, Align::left}},
+  append(blocks, table({{"check", 40.0, Align::left},
+                        {"value", 18.0, Align::right},
+                        {"U (k = 2)", 18.0, Align::right},
+                        {"unit", 13.0, Align::left},
+                        {"limits", 23.0, Align::left},
+                        {"accepted", 25.0, Align::left},
+                        {"margin", 13.0, Align::right},
+                        {"state", 20.0, Align::left}},
                        rows, {2.5, 2.5}));
   return blocks;
 }

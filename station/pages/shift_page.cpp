@@ -25,13 +25,14 @@ std::string other_words(const trace::PurposeFacts& other) {
 
 RunChart chart_of_series(const trace::CheckSeries& series) {
   RunChart chart;
-  chart.name = trace::shown_as(series.check) + " (" + series.model + ")";
+  chart.name = trace::shown_as(series.check);
   chart.unit = series.unit == "1" ? "" : series.unit;
   for (const auto& value : series.values)
     chart.values.push_back(value.value_or(std::numeric_limits<double>::quiet_NaN()));
   chart.lower_limit = series.lower;
   chart.upper_limit = series.upper;
-  chart.note = "One run in ten has a margin below " + trace::margin_words(series.low_margin) + "." +
+  chart.note = "Model " + series.model + ". One run in ten has a margin below " +
+               trace::margin_words(series.low_margin) + "." +
                (series.limits_changed ? " The limits changed within the shift; those of its last run are drawn." : "");
   return chart;
 }

@@ -80,14 +80,19 @@ class Drawing {
   void draw(const measure::SpectrumCapture& capture) {
     if (!certificate_) return not_drawn("the ledger has no certificate of the phantom that can be read");
     const auto measured = measure::spectrum_of(capture, *certificate_);
-    measure::Spectrum spectrum = measured ? *measured : raw_spectrum(capture, *certificate_);
+    const measure::Spectrum spectrum = measured ? *measured : raw_spectrum(capture, *certificate_);
     if (!measured) not_drawn("raw counts are drawn: " + measured.error().what());
     const double most = highest(spectrum, capture.band);
     if (!(most > 0.0)) return not_drawn("there is no light above the dark frame");
-    for (double& power : spectrum.power) power /= most;
     const std::string band{slug(capture.band)};
-    story_.spectra.push_back({band, std::move(spectrum.wavelength_nm), std::move(spectrum.power),
-                              reading_of(story_.run, band + "_centroid")});
+    SpectrumPlot plot{band, {}, {}, reading_of(story_.run, band + "_centroid")};
+    const measure::Window window = measure::line_window(capture.band);  // beyond it is the other LED's light
+    for (std::size_t i = 0; i < spectrum.power.size(); ++i) {
+      if (spectrum.wavelength_nm[i] < window.from_nm || spectrum.wavelength_nm[i] > window.to_nm) continue;
+      plot.wavelength_nm.push_back(spectrum.wavelength_nm[i]);
+      plot.power.push_back(spectrum.power[i] / most);
+    }
+    story_.spectra.push_back(std::move(plot));
   }
 
   void draw(const measure::PulseCapture& capture) {

@@ -11,11 +11,11 @@
 
 namespace probewright::trace {
 
-/// A spectrum as it is drawn: dark frame subtracted, response removed where it could be.
+/// A spectrum as it is drawn: dark frame subtracted, response removed where it could be; the window of its LED's line.
 struct SpectrumPlot {
   std::string band;                   ///< "red", "infrared"
   std::vector<double> wavelength_nm;  ///< rising; by the phantom's certificate that the run used
-  std::vector<double> power;          ///< over its highest value near the line
+  std::vector<double> power;          ///< over its highest value
   std::optional<double> centroid_nm;  ///< the run's own reading
 };
 

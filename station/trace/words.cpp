@@ -91,7 +91,7 @@ std::string plain_words(const Body& data) {
     if (value.string()) told = *value.string();
     if (value.integer()) told = std::to_string(*value.integer());
     if (value.boolean()) told = *value.boolean() ? "yes" : "no";
-    if (told.empty() || told.size() > 64) continue;  // a digest says nothing to people
+    if (told.empty() || told.size() >= 40) continue;  // a digest says nothing to people
     words += (words.empty() ? "" : "; ") + limits::reason_words(key) + ": " + told;
     if (words.size() > longest) return words.substr(0, longest) + "...";
   }
@@ -142,7 +142,8 @@ std::string verdict_words(const std::optional<db::ClosingRecord>& closing) {
 }
 
 std::string cause_words(std::string_view cause, std::string_view told, const std::vector<std::string>& failing) {
-  std::string words = told.empty() ? limits::reason_words(cause) : std::string{told};
+  const bool says_nothing = cause == "limits" || cause == "completed";  // the verdict and the checks say it
+  std::string words = !told.empty() ? std::string{told} : says_nothing ? "" : limits::reason_words(cause);
   std::string checks;
   for (const std::string& check : failing) checks += (checks.empty() ? "" : ", ") + shown_as(check);
   if (checks.empty()) return words;
