@@ -26,7 +26,8 @@ Result<std::vector<ClosedLate>> close_open_runs(db::Store& store) {
   std::vector<db::Store::Job> jobs;
   for (const db::OpenRun& run : open) {
     jobs.emplace_back([closing = late_closing(run)](db::Change& change) { change.close_run(closing); });
-    closed.push_back({run.run.value, run.serial, run.not_ok.empty() ? RunVerdict::void_run : RunVerdict::fail});
+    closed.push_back(
+        {run.run.value, run.serial, run.not_ok.empty() ? RunVerdict::void_run : RunVerdict::fail, run.nest});
   }
   for (const Result<void>& outcome : store.commit_group(jobs))
     if (!outcome) return outcome.error();

@@ -16,6 +16,7 @@ struct ClosedLate {
   std::int64_t run = 0;
   std::string serial;
   RunVerdict verdict = RunVerdict::void_run;
+  int nest = 0;  ///< where the probe sat
 };
 
 /// The line's ledger, opened for writing, and what had to be set right.

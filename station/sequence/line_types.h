@@ -88,6 +88,7 @@ struct NestView {
   std::string serial;  ///< armed or running
   std::string doing;   ///< while running: what is being measured
   int stage = 0, stages = 0;
+  bool operator==(const NestView&) const = default;
 };
 
 struct NestChanged {

@@ -18,6 +18,7 @@ struct PassageStep {
   std::string check;        ///< slug
   double expected_s = 0.0;  ///< its share of the device time
   enum class State { ahead, doing, done, left_out } state = State::ahead;
+  bool operator==(const PassageStep&) const = default;
 };
 
 /// One judged reading on the common scale of the margin rails.
@@ -30,6 +31,7 @@ struct RailMark {
   bool one_sided = false;  ///< an upper limit only: the mark runs from 0 to +1
   bool ok = false;
   bool unusable = false;  ///< no value, or its uncertainty is above the declared one: there is no position then
+  bool operator==(const RailMark&) const = default;
 };
 
 /// Points of a small plot, decimated: at most 256.
@@ -55,6 +57,7 @@ struct LastRun {
   std::string decided_by;    ///< the check with the smallest margin, slug; empty when none was judged
   bool recorded = true;      ///< false: the ledger did not take it; there is no verdict
   double cycle_s = 0.0;      ///< device seconds
+  bool operator==(const LastRun&) const = default;
 };
 
 /// One nest as its berth shows it.
@@ -67,6 +70,7 @@ struct BerthView {
   std::vector<RailMark> marks;       ///< of the run that goes on, or of the last one
   std::shared_ptr<const NestPlots> plots;
   std::optional<LastRun> last;
+  bool operator==(const BerthView&) const = default;
 };
 
 struct TallyView {
@@ -77,8 +81,10 @@ struct TallyView {
   struct Failing {
     std::string check;
     int runs = 0;
+    bool operator==(const Failing&) const = default;
   };
   std::vector<Failing> commonest_failing;  ///< at most three
+  bool operator==(const TallyView&) const = default;
 };
 
 struct OpenLotView {
@@ -86,6 +92,7 @@ struct OpenLotView {
   int sheet_revision = 0;
   int quantity = 0;
   int tested = 0;  ///< serials with a verdict in this lot
+  bool operator==(const OpenLotView&) const = default;
 };
 
 /// The answer to the newest scan.
@@ -93,6 +100,7 @@ struct ScanView {
   std::uint64_t number = 0;  ///< counts scans; 0: none yet
   bool taken = false;
   std::string words;  ///< one sentence: what the scan did, or why not and what to do
+  bool operator==(const ScanView&) const = default;
 };
 
 struct LineView {

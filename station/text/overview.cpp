@@ -1,6 +1,6 @@
 #include "station/text/overview.h"
 
-#include "station/text/cautions.h"
+#include "station/base/cautions.h"
 
 namespace probewright::text {
 

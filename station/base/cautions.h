@@ -1,8 +1,8 @@
 #pragma once
 
-namespace probewright::text {
+namespace probewright {
 
-/// What whoever relies on this program's answers must know; printed by the overview, by reports and in the README.
+/// What whoever relies on this program's answers must know; shown by the overview, by reports and by windows.
 inline constexpr const char* cautions =
     "A pass is production evidence: this probe met its limit sheet on this station. It does not show the accuracy of\n"
     "saturation readings in people; that takes controlled desaturation studies, as ISO 80601-2-61 describes.\n"
@@ -11,4 +11,4 @@ inline constexpr const char* cautions =
     "The limits, models and certificates that come with this program are a demonstration. Every one of them must be\n"
     "replaced by your own before a probe is shipped on its verdict.";
 
-}  // namespace probewright::text
+}  // namespace probewright

@@ -1,0 +1,168 @@
+#include "station/windows/line/margin_rails.h"
+
+#include <QFontMetricsF>
+#include <QPainter>
+#include <QPainterPath>
+#include <algorithm>
+
+#include "station/windows/line/rail_points.h"
+#include "station/windows/look/label_places.h"
+#include "station/windows/look/look.h"
+
+namespace probewright::windows {
+
+using Kind = RailPoint::Kind;
+
+double RailScale::y(double position) const {
+  const double held = std::clamp(position, -shown, shown);
+  const double inset = std::min(5.0, place.height() * 0.06);
+  return place.center().y() - held / shown * (place.height() / 2 - inset);
+}
+
+double RailScale::slot_width() const { return place.width() / std::max(slots, 1); }
+
+double RailScale::x(int slot) const { return place.left() + (slot + 0.5) * slot_width(); }
+
+QRectF RailScale::between() const { return {place.left(), y(1.0), place.width(), y(-1.0) - y(1.0)}; }
+
+std::vector<const RailPoint*> named_points(const std::vector<RailPoint>& points, int most) {
+  std::vector<const RailPoint*> named;
+  for (const RailPoint& point : points)
+    if (point.kind != Kind::inside) named.push_back(&point);
+  std::stable_sort(named.begin(), named.end(), [](const RailPoint* a, const RailPoint* b) {
+    if (a->kind != b->kind) return a->kind == Kind::outside;
+    return a->margin < b->margin;
+  });
+  const RailPoint* nearest = nearest_to_an_edge(points);
+  if (nearest && nearest->kind == Kind::inside) named.push_back(nearest);
+  if (static_cast<int>(named.size()) > most) named.resize(static_cast<std::size_t>(std::max(most, 0)));
+  return named;
+}
+
+namespace {
+
+/// Half the width of a mark.
+double reach(const RailScale& scale, const Look& look) {
+  return std::clamp(scale.slot_width() * 0.4, look.type().length(2.6), look.type().length(4.6));
+}
+
+void draw_rails(QPainter& painter, const RailScale& scale, const Colours& colours) {
+  const QRectF between = scale.between();
+  painter.fillRect(between, colours.well);
+  painter.setPen(QPen{colours.edge, 1.0, Qt::DotLine});
+  const double middle = std::floor(scale.y(0.0)) + 0.5;
+  painter.drawLine(QPointF{between.left(), middle}, QPointF{between.right(), middle});
+  for (const double rail : {1.0, -1.0})
+    painter.fillRect(QRectF{between.left(), std::round(scale.y(rail)) - 1.0, between.width(), 2.0}, colours.ink);
+}
+
+/// The strip that is given up for uncertainty, a post for each check: its far end is the limit itself.
+void draw_guard(QPainter& painter, const RailScale& scale, const RailPoint& point, const Colours& colours) {
+  if (!(point.guard > 0.0)) return;
+  const double half = std::max(scale.slot_width() * 0.3, 1.0), x = scale.x(point.slot);
+  const double top = scale.y(1.0 + point.guard);
+  painter.fillRect(QRectF{x - half, top, 2 * half, scale.y(1.0) - 1.0 - top}, colours.guard);
+  if (point.one_sided) return;
+  const double bottom = scale.y(-1.0 - point.guard), from = scale.y(-1.0) + 1.0;
+  painter.fillRect(QRectF{x - half, from, 2 * half, bottom - from}, colours.guard);
+}
+
+void draw_diamond(QPainter& painter, QPointF at, double r, const QColor& colour) {
+  painter.setPen(Qt::NoPen);
+  painter.setBrush(colour);
+  painter.drawPolygon(QPolygonF{{at.x(), at.y() - r}, {at.x() + r, at.y()}, {at.x(), at.y() + r}, {at.x() - r, at.y()}});
+}
+
+/// Outside: a square with a cross in it; beyond what is shown, a wedge that points on.
+void draw_outside(QPainter& painter, const RailScale& scale, const RailPoint& point, double r, const QColor& colour) {
+  const QPointF at{scale.x(point.slot), scale.y(point.position)};
+  if (std::abs(point.position) > RailScale::shown) {
+    const double up = point.position > 0 ? -1.0 : 1.0;
+    painter.setPen(Qt::NoPen);
+    painter.setBrush(colour);
+    painter.drawPolygon(QPolygonF{{at.x() - 1.3 * r, at.y() - up * r},
+                                  {at.x() + 1.3 * r, at.y() - up * r},
+                                  {at.x(), at.y() + up * 1.2 * r}});
+    return;
+  }
+  painter.setPen(QPen{colour, std::max(1.6, r * 0.4)});
+  painter.setBrush(Qt::NoBrush);
+  painter.drawLine(at + QPointF{-r, -r}, at + QPointF{r, r});
+  painter.drawLine(at + QPointF{-r, r}, at + QPointF{r, -r});
+  painter.drawRect(QRectF{at.x() - r * 1.3, at.y() - r * 1.3, 2.6 * r, 2.6 * r});
+}
+
+void draw_point(QPainter& painter, const RailScale& scale, const RailPoint& point, const Look& look) {
+  const Colours& colours = look.colours();
+  const double r = reach(scale, look), x = scale.x(point.slot);
+  if (point.kind == Kind::unknown) {
+    painter.setPen(QPen{colours.fail, 1.6});
+    painter.setBrush(colours.card);
+    painter.drawEllipse(QPointF{x, scale.y(0.0)}, r * 1.1, r * 1.1);
+    return;
+  }
+  const QColor& colour = point.kind == Kind::inside ? colours.ink : colours.fail;
+  painter.setPen(QPen{colour, 1.4});
+  painter.drawLine(QPointF{x, scale.y(point.position + point.whisker)},
+                   QPointF{x, scale.y(point.position - point.whisker)});
+  if (point.kind == Kind::inside)
+    draw_diamond(painter, {x, scale.y(point.position)}, r, colour);
+  else
+    draw_outside(painter, scale, point, r, colour);
+}
+
+/// What a mark and its whisker cover.
+QRectF covered(const RailScale& scale, const RailPoint& point, double r) {
+  const double middle = point.kind == Kind::unknown ? 0.0 : point.position;
+  const double top = scale.y(middle + point.whisker), bottom = scale.y(middle - point.whisker);
+  return QRectF{scale.x(point.slot) - r, std::min(top, scale.y(middle) - r), 2 * r,
+                std::max(bottom - top, 2 * r)};
+}
+
+/// The rails' own lines are kept free of words as well.
+std::vector<QRectF> taken_by(const RailScale& scale, const std::vector<RailPoint>& points, double r) {
+  std::vector<QRectF> taken;
+  for (const RailPoint& point : points) taken.push_back(covered(scale, point, r));
+  for (const double rail : {1.0, -1.0})
+    taken.push_back({scale.place.left(), scale.y(rail) - 1.5, scale.place.width(), 3.0});
+  return taken;
+}
+
+void draw_labels(QPainter& painter, const RailScale& scale, const std::vector<RailPoint>& points, const Look& look) {
+  const QFont font = look.type().font(Text::small);
+  const QFontMetricsF metrics{font};
+  const double r = reach(scale, look), height = metrics.height() * 0.94;
+  const int most = scale.place.height() > 5.5 * metrics.height() ? 4 : 2;
+  const auto named = named_points(points, most);
+  std::vector<LabelWish> wishes;
+  QStringList words;
+  for (const RailPoint* point : named) {
+    words << metrics.elidedText(point->name, Qt::ElideRight, scale.place.width() * 0.8);
+    const double y = point->kind == Kind::unknown ? scale.y(0.0) : scale.y(point->position);
+    wishes.push_back({{scale.x(point->slot), y}, {metrics.horizontalAdvance(words.back()) + 4, height}, r * 1.3 + 3});
+  }
+  const auto places = label_places(scale.place, wishes, taken_by(scale, points, r));
+  painter.setFont(font);
+  for (std::size_t i = 0; i < places.size(); ++i) {
+    if (!places[i]) continue;
+    painter.setPen(named[i]->kind == Kind::inside ? look.colours().ink : look.colours().fail);
+    painter.drawText(*places[i], Qt::AlignCenter | Qt::TextSingleLine, words[static_cast<qsizetype>(i)]);
+  }
+}
+
+}  // namespace
+
+void draw_margin_rails(QPainter& painter, const QRectF& place, const std::vector<RailPoint>& points, int slots,
+                       const Look& look) {
+  const RailScale scale{place, slots};
+  painter.save();
+  painter.setClipRect(place);
+  draw_rails(painter, scale, look.colours());
+  painter.setRenderHint(QPainter::Antialiasing);
+  for (const RailPoint& point : points) draw_guard(painter, scale, point, look.colours());
+  for (const RailPoint& point : points) draw_point(painter, scale, point, look);
+  draw_labels(painter, scale, points, look);
+  painter.restore();
+}
+
+}  // namespace probewright::windows
