@@ -15,9 +15,7 @@ void LineFeed::put(Change change) {
 sequence::LineHost::Listener LineFeed::listener() {
   return {
       [this](const sequence::LineEvent& event) { put([&](Told& told) { told.events.push_back(event); }); },
-      [this](std::shared_ptr<const sequence::LineView> view) {
-        put([&](Told& told) { told.view = std::move(view); });
-      },
+      [this](std::shared_ptr<const sequence::LineView> view) { put([&](Told& told) { told.view = std::move(view); }); },
       [this](const std::string& what) { put([&](Told& told) { told.broken = what; }); },
   };
 }

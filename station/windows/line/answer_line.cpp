@@ -46,7 +46,7 @@ void AnswerLine::show_beginning() {
   const auto& view = model_.view();
   label_->say(!view.person ? tr("Nobody is signed in. Scan your badge.")
               : !view.lot  ? tr("No lot is open. Scan the lot card.")
-                           : tr("Scan the first probe."));
+                           : tr("Scan a probe."));
 }
 
 void AnswerLine::show_answer() {

@@ -35,19 +35,23 @@ Berth::Berth(const Look& look, QWidget* parent) : QWidget(parent), look_(look) {
   connect(&look, &Look::changed, this, &Berth::plan);
 }
 
-QRect Berth::part(const QRectF& place) const { return place.toAlignedRect().adjusted(-2, -2, 2, 2); }
+QRect Berth::part(const QRectF& place) const { return place.toAlignedRect().adjusted(-2, -4, 2, 4); }
 
 void Berth::show_content(BerthContent content) {
   const BerthContent before = std::exchange(content_, std::move(content));
   if (!same_head(before, content_)) update(part(plan_.head));
-  if (before.passage != content_.passage || before.progress != content_.progress) update(part(plan_.bar));
-  if (before.points != content_.points || before.slots != content_.slots) update(part(plan_.rails));
+  if (before.passage != content_.passage || before.progress != content_.progress || before.failed != content_.failed)
+    update(part(plan_.bar));
+  if (before.points != content_.points || before.rail_places != content_.rail_places) update(part(plan_.rails));
   if (before.plots != content_.plots) {
     update(part(plan_.spectra));
     update(part(plan_.pulses));
   }
   if (before.to_do != content_.to_do || before.why != content_.why) update(part(plan_.words));
-  if (const QString spoken = content_.spoken(); spoken != accessibleName()) setAccessibleName(spoken);
+  if (const QString spoken = content_.spoken(); spoken != accessibleName()) {
+    setAccessibleName(spoken);
+    setToolTip(spoken);  // in a small berth not all of it is written
+  }
 }
 
 void Berth::set_chosen(bool chosen) {
@@ -76,8 +80,9 @@ void Berth::paintEvent(QPaintEvent* event) {
   draw_card(painter);
   if (wanted(plan_.head)) draw_head(painter);
   if (wanted(plan_.bar))
-    draw_passage_bar(painter, plan_.bar, segments_of(content_.passage, content_.progress), look_.colours());
-  if (wanted(plan_.rails)) draw_margin_rails(painter, plan_.rails, content_.points, content_.slots, look_);
+    draw_passage_bar(painter, plan_.bar, segments_of(content_.passage, content_.progress, content_.failed),
+                     look_.colours());
+  if (wanted(plan_.rails)) draw_margin_rails(painter, plan_.rails, content_.points, content_.rail_places, look_);
   if (wanted(plan_.spectra)) draw_spectra(painter, plan_.spectra, content_.plots.get(), look_);
   if (wanted(plan_.pulses)) draw_pulses(painter, plan_.pulses, content_.plots.get(), look_);
   if (wanted(plan_.words)) draw_words(painter);
@@ -113,8 +118,9 @@ void Berth::draw_head(QPainter& painter) {
   QRectF row = plan_.headline;
   write_line(painter, row, content_.headline, font, colours.of(content_.tone));
   if (content_.time_left >= 0.0) {
-    const QRectF strip{plan_.head.left() + 2, plan_.head.bottom() - look_.type().length(4),
-                       (plan_.head.width() - 4) * content_.time_left, look_.type().length(3)};
+    const double thick = look_.type().length(3);
+    const double top = plan_.short_title ? plan_.head.top() + 2 : plan_.head.bottom() - thick - 1;
+    const QRectF strip{plan_.head.left() + 2, top, (plan_.head.width() - 4) * content_.time_left, thick};
     painter.fillRect(strip, colours.wait);
   }
 }
@@ -123,13 +129,14 @@ void Berth::draw_title(QPainter& painter) {
   const Colours& colours = look_.colours();
   const TypeScale& type = look_.type();
   const bool own_row = !plan_.serial.isEmpty();
-  const QRectF serial = own_row ? plan_.serial : plan_.title;
-  write_line(painter, serial, content_.serial, type.font(Text::serial), colours.ink,
+  write_line(painter, own_row ? plan_.serial : plan_.title, content_.serial, type.font(Text::serial), colours.ink,
              own_row ? Qt::AlignLeft : Qt::AlignRight);
   QFont bold = type.font(Text::body);
   bold.setBold(true);
-  write_line(painter, plan_.title, content_.title, bold, colours.ink);
-  QRectF note = plan_.title.adjusted(type.width(Text::body, content_.title) * 1.12 + type.length(8), 0, 0, 0);
+  const QString title = plan_.short_title ? QString::number(content_.nest) : content_.title;
+  write_line(painter, plan_.title, title, bold, colours.ink);
+  if (plan_.short_title) return;
+  QRectF note = plan_.title.adjusted(type.width(Text::body, title) * 1.12 + type.length(8), 0, 0, 0);
   if (!own_row) note.setRight(note.right() - type.width(Text::serial, content_.serial) - type.length(6));
   write_line(painter, note, content_.note, type.font(Text::body), colours.quiet,
              own_row ? Qt::AlignRight : Qt::AlignLeft);
@@ -137,11 +144,14 @@ void Berth::draw_title(QPainter& painter) {
 
 void Berth::draw_words(QPainter& painter) {
   const TypeScale& type = look_.type();
+  const bool wide = plan_.form == BerthPlan::Form::wide;
   QRectF left = plan_.words;
   const auto fit = [&](Text text) { return static_cast<int>(left.height() / type.line(text) + 0.05); };
-  const Text strong = plan_.form == BerthPlan::Form::wide ? Text::body : Text::strong;
+  const Text strong = wide ? Text::body : Text::strong;
   left.setTop(left.top() + write(painter, left, {content_.to_do, type.font(strong), fit(strong)}, look_.colours().ink));
-  write(painter, left, {content_.why, type.font(Text::body), fit(Text::body)}, look_.colours().quiet);
+  const Written why{content_.why, type.font(Text::body), fit(Text::body)};
+  // Half a reason helps nobody: where there is little room, it is told whole or not at all.
+  if (!wide || lines_of(why, left.width()) <= why.most_lines) write(painter, left, why, look_.colours().quiet);
 }
 
 }  // namespace probewright::windows

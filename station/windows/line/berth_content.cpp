@@ -47,8 +47,8 @@ const JudgedReading* deciding(const RunOutcome* outcome, const LastRun& last) {
                                     [&](const JudgedReading& judged) { return judged.reading.check == check; });
     return found == outcome->readings.end() ? nullptr : &*found;
   };
-  const bool decided = std::find(outcome->failing.begin(), outcome->failing.end(), last.decided_by) !=
-                       outcome->failing.end();
+  const bool decided =
+      std::find(outcome->failing.begin(), outcome->failing.end(), last.decided_by) != outcome->failing.end();
   if (decided) return named(last.decided_by);
   return outcome->failing.empty() ? nullptr : named(outcome->failing.front());
 }
@@ -56,8 +56,7 @@ const JudgedReading* deciding(const RunOutcome* outcome, const LastRun& last) {
 QString why_it_failed(const LastRun& last, const RunOutcome* outcome) {
   const JudgedReading* judged = deciding(outcome, last);
   QString words = judged ? failing_words(*judged) : as_sentence(said(last.cause_words));
-  if (!last.likely_cause.empty())
-    words += QLatin1Char(' ') + Say::tr("Likely cause: %1").arg(as_sentence(said(last.likely_cause)));
+  if (!last.likely_cause.empty()) words += QLatin1Char(' ') + Say::tr("Likely cause: %1.").arg(said(last.likely_cause));
   return words;
 }
 
@@ -73,8 +72,8 @@ void tell_verdict(BerthContent& content, const LastRun& last, const RunOutcome* 
   if (!last.recorded) {
     content.shape = Shape::gap, content.tone = Tone::fail;
     content.headline = Say::tr("Not recorded");
-    content.to_do = Say::tr("Set %1 aside: it has no verdict.").arg(content.serial);
-    content.why = Say::tr("The ledger did not take this run.");
+    content.to_do = as_sentence(said(last.what_to_do));
+    content.why = Say::tr("The ledger did not take this run, so it has no verdict.");
     return;
   }
   content.shape = shape_of(last.verdict), content.tone = tone_of(last.verdict);
@@ -96,8 +95,8 @@ void tell_not_ready(BerthContent& content, const BerthView& view) {
   }
   // The probe that was in it still needs a hand, so its verdict stays in sight.
   content.serial = text_of(view.last->serial);
-  content.note = view.last->recorded ? Say::tr("last: %1").arg(verdict_words(view.last->verdict))
-                                     : Say::tr("last: not recorded");
+  content.note =
+      view.last->recorded ? Say::tr("last: %1").arg(verdict_words(view.last->verdict)) : Say::tr("last: not recorded");
   content.to_do = what;
   content.why = remedy;
   if (view.last->verdict == RunVerdict::void_run && view.last->recorded)
@@ -123,9 +122,17 @@ void tell_running(BerthContent& content, const NestView& nest) {
   if (nest.stages > 0) content.note = Say::tr("part %1 of %2").arg(nest.stage).arg(nest.stages);
 }
 
+/// What is still to be done once the probe is out.
+std::string what_is_left_to_do(std::string words) {
+  for (const std::string_view taken_out : {"take the probe out and ", "take the probe out; "})
+    if (words.starts_with(taken_out)) return words.substr(taken_out.size());
+  return words;
+}
+
 void tell_empty(BerthContent& content, const BerthView& view, const RunOutcome* outcome) {
   if (view.last) {
     tell_verdict(content, *view.last, outcome);
+    content.to_do = as_sentence(said(what_is_left_to_do(view.last->what_to_do)));
     content.note = Say::tr("empty again");
     return;
   }
@@ -154,14 +161,26 @@ BerthContent berth_content(const BerthView& view, const RunOutcome* outcome) {
   content.passage = view.passage;
   content.progress = view.progress;
   content.points = rail_points(view);
-  content.slots = static_cast<int>(std::max(view.passage.size(), content.points.size()));
+  content.rail_places = static_cast<int>(std::max(view.passage.size(), content.points.size()));
+  for (const RailMark& mark : view.marks)
+    if (!mark.ok) content.failed.push_back(mark.check);
   content.plots = view.plots;
   switch (view.nest.state) {
-    case NestState::not_ready: tell_not_ready(content, view); break;
-    case NestState::empty: tell_empty(content, view, outcome); break;
-    case NestState::occupied: tell_occupied(content, view, outcome); break;
-    case NestState::armed: tell_armed(content, view.nest, view.armed_left_s); break;
-    case NestState::running: tell_running(content, view.nest); break;
+    case NestState::not_ready:
+      tell_not_ready(content, view);
+      break;
+    case NestState::empty:
+      tell_empty(content, view, outcome);
+      break;
+    case NestState::occupied:
+      tell_occupied(content, view, outcome);
+      break;
+    case NestState::armed:
+      tell_armed(content, view.nest, view.armed_left_s);
+      break;
+    case NestState::running:
+      tell_running(content, view.nest);
+      break;
   }
   return content;
 }
@@ -175,23 +194,34 @@ QString BerthContent::spoken() const {
 
 QString verdict_words(RunVerdict verdict) {
   switch (verdict) {
-    case RunVerdict::pass: return Say::tr("Pass");
-    case RunVerdict::fail: return Say::tr("Fail");
-    case RunVerdict::void_run: break;
+    case RunVerdict::pass:
+      return Say::tr("Pass");
+    case RunVerdict::fail:
+      return Say::tr("Fail");
+    case RunVerdict::void_run:
+      break;
   }
   return Say::tr("Void");
 }
 
 QString purpose_words(Purpose purpose) {
   switch (purpose) {
-    case Purpose::production: return Say::tr("production");
-    case Purpose::engineering: return Say::tr("engineering");
-    case Purpose::reference: return Say::tr("reference probe");
-    case Purpose::challenge: return Say::tr("challenge probe");
-    case Purpose::gauge: return Say::tr("gauge study");
-    case Purpose::echo: return Say::tr("echo");
-    case Purpose::training: return Say::tr("training");
-    case Purpose::returned: break;
+    case Purpose::production:
+      return Say::tr("production");
+    case Purpose::engineering:
+      return Say::tr("engineering");
+    case Purpose::reference:
+      return Say::tr("reference probe");
+    case Purpose::challenge:
+      return Say::tr("challenge probe");
+    case Purpose::gauge:
+      return Say::tr("gauge study");
+    case Purpose::echo:
+      return Say::tr("echo");
+    case Purpose::training:
+      return Say::tr("training");
+    case Purpose::returned:
+      break;
   }
   return Say::tr("returned probe");
 }

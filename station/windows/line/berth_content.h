@@ -33,15 +33,16 @@ struct BerthContent {
   QString note;    ///< beside the title: what is so about the nest
   Shape shape = Shape::none;
   Tone tone = Tone::plain;
-  bool washed = false;  ///< the head has the tone's ground
-  QString headline;     ///< the verdict, or what goes on
-  QString to_do;        ///< one sentence for the hands
-  QString why;          ///< one or two that explain
+  bool washed = false;      ///< the head has the tone's ground
+  QString headline;         ///< the verdict, or what goes on
+  QString to_do;            ///< one sentence for the hands
+  QString why;              ///< one or two that explain
   double time_left = -1.0;  ///< while armed: share of the time that is left; else negative
   std::vector<sequence::PassageStep> passage;
   double progress = 0.0;
+  std::vector<std::string> failed;  ///< checks whose reading lies outside
   bool running = false;
-  int slots = 0;  ///< places between the rails
+  int rail_places = 0;  ///< places between the rails
   std::vector<RailPoint> points;
   std::shared_ptr<const sequence::NestPlots> plots;
   bool operator==(const BerthContent&) const = default;

@@ -10,7 +10,7 @@ using Form = BerthPlan::Form;
 
 // Lengths in lines of body text, so that everything grows with the text.
 constexpr double middle_height = 12.5, tall_height = 20.5, tall_width = 13.0;
-constexpr double wide_height = 4.4, wide_width = 11.5;
+constexpr double wide_height = 3.7, wide_width = 10.5;
 
 /// Cuts a strip off the top of what is left.
 QRectF cut(QRectF& left, double height) {
@@ -44,7 +44,9 @@ void plan_stacked(BerthPlan& plan, QSizeF size, const TypeScale& type) {
   cut(left, pad * 0.8);
   plan.bar = cut(left, line * 0.55);
   cut(left, line * 0.45);
-  const double word_lines = plan.form == Form::tall ? 5.2 : size.width() < 12 * line ? 4.2 : 3.2;
+  const double word_lines = plan.form == Form::tall    ? (size.width() > 24 * line ? 3.6 : 5.2)
+                            : size.width() < 12 * line ? 4.2
+                                                       : 3.2;
   const double plots = plan.form == Form::tall ? line * 4.6 : 0.0;
   const double rails = std::clamp(left.height() - word_lines * line - plots - line, line * 3.0, line * 14.0);
   plan.rails = cut(left, rails);
@@ -61,24 +63,29 @@ void plan_stacked(BerthPlan& plan, QSizeF size, const TypeScale& type) {
 
 void plan_wide(BerthPlan& plan, QSizeF size, const TypeScale& type) {
   const double line = type.line(Text::body), pad = type.length(8);
+  const bool low = size.height() < 5.6 * line;  // the words then take the whole width
   const double serial = type.width(Text::serial, QStringLiteral("AQ20-048-00137 "));
-  const double words = std::max(serial, size.width() * 0.46 - pad);
+  const double share = low ? serial + type.width(Text::body, QStringLiteral("16")) : size.width() * 0.46 - pad;
+  const double words = std::max(serial, share);
   QRectF left{pad, pad * 0.5, words, size.height() - pad};
-  plan.head = {0, 0, words + 1.5 * pad, size.height()};
-  plan.title = cut(left, line);
-  if (!one_title_row(words, type) && left.height() > 3.2 * line) plan.serial = cut(left, line);
-  place_headline(plan, cut(left, type.line(Text::headline)), type, Text::headline);
+  plan.short_title = low;
+  plan.title = cut(left, low ? type.line(Text::serial) : line);
+  if (!low && !one_title_row(words, type)) plan.serial = cut(left, line);
+  place_headline(plan, cut(left, type.line(Text::headline) * (low ? 1.0 : 1.1)), type, Text::headline);
+  const double rails_bottom = low ? left.top() : size.height() - pad;
+  plan.head = {0, 0, words + 1.5 * pad, low ? left.top() : size.height()};
   plan.words = left;
-  QRectF right{plan.head.right() + pad, pad, size.width() - plan.head.right() - 2 * pad, size.height() - 2 * pad};
-  plan.bar = cut(right, line * 0.4);
-  cut(right, line * 0.3);
+  if (low) plan.words.setWidth(size.width() - 2 * pad);
+  QRectF right{plan.head.right() + pad * 0.5, pad, size.width() - plan.head.right() - pad * 1.5, rails_bottom - pad};
+  plan.bar = cut(right, line * 0.35);
+  cut(right, line * 0.25);
   plan.rails = right;
 }
 
 double score(QSizeF berth, const TypeScale& type) {
   const double line = type.line(Text::body), width = berth.width() / line, height = berth.height() / line;
   const double stacked = std::min({width / tall_width, height / middle_height, 1.6});
-  const double wide = 0.8 * std::min({width / (1.3 * wide_width), height / wide_height, 1.0});
+  const double wide = 0.8 * std::min({width / (1.3 * wide_width), height / (1.75 * wide_height), 1.0});
   return height >= middle_height ? stacked : std::max(wide, stacked * 0.5);
 }
 
@@ -99,7 +106,7 @@ BerthPlan plan_berth(QSizeF size, const TypeScale& type) {
 
 QSizeF least_berth(const TypeScale& type) {
   const double line = type.line(Text::body);
-  return {std::max(wide_width * line, type.width(Text::serial, QStringLiteral("AQ20-048-00137")) * 1.7),
+  return {std::max(wide_width * line, type.width(Text::serial, QStringLiteral("AQ20-048-00137 ")) * 1.6),
           wide_height * line};
 }
 

@@ -13,9 +13,10 @@ struct BerthPlan {
     middle,  ///< without plots
     wide     ///< low: words on the left, rails on the right
   } form = Form::tall;
-  QRectF head;   ///< title row and headline, with its ground
-  QRectF title;  ///< nest, note, serial
-  QRectF serial;  ///< where the serial has a row of its own; else empty: it stands in the title row
+  QRectF head;               ///< title row and headline, with its ground
+  QRectF title;              ///< nest, note, serial
+  bool short_title = false;  ///< the nest's number alone; no note
+  QRectF serial;             ///< where the serial has a row of its own; else empty: it stands in the title row
   QRectF shape, headline;
   Text headline_text = Text::verdict;
   QRectF bar, rails, spectra, pulses;  ///< plots with their captions

@@ -19,7 +19,7 @@ double RailScale::y(double position) const {
   return place.center().y() - held / shown * (place.height() / 2 - inset);
 }
 
-double RailScale::slot_width() const { return place.width() / std::max(slots, 1); }
+double RailScale::slot_width() const { return place.width() / std::max(rail_places, 1); }
 
 double RailScale::x(int slot) const { return place.left() + (slot + 0.5) * slot_width(); }
 
@@ -43,7 +43,7 @@ namespace {
 
 /// Half the width of a mark.
 double reach(const RailScale& scale, const Look& look) {
-  return std::clamp(scale.slot_width() * 0.4, look.type().length(2.6), look.type().length(4.6));
+  return std::clamp(scale.slot_width() * 0.45, 1.5, look.type().length(4.6));
 }
 
 void draw_rails(QPainter& painter, const RailScale& scale, const Colours& colours) {
@@ -56,21 +56,27 @@ void draw_rails(QPainter& painter, const RailScale& scale, const Colours& colour
     painter.fillRect(QRectF{between.left(), std::round(scale.y(rail)) - 1.0, between.width(), 2.0}, colours.ink);
 }
 
-/// The strip that is given up for uncertainty, a post for each check: its far end is the limit itself.
-void draw_guard(QPainter& painter, const RailScale& scale, const RailPoint& point, const Colours& colours) {
+/// The strip that is given up for uncertainty: a post for each check, outwards from the rail; its cap is the limit
+/// itself.
+void draw_post(QPainter& painter, const RailScale& scale, const RailPoint& point, double side, const Look& look) {
+  const double half = std::clamp(scale.slot_width() * 0.34, 1.5, look.type().length(5)), x = scale.x(point.slot);
+  const double from = scale.y(side), to = scale.y(side * (1.0 + point.guard)), thin = look.type().length(1.2);
+  const QColor& colour = look.colours().guard;
+  painter.fillRect(QRectF{QPointF{x - thin / 2, std::min(from, to)}, QSizeF{thin, std::abs(to - from)}}, colour);
+  painter.fillRect(QRectF{x - half, to - thin / 2, 2 * half, thin}, colour);
+}
+
+void draw_guard(QPainter& painter, const RailScale& scale, const RailPoint& point, const Look& look) {
   if (!(point.guard > 0.0)) return;
-  const double half = std::max(scale.slot_width() * 0.3, 1.0), x = scale.x(point.slot);
-  const double top = scale.y(1.0 + point.guard);
-  painter.fillRect(QRectF{x - half, top, 2 * half, scale.y(1.0) - 1.0 - top}, colours.guard);
-  if (point.one_sided) return;
-  const double bottom = scale.y(-1.0 - point.guard), from = scale.y(-1.0) + 1.0;
-  painter.fillRect(QRectF{x - half, from, 2 * half, bottom - from}, colours.guard);
+  draw_post(painter, scale, point, 1.0, look);
+  if (!point.one_sided) draw_post(painter, scale, point, -1.0, look);
 }
 
 void draw_diamond(QPainter& painter, QPointF at, double r, const QColor& colour) {
   painter.setPen(Qt::NoPen);
   painter.setBrush(colour);
-  painter.drawPolygon(QPolygonF{{at.x(), at.y() - r}, {at.x() + r, at.y()}, {at.x(), at.y() + r}, {at.x() - r, at.y()}});
+  painter.drawPolygon(
+      QPolygonF{{at.x(), at.y() - r}, {at.x() + r, at.y()}, {at.x(), at.y() + r}, {at.x() - r, at.y()}});
 }
 
 /// Outside: a square with a cross in it; beyond what is shown, a wedge that points on.
@@ -80,9 +86,8 @@ void draw_outside(QPainter& painter, const RailScale& scale, const RailPoint& po
     const double up = point.position > 0 ? -1.0 : 1.0;
     painter.setPen(Qt::NoPen);
     painter.setBrush(colour);
-    painter.drawPolygon(QPolygonF{{at.x() - 1.3 * r, at.y() - up * r},
-                                  {at.x() + 1.3 * r, at.y() - up * r},
-                                  {at.x(), at.y() + up * 1.2 * r}});
+    painter.drawPolygon(QPolygonF{
+        {at.x() - 1.3 * r, at.y() - up * r}, {at.x() + 1.3 * r, at.y() - up * r}, {at.x(), at.y() + up * 1.2 * r}});
     return;
   }
   painter.setPen(QPen{colour, std::max(1.6, r * 0.4)});
@@ -115,17 +120,45 @@ void draw_point(QPainter& painter, const RailScale& scale, const RailPoint& poin
 QRectF covered(const RailScale& scale, const RailPoint& point, double r) {
   const double middle = point.kind == Kind::unknown ? 0.0 : point.position;
   const double top = scale.y(middle + point.whisker), bottom = scale.y(middle - point.whisker);
-  return QRectF{scale.x(point.slot) - r, std::min(top, scale.y(middle) - r), 2 * r,
-                std::max(bottom - top, 2 * r)};
+  return QRectF{scale.x(point.slot) - r, std::min(top, scale.y(middle) - r), 2 * r, std::max(bottom - top, 2 * r)};
 }
 
-/// The rails' own lines are kept free of words as well.
+/// What words must not cover: marks and whiskers, and the rails' own lines.
 std::vector<QRectF> taken_by(const RailScale& scale, const std::vector<RailPoint>& points, double r) {
   std::vector<QRectF> taken;
   for (const RailPoint& point : points) taken.push_back(covered(scale, point, r));
   for (const double rail : {1.0, -1.0})
     taken.push_back({scale.place.left(), scale.y(rail) - 1.5, scale.place.width(), 3.0});
   return taken;
+}
+
+/// What they had better not cover: the guard posts.
+std::vector<QRectF> posts_of(const RailScale& scale, const std::vector<RailPoint>& points) {
+  std::vector<QRectF> posts;
+  const double half = scale.slot_width() * 0.34;
+  for (const RailPoint& point : points)
+    for (const double side : {1.0, -1.0}) {
+      if (side < 0 && point.one_sided) continue;
+      const double from = scale.y(side), to = scale.y(side * (1.0 + point.guard));
+      posts.push_back({scale.x(point.slot) - half, std::min(from, to) - 1, 2 * half, std::abs(to - from) + 2});
+    }
+  return posts;
+}
+
+/// Places that keep clear of the posts as well, and where there is none, such as only keep clear of the marks.
+std::vector<std::optional<QRectF>> label_rects(const RailScale& scale, const std::vector<LabelWish>& wishes,
+                                               const std::vector<RailPoint>& points, double r) {
+  std::vector<QRectF> taken = taken_by(scale, points, r), all = posts_of(scale, points);
+  all.insert(all.end(), taken.begin(), taken.end());
+  auto places = label_places(scale.place, wishes, all);
+  for (std::size_t i = 0; i < places.size(); ++i) {
+    if (places[i]) continue;
+    std::vector<QRectF> others = taken;
+    for (const auto& place : places)
+      if (place) others.push_back(*place);
+    places[i] = label_places(scale.place, {wishes[i]}, others).front();
+  }
+  return places;
 }
 
 void draw_labels(QPainter& painter, const RailScale& scale, const std::vector<RailPoint>& points, const Look& look) {
@@ -141,7 +174,7 @@ void draw_labels(QPainter& painter, const RailScale& scale, const std::vector<Ra
     const double y = point->kind == Kind::unknown ? scale.y(0.0) : scale.y(point->position);
     wishes.push_back({{scale.x(point->slot), y}, {metrics.horizontalAdvance(words.back()) + 4, height}, r * 1.3 + 3});
   }
-  const auto places = label_places(scale.place, wishes, taken_by(scale, points, r));
+  const auto places = label_rects(scale, wishes, points, r);
   painter.setFont(font);
   for (std::size_t i = 0; i < places.size(); ++i) {
     if (!places[i]) continue;
@@ -152,14 +185,14 @@ void draw_labels(QPainter& painter, const RailScale& scale, const std::vector<Ra
 
 }  // namespace
 
-void draw_margin_rails(QPainter& painter, const QRectF& place, const std::vector<RailPoint>& points, int slots,
+void draw_margin_rails(QPainter& painter, const QRectF& place, const std::vector<RailPoint>& points, int rail_places,
                        const Look& look) {
-  const RailScale scale{place, slots};
+  const RailScale scale{place, rail_places};
   painter.save();
   painter.setClipRect(place);
   draw_rails(painter, scale, look.colours());
   painter.setRenderHint(QPainter::Antialiasing);
-  for (const RailPoint& point : points) draw_guard(painter, scale, point, look.colours());
+  for (const RailPoint& point : points) draw_guard(painter, scale, point, look);
   for (const RailPoint& point : points) draw_point(painter, scale, point, look);
   draw_labels(painter, scale, points, look);
   painter.restore();

@@ -13,7 +13,7 @@ class Look;
 /// Where things stand between the rails: the common scale of all checks in px. Pure.
 struct RailScale {
   QRectF place;
-  int slots = 1;
+  int rail_places = 1;
 
   static constexpr double shown = 1.45;  ///< positions from -shown to +shown are in sight
   double y(double position) const;       ///< a position beyond what is shown stands at the edge
@@ -22,9 +22,9 @@ struct RailScale {
   QRectF between() const;  ///< from rail to rail
 };
 
-/// Draws the marks of a run between the two acceptance limits: guard posts outside them, whiskers, what is nearest to an
-/// edge or outside named beside its mark.
-void draw_margin_rails(QPainter& painter, const QRectF& place, const std::vector<RailPoint>& points, int slots,
+/// Draws the marks of a run between the two acceptance limits: guard posts outside them, whiskers, what is nearest to
+/// an edge or outside named beside its mark.
+void draw_margin_rails(QPainter& painter, const QRectF& place, const std::vector<RailPoint>& points, int rail_places,
                        const Look& look);
 
 /// Which points are named, the most important first: those outside and without a value by rising margin, and the one

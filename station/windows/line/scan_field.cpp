@@ -15,11 +15,20 @@ namespace probewright::windows {
 void ScanEdit::keyPressEvent(QKeyEvent* event) {
   if (!text().isEmpty()) return QLineEdit::keyPressEvent(event);
   switch (event->key()) {
-    case Qt::Key_Left: emit moved(-1, 0); return;
-    case Qt::Key_Right: emit moved(1, 0); return;
-    case Qt::Key_Up: emit moved(0, -1); return;
-    case Qt::Key_Down: emit moved(0, 1); return;
-    default: QLineEdit::keyPressEvent(event);
+    case Qt::Key_Left:
+      emit moved(-1, 0);
+      return;
+    case Qt::Key_Right:
+      emit moved(1, 0);
+      return;
+    case Qt::Key_Up:
+      emit moved(0, -1);
+      return;
+    case Qt::Key_Down:
+      emit moved(0, 1);
+      return;
+    default:
+      QLineEdit::keyPressEvent(event);
   }
 }
 
@@ -56,7 +65,8 @@ ScanField::ScanField(const Look& look, QWidget* parent)
 
 void ScanField::set_shown_forms(const QStringList& patterns) {
   forms_.clear();
-  for (const QString& pattern : QStringList{QStringLiteral("LOT/.*"), QStringLiteral("[Nn][Ee][Ss][Tt] *[0-9]*")} + patterns)
+  for (const QString& pattern :
+       QStringList{QStringLiteral("LOT/.*"), QStringLiteral("[Nn][Ee][Ss][Tt] *[0-9]*")} + patterns)
     forms_.emplace_back(pattern);
 }
 

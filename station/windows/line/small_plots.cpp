@@ -68,7 +68,7 @@ QString spectra_caption(const NestPlots* plots) {
   const auto span = plots ? span_of(plots->red_spectrum.x, plots->infrared_spectrum.x) : std::nullopt;
   if (!span) return Say::tr("spectra");
   const auto number = [](float value) { return QString::fromStdString(fixed(static_cast<double>(value), 0)); };
-  return Say::tr("spectra, %1 to %2 nm").arg(number(span->least), number(span->most));
+  return Say::tr("%1 to %2 nm").arg(number(span->least), number(span->most));
 }
 
 QString pulses_caption(const NestPlots* plots) {

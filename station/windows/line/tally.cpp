@@ -28,8 +28,8 @@ void Tally::set_low(bool low) {
 
 void Tally::dress() {
   const TypeScale& type = look_.type();
-  setFixedHeight(static_cast<int>(low_ ? type.line(Text::strong) * 1.5
-                                       : type.line(Text::figure) + 2.2 * type.line(Text::body)));
+  setFixedHeight(
+      static_cast<int>(low_ ? type.line(Text::strong) * 1.5 : type.line(Text::figure) + 2.2 * type.line(Text::body)));
   update();
 }
 
@@ -50,8 +50,9 @@ std::vector<Tally::Figure> Tally::figures() const {
                      lot_ ? tr("%1 of %2 in this lot").arg(lot_->tested).arg(lot_->quantity) : QString{}});
   const double share = shown_.tested > 0 ? 100.0 * shown_.passed_first_time / shown_.tested : 0.0;
   figures.push_back({whole(shown_.passed_first_time), tr("passed first time"),
-                     shown_.tested > 0 ? tr("%1 % of %2").arg(QString::fromStdString(fixed(share, 1))).arg(shown_.tested)
-                                       : QString{}});
+                     shown_.tested > 0
+                         ? tr("%1 % of %2").arg(QString::fromStdString(fixed(share, 1))).arg(shown_.tested)
+                         : QString{}});
   figures.push_back({whole(shown_.failed), tr("failed"), {}});
   figures.push_back({whole(shown_.voids), tr("void"), {}});
   figures.push_back({QString::fromStdString(fixed(shown_.probes_per_hour, 0)), tr("an hour"), {}});
@@ -69,9 +70,9 @@ double Tally::draw_figures(QPainter& painter) {
   const TypeScale& type = look_.type();
   double x = type.length(16);
   for (const Figure& figure : figures()) {
-    const double width =
-        std::max({type.width(Text::figure, figure.number), type.width(Text::body, figure.words),
-                  type.width(Text::body, figure.more)}) + type.length(34);
+    const double width = std::max({type.width(Text::figure, figure.number), type.width(Text::body, figure.words),
+                                   type.width(Text::body, figure.more)}) +
+                         type.length(34);
     QRectF left{x, 0, width, static_cast<double>(height())};
     left.setTop(write(painter, left, {figure.number, type.font(Text::figure), 1}, look_.colours().ink));
     left.setTop(left.top() + write(painter, left, {figure.words, type.font(Text::body), 1}, look_.colours().ink));

@@ -7,8 +7,8 @@ namespace probewright::windows {
 
 /// A label that wants to stand beside a point.
 struct LabelWish {
-  QPointF at;     ///< the point
-  QSizeF size;    ///< of the label
+  QPointF at;         ///< the point
+  QSizeF size;        ///< of the label
   double away = 4.0;  ///< room between both
 };
 

@@ -27,8 +27,11 @@ void draw_tray(const Square& square) { square.path({{0.12, 0.62}, {0.12, 0.9}, {
 void draw_lines(const Square& square, Shape shape, const QColor& colour) {
   QPainter& painter = square.painter;
   switch (shape) {
-    case Shape::tick: return square.path({{0.1, 0.55}, {0.38, 0.83}, {0.9, 0.2}});
-    case Shape::cross: square.path({{0.16, 0.16}, {0.84, 0.84}}); return square.path({{0.84, 0.16}, {0.16, 0.84}});
+    case Shape::tick:
+      return square.path({{0.1, 0.55}, {0.38, 0.83}, {0.9, 0.2}});
+    case Shape::cross:
+      square.path({{0.16, 0.16}, {0.84, 0.84}});
+      return square.path({{0.84, 0.16}, {0.16, 0.84}});
     case Shape::crossbar:
       painter.drawEllipse(square.inner(0.1));
       return square.path({{0.28, 0.5}, {0.72, 0.5}});
@@ -40,7 +43,9 @@ void draw_lines(const Square& square, Shape shape, const QColor& colour) {
       draw_tray(square);
       square.path({{0.5, 0.68}, {0.5, 0.1}});
       return square.path({{0.27, 0.32}, {0.5, 0.09}, {0.73, 0.32}});
-    case Shape::ring: painter.drawEllipse(square.inner(0.14)); return;
+    case Shape::ring:
+      painter.drawEllipse(square.inner(0.14));
+      return;
     case Shape::gap:
       painter.drawArc(square.inner(0.1), 16 * 55, 16 * 290);
       square.path({{0.5, 0.3}, {0.5, 0.56}});
@@ -50,7 +55,8 @@ void draw_lines(const Square& square, Shape shape, const QColor& colour) {
       painter.setBrush(colour);
       painter.drawPie(square.inner(0.1), 16 * -90, 16 * 180);
       return;
-    case Shape::none: return;
+    case Shape::none:
+      return;
   }
 }
 

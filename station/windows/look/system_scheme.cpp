@@ -34,8 +34,7 @@ SystemScheme::SystemScheme(bool ask_portal, QObject* parent)
 void SystemScheme::ask() {
   auto bus = QDBusConnection::sessionBus();
   if (!bus.isConnected()) return;
-  bus.connect(service, path, interface, "SettingChanged", this,
-              SLOT(setting_changed(QString, QString, QDBusVariant)));
+  bus.connect(service, path, interface, "SettingChanged", this, SLOT(setting_changed(QString, QString, QDBusVariant)));
   auto message = QDBusMessage::createMethodCall(service, path, interface, "Read");
   message << QString{space} << QString{key};
   auto* watcher = new QDBusPendingCallWatcher(bus.asyncCall(message), this);

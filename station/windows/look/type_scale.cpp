@@ -12,15 +12,24 @@ namespace {
 /// Size in px at 100 % and whether it is bold.
 std::pair<int, bool> size_of(Text text) {
   switch (text) {
-    case Text::small: return {12, false};
-    case Text::strong: return {14, true};
-    case Text::headline: return {19, true};
-    case Text::verdict: return {32, true};
-    case Text::figure: return {29, true};
-    case Text::workspace: return {20, false};
-    case Text::serial: return {13, false};
-    case Text::scan: return {20, false};
-    case Text::body: break;
+    case Text::small:
+      return {12, false};
+    case Text::strong:
+      return {14, true};
+    case Text::headline:
+      return {19, true};
+    case Text::verdict:
+      return {32, true};
+    case Text::figure:
+      return {29, true};
+    case Text::workspace:
+      return {20, false};
+    case Text::serial:
+      return {13, false};
+    case Text::scan:
+      return {20, false};
+    case Text::body:
+      break;
   }
   return {13, false};
 }

@@ -42,9 +42,8 @@ double write(QPainter& painter, const QRectF& place, const Written& written, con
   for (int i = 0; i < count; ++i) {
     const int from = starts[static_cast<std::size_t>(i)];
     const bool cut = i + 1 == count && count < static_cast<int>(starts.size());
-    const int length = cut || i + 1 >= static_cast<int>(starts.size())
-                           ? -1
-                           : starts[static_cast<std::size_t>(i) + 1] - from;
+    const int length =
+        cut || i + 1 >= static_cast<int>(starts.size()) ? -1 : starts[static_cast<std::size_t>(i) + 1] - from;
     QString line = written.words.mid(from, length).trimmed();
     if (cut) line = metrics.elidedText(line, Qt::ElideRight, place.width());
     painter.drawText(QPointF{place.left(), place.top() + i * metrics.height() + metrics.ascent()}, line);

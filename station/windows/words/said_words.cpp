@@ -20,6 +20,32 @@ constexpr std::array patterns = {
     QT_TRANSLATE_NOOP("Said", "spectra"),
     QT_TRANSLATE_NOOP("Said", "the station stopped during this run; closed at the next start"),
     QT_TRANSLATE_NOOP("Said", "stopped by {who}"),
+    // what is to be done with the probe
+    QT_TRANSLATE_NOOP("Said", "take the probe out and apply its label"),
+    QT_TRANSLATE_NOOP("Said", "apply its label"),
+    QT_TRANSLATE_NOOP("Said", "take the probe out; this run releases no label"),
+    QT_TRANSLATE_NOOP("Said", "this run releases no label"),
+    QT_TRANSLATE_NOOP("Said", "take the probe out and put it on the tray for failed probes"),
+    QT_TRANSLATE_NOOP("Said", "put it on the tray for failed probes"),
+    QT_TRANSLATE_NOOP("Said", "take the probe out; nothing was decided about it"),
+    QT_TRANSLATE_NOOP("Said", "nothing was decided about it"),
+    QT_TRANSLATE_NOOP("Said", "take the probe out and keep it apart: this run is not on record"),
+    QT_TRANSLATE_NOOP("Said", "keep it apart: this run is not on record"),
+    // what a nest waits for
+    QT_TRANSLATE_NOOP("Said", "put probe {serial} into nest {nest}"),
+    QT_TRANSLATE_NOOP("Said", "plug probe {serial} into the adapter"),
+    QT_TRANSLATE_NOOP("Said", "close the lid"),
+    QT_TRANSLATE_NOOP("Said", "take the probe out of nest {nest}"),
+    QT_TRANSLATE_NOOP("Said", "scan a probe"),
+    QT_TRANSLATE_NOOP("Said", "testing {serial}"),
+    // answers
+    QT_TRANSLATE_NOOP("Said", "nest {nest} is stopped"),
+    QT_TRANSLATE_NOOP("Said", "{name}, {role}, is signed in"),
+    QT_TRANSLATE_NOOP("Said", "{name} is signed out"),
+    QT_TRANSLATE_NOOP("Said", "lot {lot} is closed"),
+    QT_TRANSLATE_NOOP("Said", "lot {lot} is open: {quantity} of {model}"),
+    QT_TRANSLATE_NOOP("Said", "scan the probe for nest {nest}"),
+    QT_TRANSLATE_NOOP("Said", "{number} on {due}"),
     QT_TRANSLATE_NOOP("Said", "operator"),
     QT_TRANSLATE_NOOP("Said", "engineer"),
     QT_TRANSLATE_NOOP("Said", "quality"),
@@ -54,7 +80,7 @@ QString by_pattern(const char* pattern, const QString& english) {
   if (!match.hasMatch()) return {};
   return filled(QCoreApplication::translate("Said", pattern), [&](const QString& name) {
     const qsizetype place = gaps.names.indexOf(name);
-    return place < 0 ? QString{} : match.captured(static_cast<int>(place) + 1);
+    return place < 0 ? QString{} : said(match.captured(static_cast<int>(place) + 1).toStdString());
   });
 }
 

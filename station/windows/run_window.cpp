@@ -1,0 +1,106 @@
+#include "station/windows/run_window.h"
+
+#include <QLoggingCategory>
+#include <QStandardPaths>
+#include <QStyleFactory>
+
+#include "station/windows/frame/main_window.h"
+#include "station/windows/frame/settings.h"
+#include "station/windows/line/line_model.h"
+#include "station/windows/line/line_page.h"
+#include "station/windows/line/scan_field.h"
+#include "station/windows/line_feed.h"
+#include "station/windows/look/system_scheme.h"
+#include "station/windows/watchdog.h"
+#include "station/windows/words/languages.h"
+
+namespace probewright::windows {
+namespace {
+
+#ifdef NDEBUG
+using Application = QApplication;
+#else
+using Application = WatchedApplication;
+#endif
+
+class HostDoor : public LineDoor {
+ public:
+  explicit HostDoor(sequence::LineHost& host) : host_(host) {}
+  void request(sequence::LineRequest request) override { host_.request(std::move(request)); }
+  std::shared_ptr<const sequence::LineView> view() const override { return host_.view(); }
+  std::vector<sequence::ClosedLate> closed_late() const override { return host_.closed_late(); }
+
+ private:
+  sequence::LineHost& host_;
+};
+
+/// Lets the model hear all that the feed holds, each time there is something new.
+class Pump {
+ public:
+  Pump(LineFeed* feed, LineModel& model) : feed_(feed), model_(model) {
+    if (feed_)
+      feed_->wake_by([this] {
+        QMetaObject::invokeMethod(
+            &model_, [this] { pump(); }, Qt::QueuedConnection);
+      });
+  }
+  ~Pump() {
+    if (feed_) feed_->wake_by({});
+  }
+  Pump(const Pump&) = delete;
+  Pump& operator=(const Pump&) = delete;
+
+ private:
+  void pump() {
+    LineFeed::Told told = feed_->take();
+    for (const auto& event : told.events) model_.hear(event);
+    if (told.view) model_.take(std::move(told.view));
+    if (told.broken) model_.break_off(*told.broken);
+  }
+  LineFeed* feed_;
+  LineModel& model_;
+};
+
+QString settings_file(const std::string& chosen) {
+  if (!chosen.empty()) return QString::fromStdString(chosen);
+  return QStandardPaths::writableLocation(QStandardPaths::GenericConfigLocation) +
+         QStringLiteral("/probewright/windows.ini");
+}
+
+QStringList serial_patterns(const sequence::Configuration& configuration) {
+  QStringList patterns;
+  for (const auto& [name, model] : configuration.models) patterns << QString::fromStdString(model.value.serial_pattern);
+  return patterns;
+}
+
+}  // namespace
+
+bool has_display() {
+  const auto is_set = [](const char* name) { return !qEnvironmentVariableIsEmpty(name); };
+  return is_set("WAYLAND_DISPLAY") || is_set("DISPLAY") || is_set("QT_QPA_PLATFORM");
+}
+
+int run_window(sequence::LineHost& host, WindowOptions options) {
+  int count = 1;
+  char name[] = "probewright";
+  char* words[] = {name, nullptr};
+  Application application{count, words};
+  QApplication::setStyle(QStyleFactory::create(QStringLiteral("Fusion")));
+  Settings settings{settings_file(options.settings)};
+  Languages languages;
+  languages.choose(options.language.empty() ? settings.language() : QString::fromStdString(options.language));
+  SystemScheme scheme{true};
+  Look look{scheme};
+  look.set_scheme(settings.scheme());
+  look.set_percent(settings.text_percent());
+  HostDoor door{host};
+  LineModel model{door};
+  MainWindow window{{model, look, languages, settings, QString::fromStdString(options.version)}};
+  window.line().scan_field().set_shown_forms(serial_patterns(host.configuration()));
+  const Pump pump{options.feed, model};
+  window.show();
+  const int status = QApplication::exec();
+  return status == 0 && !model.broken().isEmpty() ? 3 : status;
+}
+
+}  // namespace probewright::windows

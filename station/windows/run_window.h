@@ -1,0 +1,29 @@
+#pragma once
+#include <memory>
+#include <string>
+
+#include "station/sequence/line_host.h"
+
+namespace probewright::windows {
+
+class BenchPlay;
+class LineFeed;
+
+struct WindowOptions {
+  std::string version;   ///< as --version prints it
+  std::string settings;  ///< file that remembers sizes and colours; empty: $XDG_CONFIG_HOME/probewright/windows.ini
+  std::string language;  ///< "en", "de", "es"; empty: as remembered, else the system's
+  /// What the host was started with as its listener. Must outlive the host.
+  LineFeed* feed = nullptr;
+  /// Hands of an emulated bench, offered in a strip; nullptr: none.
+  BenchPlay* play = nullptr;
+};
+
+/// Whether windows can be shown: there is a display, or the platform was named (QT_QPA_PLATFORM).
+bool has_display();
+
+/// Opens the window over a running line and gives when it is closed: exit status 0, or 3 when the line ended by itself.
+/// The host goes on; finishing it is the caller's. Main thread only; makes the application.
+int run_window(sequence::LineHost& host, WindowOptions options);
+
+}  // namespace probewright::windows
