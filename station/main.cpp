@@ -30,7 +30,13 @@ struct Dispatch {
     return text::done;
   }
   int operator()(const emulated::RunBenchOptions& options) const {
-    const auto ended = emulated::run_bench(options, std::cout);
+    emulated::RunBenchOptions bench = options;
+    if (!bench.scenario_file.empty()) {
+      auto scenario = emulated::read_scenario_file(bench.scenario_file);
+      if (!scenario) return console.refuse(scenario.error());
+      bench.scenario = *std::move(scenario);
+    }
+    const auto ended = emulated::run_bench(bench, std::cout);
     return ended ? text::done : console.refuse(ended.error());
   }
   int operator()(const text::DemoOptions& options) const {

@@ -222,6 +222,8 @@ void Reader::add_bench() {
   app.add_option("--attach", bench_.attach, "use terminals that stand in this folder instead of making some")
       ->type_name("DIR");
   app.add_option("--control", bench_.control, "socket that takes the place of hands at the bench")->type_name("SOCKET");
+  app.add_option("--scenario", bench_.scenario_file, "what goes wrong with the bench, where and when")
+      ->type_name("FILE");
   app.add_option("--truth", bench_.truth_file, "write what the probes really are to this file")->type_name("FILE");
   app.add_option("--seat", bench_.seats, "a probe that sits there from the start; may stand several times")
       ->type_name("NEST:SERIAL")
