@@ -68,6 +68,9 @@ struct Dispatch {
   int operator()(const text::LimitsCheckOptions& options) const { return text::limits_check(options, console); }
   int operator()(const text::LimitsDiffOptions& options) const { return text::limits_diff(options, console); }
   int operator()(const text::MeasureSpectrumOptions& options) const { return text::measure_spectrum(options, console); }
+  int operator()(const text::ReplayOptions& options) const { return text::replay(options, console); }
+  int operator()(const text::RecordingShowOptions& options) const { return text::recording_show(options, console); }
+  int operator()(const text::RecordingCutOptions& options) const { return text::recording_cut(options, console); }
   int operator()(const text::MeasurePulsesOptions& options) const { return text::measure_pulses(options, console); }
 };
 
