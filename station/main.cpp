@@ -30,7 +30,13 @@ struct Dispatch {
     return text::done;
   }
   int operator()(const emulated::RunBenchOptions& options) const {
-    const auto ended = emulated::run_bench(options, std::cout);
+    emulated::RunBenchOptions bench = options;
+    if (!bench.scenario_file.empty()) {
+      auto scenario = emulated::read_scenario_file(bench.scenario_file);
+      if (!scenario) return console.refuse(scenario.error());
+      bench.scenario = *std::move(scenario);
+    }
+    const auto ended = emulated::run_bench(bench, std::cout);
     return ended ? text::done : console.refuse(ended.error());
   }
   int operator()(const text::DemoOptions& options) const {
@@ -62,6 +68,9 @@ struct Dispatch {
   int operator()(const text::LimitsCheckOptions& options) const { return text::limits_check(options, console); }
   int operator()(const text::LimitsDiffOptions& options) const { return text::limits_diff(options, console); }
   int operator()(const text::MeasureSpectrumOptions& options) const { return text::measure_spectrum(options, console); }
+  int operator()(const text::ReplayOptions& options) const { return text::replay(options, console); }
+  int operator()(const text::RecordingShowOptions& options) const { return text::recording_show(options, console); }
+  int operator()(const text::RecordingCutOptions& options) const { return text::recording_cut(options, console); }
   int operator()(const text::MeasurePulsesOptions& options) const { return text::measure_pulses(options, console); }
 };
 

@@ -109,6 +109,8 @@ class Reader {
   void add_ledger();
   void add_limits();
   void add_measure();
+  void add_recording();
+  void add_part(CLI::App& app, text::RecordingPart& part);
 
   const CLI::App& innermost() const;
   Problem unexpected(const std::string& text) const;
@@ -137,6 +139,9 @@ class Reader {
   text::LimitsDiffOptions diff_;
   text::MeasureSpectrumOptions spectrum_;
   text::MeasurePulsesOptions pulses_;
+  text::ReplayOptions replay_;
+  text::RecordingShowOptions show_;
+  text::RecordingCutOptions cut_;
 };
 
 Reader::Reader(const text::Build& build, const std::filesystem::path& installed) : build_(build) {
@@ -165,6 +170,7 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   add_ledger();
   add_limits();
   add_measure();
+  add_recording();
 }
 
 CLI::App& Reader::command(CLI::App& parent, const std::string& name, const std::string& what,
@@ -222,6 +228,8 @@ void Reader::add_bench() {
   app.add_option("--attach", bench_.attach, "use terminals that stand in this folder instead of making some")
       ->type_name("DIR");
   app.add_option("--control", bench_.control, "socket that takes the place of hands at the bench")->type_name("SOCKET");
+  app.add_option("--scenario", bench_.scenario_file, "what goes wrong with the bench, where and when")
+      ->type_name("FILE");
   app.add_option("--truth", bench_.truth_file, "write what the probes really are to this file")->type_name("FILE");
   app.add_option("--seat", bench_.seats, "a probe that sits there from the start; may stand several times")
       ->type_name("NEST:SERIAL")
@@ -263,8 +271,35 @@ void Reader::add_test() {
                                   "let the emulated bench seat the probe; so unless told, where one runs");
   add_choice(app, "--no-hands", test_.hands, false, "wait for a person to seat it")->excludes(hands);
   app.add_option("--control", test_.control, "control socket of the emulated bench")->type_name("SOCKET");
+  app.add_option("--record", test_.record, "keep every byte both ways in this new folder, to show or replay it")
+      ->type_name("DIR");
   add_json(app);
   answers(app, test_);
+}
+
+void Reader::add_part(CLI::App& app, text::RecordingPart& part) {
+  add_number(app, "--from", part.from_s, "seconds since the recording began, its beginning unless told");
+  add_number(app, "--to", part.to_s, "seconds since the recording began, its end unless told");
+}
+
+void Reader::add_recording() {
+  CLI::App& again = command(app_, "replay", "make a recorded run again from its bytes and compare",
+                            "probewright test AQ20-048-00001 --record run-1\n  probewright replay run-1");
+  again.add_option("DIR", replay_.folder, "folder of the recording")->required()->type_name("");
+  add_json(again);
+  answers(again, replay_);
+  CLI::App& recording = group("recording", "look into recordings of what went over the lines");
+  CLI::App& show = command(recording, "show", "print its messages", "probewright recording show run-1 --from 2 --to 3");
+  show.add_option("DIR", show_.folder, "folder of the recording")->required()->type_name("");
+  show.add_option("--device", show_.device, "one line only, as nest1-phantom")->type_name("NAME");
+  add_part(show, show_.part);
+  answers(show, show_);
+  CLI::App& part = command(recording, "cut", "make a recording of a part of it",
+                           "probewright recording cut run-1 for-the-report --from 2 --to 3");
+  part.add_option("DIR", cut_.folder, "folder of the recording")->required()->type_name("");
+  part.add_option("INTO", cut_.into, "new folder for the part")->required()->type_name("");
+  add_part(part, cut_.part);
+  answers(part, cut_);
 }
 
 void Reader::add_checkup() {

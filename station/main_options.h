@@ -12,6 +12,8 @@
 #include "station/text/limits.h"
 #include "station/text/line.h"
 #include "station/text/measure.h"
+#include "station/text/recording.h"
+#include "station/text/replay.h"
 #include "station/text/report.h"
 #include "station/text/test.h"
 #include "station/text/trace.h"
@@ -28,7 +30,8 @@ using Request = std::variant<ShowText, emulated::RunBenchOptions, text::DemoOpti
                              text::TestOptions, text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions,
                              text::LedgerSealOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
                              text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
-                             text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
+                             text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions,
+                             text::ReplayOptions, text::RecordingShowOptions, text::RecordingCutOptions>;
 
 struct CommandLine {
   bool json = false;

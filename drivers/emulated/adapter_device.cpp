@@ -102,7 +102,9 @@ asio::awaitable<void> AdapterDevice::answer(Shared self, std::shared_ptr<Outbox>
 }
 
 void AdapterDevice::begin_stream(Shared self, std::shared_ptr<Outbox> outbox) {
-  asio::co_spawn(self->executor_, stream(self, std::move(outbox), *self->capture_, self->captures_), end_of_coroutine);
+  const Capture capture = *self->capture_;
+  asio::co_spawn(self->executor_, stream(self, std::move(outbox), capture, self->captures_), end_of_coroutine);
+  if (self->capture_began_) self->capture_began_(capture.start_s);
 }
 
 asio::awaitable<void> AdapterDevice::stream(Shared self, std::shared_ptr<Outbox> outbox, Capture capture,

@@ -1,4 +1,5 @@
 #pragma once
+#include <functional>
 #include <memory>
 #include <optional>
 
@@ -35,6 +36,13 @@ class AdapterDevice {
 
   /// Power off and on: everything forgotten, LEDs off, another boot number.
   void power_cycle();
+
+  /// Electronics with other errors from now on.
+  void set_errors(const StationErrors& errors) { front_end_.set_errors(errors); }
+  /// Another certificate number, as it is told from now on.
+  void set_certificate(std::string number) { setup_.identity.certificate = std::move(number); }
+  /// Called whenever a capture begins, with the device seconds of its first slot.
+  void on_capture(std::function<void(double start_s)> began) { capture_began_ = std::move(began); }
 
   struct Drive {
     std::uint32_t red_uA = 0, infrared_uA = 0;
@@ -99,6 +107,7 @@ class AdapterDevice {
   std::shared_ptr<Nest> nest_;
   ActionObserver* observer_;
   FrontEnd front_end_;
+  std::function<void(double)> capture_began_;
 
   Drive drive_;  ///< as set; off after a watchdog trip or a pulled probe
   Change red_change_, infrared_change_;

@@ -4,6 +4,7 @@
 #include <boost/asio/co_spawn.hpp>
 
 #include "drivers/emulated/model_nominals.h"
+#include "drivers/emulated/scenario_player.h"
 #include "drivers/wire/memory_port.h"
 #include "drivers/wire/paced_port.h"
 #include "station/base/entropy.h"
@@ -24,6 +25,11 @@ wire::FaultRate rate_of(const SpoiltShare& share, std::uint64_t bytes_before) {
   rate.seed = derived_seed(share.seed, bytes_before);  // each line its own faults
   rate.only = direction_of(share.way);
   return rate;
+}
+
+std::string certificate_number(const DeviceId& device, bool right) {
+  const std::string kind = device.kind == DeviceKind::phantom ? "PHC-" : "ADC-";
+  return kind + (right ? "2026-01" : "2024-09") + two_digits(device.nest);
 }
 
 std::string faults_text(const Probe& probe) {
@@ -62,9 +68,11 @@ Bench::Bench(asio::any_io_executor executor, wire::LineClock& clock, BenchOption
     lines_[{nest, DeviceKind::phantom}];
     lines_[{nest, DeviceKind::adapter}];
   }
+  player_ = std::make_unique<ScenarioPlayer>(executor_, clock_, *this, options_.seed);
 }
 
 Bench::~Bench() {
+  player_.reset();
   self_.reset();
   for (auto& [device, line] : lines_) detach(line);
 }
@@ -78,7 +86,7 @@ DeviceIdentity Bench::identity(const DeviceId& device) const {
   identity.maker = "Alder Quay Sensors";
   identity.serial = (phantom ? "PH-" : "AD-") + number;
   identity.firmware = "1.0.0-emulated-x" + shortest(options_.speed);
-  identity.certificate = std::string(phantom ? "PHC-" : "ADC-") + (right ? "2026-01" : "2024-09") + number;
+  identity.certificate = certificate_number(device, right);
   identity.due = "2027-06-30";
   return identity;
 }
@@ -94,6 +102,7 @@ Bench::Station Bench::make_station(int number) {
   station.adapter =
       std::make_shared<AdapterDevice>(AdapterDevice::Setup{adapter, identity(adapter), options_.seed, baud}, clock_,
                                       executor_, station.nest, observer_);
+  station.own_errors = station.nest->errors();
   return station;
 }
 
@@ -120,14 +129,14 @@ std::function<asio::awaitable<std::unique_ptr<wire::Port>>()> Bench::source(cons
 void Bench::attach(const DeviceId& device, std::unique_ptr<wire::Port> device_end) {
   Line& line = lines_.at(device);
   detach(line);
-  line.port = std::make_shared<wire::FaultPort>(std::move(device_end));
+  auto spoiler = std::make_unique<wire::FaultPort>(std::move(device_end));
   for (const SpoiltByte& byte : line.plan) {
     const std::uint64_t before = line.sent_before[index_of(byte.way)];
-    if (byte.index >= before) {
-      line.port->add({direction_of(byte.way), byte.index - before, byte.kind, byte.flip});
-    }
+    if (byte.index >= before) spoiler->add({direction_of(byte.way), byte.index - before, byte.kind, byte.flip});
   }
-  if (line.share) line.port->set_rate(rate_of(*line.share, line.sent_before[index_of(line.share->way)]));
+  line.spoiler = spoiler.get();
+  set_rates(line, *spoiler);
+  line.port = std::make_shared<wire::UnsteadyPort>(std::move(spoiler), line_clock_, line.unsteadiness);
   const Station& station = stations_.at(static_cast<std::size_t>(device.nest - 1));
   const bool phantom = device.kind == DeviceKind::phantom;
   asio::co_spawn(
@@ -136,12 +145,24 @@ void Bench::attach(const DeviceId& device, std::unique_ptr<wire::Port> device_en
       end_of_coroutine);
 }
 
+/// Rates are drawn anew for each port, from what has passed before it.
+void Bench::set_rates(const Line& line, wire::FaultPort& port) const {
+  port.set_rate({});
+  for (const auto& [number, share] : line.shares) {
+    const std::uint64_t now = line.spoiler ? line.spoiler->count(direction_of(share.way)) : 0;
+    port.add_rate(rate_of(share, line.sent_before[index_of(share.way)] + now));
+  }
+}
+
 void Bench::detach(Line& line) {
   if (!line.port) return;
-  line.sent_before[index_of(Way::to_device)] += line.port->count(wire::Direction::in);
-  line.sent_before[index_of(Way::from_device)] += line.port->count(wire::Direction::out);
-  line.spoilt_before += line.port->faults();
+  line.sent_before[index_of(Way::to_device)] += line.spoiler->count(wire::Direction::in);
+  line.sent_before[index_of(Way::from_device)] += line.spoiler->count(wire::Direction::out);
+  for (const auto kind : {wire::FaultKind::lose, wire::FaultKind::change, wire::FaultKind::twice}) {
+    line.spoilt_before[static_cast<std::size_t>(kind)] += line.spoiler->faults(kind);
+  }
   line.port->close();
+  line.spoiler = nullptr;
   line.port.reset();
 }
 
@@ -306,7 +327,7 @@ Result<void> Bench::spoil(const DeviceId& device, const SpoiltByte& byte) {
   SpoiltByte planned = byte;
   planned.index += bytes(device, byte.way);
   (*line)->plan.push_back(planned);
-  if (const auto& port = (*line)->port) {
+  if (auto* port = (*line)->spoiler) {
     const std::uint64_t before = (*line)->sent_before[index_of(byte.way)];
     port->add({direction_of(byte.way), planned.index - before, byte.kind, byte.flip});
   }
@@ -316,19 +337,79 @@ Result<void> Bench::spoil(const DeviceId& device, const SpoiltByte& byte) {
 Result<void> Bench::spoil(const DeviceId& device, const SpoiltShare& share) {
   auto line = line_of(device);
   if (!line) return line.error();
-  (*line)->share = share;
-  if (const auto& port = (*line)->port) port->set_rate(rate_of(share, bytes(device, share.way)));
+  (*line)->shares.clear();
+  add_share(device, share);
   return {};
+}
+
+int Bench::add_share(const DeviceId& device, const SpoiltShare& share) {
+  Line& line = lines_.at(device);
+  line.shares.emplace(++shares_, share);
+  if (line.spoiler) set_rates(line, *line.spoiler);
+  return shares_;
+}
+
+void Bench::end_share(const DeviceId& device, int number) {
+  Line& line = lines_.at(device);
+  line.shares.erase(number);
+  if (line.spoiler) set_rates(line, *line.spoiler);
 }
 
 Result<void> Bench::heal(const DeviceId& device) {
   auto line = line_of(device);
   if (!line) return line.error();
   (*line)->plan.clear();
-  (*line)->share.reset();
-  if (const auto& port = (*line)->port) port->heal();
+  (*line)->shares.clear();
+  (*line)->unsteadiness->end_all();
+  if ((*line)->spoiler) (*line)->spoiler->heal();
   return {};
 }
+
+// --- scenarios
+
+Result<void> Bench::play(const Scenario& scenario) { return player_->play(scenario, 0.0); }
+Result<void> Bench::cause(const ScenarioFault& fault) { return player_->cause(fault, now_s()); }
+void Bench::mend() { player_->mend(); }
+
+std::map<BenchFault, std::uint64_t> Bench::troubles() const {
+  std::map<BenchFault, std::uint64_t> counts = player_->begun();
+  for (const auto& [device, line] : lines_) {
+    counts[BenchFault::byte_lost] += spoilt(line, wire::FaultKind::lose);
+    counts[BenchFault::byte_changed] += spoilt(line, wire::FaultKind::change);
+    counts[BenchFault::byte_doubled] += spoilt(line, wire::FaultKind::twice);
+    counts[BenchFault::bytes_paused] += line.unsteadiness->count(wire::Unsteady::pause);
+    counts[BenchFault::bytes_split] += line.unsteadiness->count(wire::Unsteady::split);
+    counts[BenchFault::noise_bytes] += line.unsteadiness->count(wire::Unsteady::noise);
+    counts[BenchFault::reply_late] += line.unsteadiness->count(wire::Unsteady::late);
+    counts[BenchFault::reply_missing] += line.unsteadiness->count(wire::Unsteady::missing);
+  }
+  std::erase_if(counts, [](const auto& entry) { return entry.second == 0; });
+  return counts;
+}
+
+void Bench::set_certificate(const DeviceId& device, std::string number) {
+  if (number.empty()) number = certificate_number(device, false);
+  if (device.kind == DeviceKind::phantom) {
+    station(device.nest).phantom->set_certificate(std::move(number));
+  } else {
+    station(device.nest).adapter->set_certificate(std::move(number));
+  }
+}
+
+void Bench::right_certificate(const DeviceId& device) { set_certificate(device, identity(device).certificate); }
+
+void Bench::on_capture(int nest, std::function<void(double)> began) {
+  station(nest).adapter->on_capture(std::move(began));
+}
+
+StationErrors Bench::own_errors(int nest) const { return stations_.at(static_cast<std::size_t>(nest - 1)).own_errors; }
+
+void Bench::set_errors(int nest, const StationErrors& errors) {
+  station(nest).nest->set_errors(now_s(), errors);
+  station(nest).adapter->set_errors(errors);
+}
+
+void Bench::set_flicker(int nest, const Flicker& flicker) { station(nest).nest->set_flicker(now_s(), flicker); }
 
 // --- what trials look at
 
@@ -338,13 +419,18 @@ AdapterDevice::Drive Bench::drive(int nest) {
 
 std::uint64_t Bench::bytes(const DeviceId& device, Way way) const {
   const Line& line = lines_.at(device);
-  const std::uint64_t now = line.port ? line.port->count(direction_of(way)) : 0;
+  const std::uint64_t now = line.spoiler ? line.spoiler->count(direction_of(way)) : 0;
   return line.sent_before[index_of(way)] + now;
+}
+
+std::uint64_t Bench::spoilt(const Line& line, wire::FaultKind kind) const {
+  return line.spoilt_before[static_cast<std::size_t>(kind)] + (line.spoiler ? line.spoiler->faults(kind) : 0);
 }
 
 std::uint64_t Bench::spoilt(const DeviceId& device) const {
   const Line& line = lines_.at(device);
-  return line.spoilt_before + (line.port ? line.port->faults() : 0);
+  return spoilt(line, wire::FaultKind::lose) + spoilt(line, wire::FaultKind::change) +
+         spoilt(line, wire::FaultKind::twice);
 }
 
 }  // namespace probewright::emulated

@@ -17,8 +17,11 @@
 #include "drivers/wire/fault_port.h"
 #include "drivers/wire/line_clock.h"
 #include "drivers/wire/port.h"
+#include "drivers/wire/unsteady_port.h"
 
 namespace probewright::emulated {
+
+class ScenarioPlayer;
 
 struct BenchOptions {
   int nests = 1;
@@ -78,6 +81,25 @@ class Bench final : public Hands {
   Result<void> spoil(const DeviceId& device, const SpoiltByte& byte) override;
   Result<void> spoil(const DeviceId& device, const SpoiltShare& share) override;
   Result<void> heal(const DeviceId& device) override;
+  Result<void> cause(const ScenarioFault& fault) override;
+  void mend() override;
+
+  /// Plays a scenario; its times count from the start of the bench. Errors: bench_no_such_nest.
+  Result<void> play(const Scenario& scenario);
+  /// How often each fault of the bench has happened.
+  std::map<BenchFault, std::uint64_t> troubles() const;
+
+  // What scenarios turn at. Devices and nests are those of the bench.
+  int add_share(const DeviceId& device, const SpoiltShare& share);  ///< beside others; the number ends it
+  void end_share(const DeviceId& device, int number);
+  wire::Unsteadiness& unsteadiness(const DeviceId& device) { return *lines_.at(device).unsteadiness; }
+  void set_certificate(const DeviceId& device, std::string number);  ///< empty: one of other years
+  void right_certificate(const DeviceId& device);
+  /// Called with the device seconds of the start of each capture; one at a time.
+  void on_capture(int nest, std::function<void(double start_s)> began);
+  StationErrors own_errors(int nest) const;  ///< as drawn from the seed
+  void set_errors(int nest, const StationErrors& errors);
+  void set_flicker(int nest, const Flicker& flicker);
 
   bool cable_pulled(const DeviceId& device) const { return lines_.at(device).pulled; }
 
@@ -98,21 +120,26 @@ class Bench final : public Hands {
 
  private:
   struct Line {
-    std::shared_ptr<wire::FaultPort> port;  ///< the device's end of the line in use
+    std::shared_ptr<wire::Port> port;    ///< the device's end of the line in use
+    wire::FaultPort* spoiler = nullptr;  ///< inside it
+    std::shared_ptr<wire::Unsteadiness> unsteadiness = std::make_shared<wire::Unsteadiness>();
     bool pulled = false;
-    std::uint64_t sent_before[2] = {0, 0};  ///< by lines before this one, by Way
-    std::uint64_t spoilt_before = 0;
-    std::vector<SpoiltByte> plan;  ///< indices counted since the bench began
-    std::optional<SpoiltShare> share;
+    std::uint64_t sent_before[2] = {0, 0};       ///< by lines before this one, by Way
+    std::uint64_t spoilt_before[3] = {0, 0, 0};  ///< by FaultKind
+    std::vector<SpoiltByte> plan;                ///< indices counted since the bench began
+    std::map<int, SpoiltShare> shares;           ///< by number
   };
   struct Station {
     std::shared_ptr<Nest> nest;
     std::shared_ptr<PhantomDevice> phantom;
     std::shared_ptr<AdapterDevice> adapter;
+    StationErrors own_errors;
   };
 
   Station make_station(int nest);
   DeviceIdentity identity(const DeviceId& device) const;
+  void set_rates(const Line& line, wire::FaultPort& port) const;
+  std::uint64_t spoilt(const Line& line, wire::FaultKind kind) const;
   void attach(const DeviceId& device, std::unique_ptr<wire::Port> device_end);
   void detach(Line& line);
   Result<void> make_hosted_line(const DeviceId& device);
@@ -120,6 +147,7 @@ class Bench final : public Hands {
                                      std::shared_ptr<wire::Port> port, std::weak_ptr<Bench*> bench, DeviceId device);
   void lost(const DeviceId& device, const wire::Port* port);
   Result<Nest*> nest_at(int nest);
+  Station& station(int nest) { return stations_.at(static_cast<std::size_t>(nest - 1)); }
   const Probe* known(std::string_view serial, std::string_view model) const;
   Result<Line*> line_of(const DeviceId& device);
   double now_s() const { return clock_.now_s(); }
@@ -136,6 +164,8 @@ class Bench final : public Hands {
   std::map<std::string, Truth> truths_;
   std::function<void(const DeviceId&)> on_lost_;
   std::function<void(const std::string&)> on_first_seat_;
+  int shares_ = 0;
+  std::unique_ptr<ScenarioPlayer> player_;
   std::shared_ptr<Bench*> self_;  ///< empty for coroutines that outlive the bench
 };
 

@@ -137,6 +137,18 @@ Result<void> fault(Hands& hands, const Words& words, std::string_view form) {
   return hands.spoil(device, share);
 }
 
+/// What follows is one entry of a scenario's list, word for word.
+Result<void> cause(Hands& hands, std::string_view line) {
+  const auto fault = read_scenario_fault(line.substr(line.find("cause") + 5));
+  if (!fault) return fault.error().front();
+  return hands.cause(*fault);
+}
+
+Result<void> mend(Hands& hands, const Words&, std::string_view) {
+  hands.mend();
+  return {};
+}
+
 constexpr std::array commands{
     Command{"seat", 2, 6, "seat 1 AQ20-048-00001 AQ-20 fault secondary_emission 0.5", seat},
     Command{"remove", 1, 1, "remove 1", remove},
@@ -147,6 +159,7 @@ constexpr std::array commands{
     Command{"restart", 1, 1, "restart nest1-phantom", restart},
     Command{"fault", 5, 7, "fault nest1-adapter from lose at 1000", fault},
     Command{"heal", 1, 1, "heal nest1-adapter", heal},
+    Command{"mend", 0, 0, "mend", mend},
 };
 
 Result<void> carry_out(Hands& hands, const Words& words) {
@@ -174,7 +187,9 @@ std::string sentence(const Problem& problem) {
 
 std::string obey(Hands& hands, std::string_view line) {
   try {
-    const auto done = carry_out(hands, words_of(line));
+    const Words words = words_of(line);
+    const bool causes = !words.empty() && words[0] == "cause";
+    const auto done = causes ? cause(hands, line) : carry_out(hands, words);
     return done ? "ok" : sentence(done.error());
   } catch (const Refusal& refusal) {
     return sentence(refusal.problem);

@@ -27,6 +27,8 @@ class FrontEnd {
   static constexpr double compliance_V = 5.0;
 
   FrontEnd(const StationErrors& errors, std::uint64_t seed);
+  /// Other errors from now on.
+  void set_errors(const StationErrors& errors) { errors_ = errors; }
 
   /// Converter code of a slot. `light_nA` and `background_nA` together are the photocurrent, `before_nA` that of the
   /// slot before it.

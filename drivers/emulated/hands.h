@@ -6,13 +6,11 @@
 
 #include "drivers/emulated/device.h"
 #include "drivers/emulated/probe_fault.h"
+#include "drivers/emulated/scenario.h"
 #include "drivers/wire/fault_port.h"
 #include "station/base/result.h"
 
 namespace probewright::emulated {
-
-/// Which way bytes go on a device's line.
-enum class Way { to_device, from_device };
 
 /// A byte that a line spoils. `index` counts the bytes that go this way from now on; 0 is the next one.
 struct SpoiltByte {
@@ -59,8 +57,14 @@ class Hands {
   virtual Result<void> spoil(const DeviceId& device, const SpoiltByte& byte) = 0;
   /// Replaces the device's earlier share.
   virtual Result<void> spoil(const DeviceId& device, const SpoiltShare& share) = 0;
-  /// The line is good again.
+  /// The device's line is good again: what spoils, delays or loses there ends.
   virtual Result<void> heal(const DeviceId& device) = 0;
+
+  /// Makes a fault of a scenario happen; its times count from now. Errors: bench_no_such_nest.
+  virtual Result<void> cause(const ScenarioFault& fault) = 0;
+  /// Ends all that scenarios and cause() began: lines are good, cables in, lids closed, devices as they were made, the
+  /// room as warm as at the start. What devices have forgotten stays forgotten.
+  virtual void mend() = 0;
 };
 
 /// The model that a serial like "AQ20-048-00137" belongs to ("AQ-20"); nothing when the bench knows none.

@@ -74,6 +74,7 @@ Result<void> HostedBench::begin() {
     return hosted.error();
   for (const std::string& wanted : options_.seats)
     if (auto seated = seat(wanted); !seated) return seated.error();
+  if (auto played = bench_->play(options_.scenario); !played) return played.error();
   return write_truth();
 }
 

@@ -18,6 +18,8 @@ struct RunBenchOptions {
   std::string attach;              ///< folder of ttys nest1-phantom ... that others made; empty: own pseudo-terminals
   std::string control;             ///< control socket; empty: "control" in the folder
   std::string truth_file;          ///< written whenever a serial is seated for the first time; empty: none
+  std::string scenario_file;       ///< what goes wrong with the bench (SCENARIO.md), read by whoever asks; may be empty
+  Scenario scenario;               ///< what stood in it
   std::vector<std::string> seats;  ///< probes that sit there from the start: "1:AQ20-048-00001"
 };
 

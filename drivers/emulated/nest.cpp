@@ -28,13 +28,6 @@ StationErrors errors_of(const Nest::Setup& setup) {
   return setup.errors ? *setup.errors : draw_station_errors(setup.seed, setup.number);
 }
 
-/// Mean of sin(2 pi (f t + phase)) over a span.
-double mean_sine(double frequency_Hz, double phase_turns, double from_s, double to_s) {
-  const double turn = 2.0 * std::numbers::pi;
-  const double low = turn * (frequency_Hz * from_s + phase_turns), high = turn * (frequency_Hz * to_s + phase_turns);
-  return (std::cos(low) - std::cos(high)) / (high - low);
-}
-
 }  // namespace
 
 Nest::Nest(const Setup& setup)
@@ -66,11 +59,22 @@ void Nest::remove(double time_s) {
 void Nest::set_lid(double time_s, bool open) { lid_open_.set(time_s, open); }
 
 void Nest::modulate(double time_s, int set_point, Depths depths, double rate_Hz) {
-  if (set_point > 0) {
-    const Depths& error = errors_.set_points[static_cast<std::size_t>(set_point - 1)];
+  modulation_ = {set_point, depths, rate_Hz};
+  apply_modulation(time_s);
+}
+
+void Nest::apply_modulation(double time_s) {
+  Depths depths = modulation_.depths;
+  if (modulation_.set_point > 0) {
+    const Depths& error = errors_.set_points[static_cast<std::size_t>(modulation_.set_point - 1)];
     depths = {depths.red * (1.0 + error.red), depths.infrared * (1.0 + error.infrared)};
   }
-  modulator_.change(time_s, depths, rate_Hz);
+  modulator_.change(time_s, depths, modulation_.rate_Hz);
+}
+
+void Nest::set_errors(double time_s, const StationErrors& errors) {
+  errors_ = errors;
+  apply_modulation(time_s);
 }
 
 void Nest::set_blade(double time_s, bool in) { blade_.set(time_s, in); }
@@ -82,7 +86,8 @@ void Nest::drive(double time_s, double red_mA, double infrared_mA) { leds_.set(t
 double Nest::ambient_light(double time_s) const {
   const double flicker = std::sin(2.0 * std::numbers::pi * (2.0 * mains_Hz_ * time_s + mains_phase_turns_));
   const double room = lid_open_.at(time_s) ? room_light * (1.0 + room_flicker_depth * flicker) : 0.0;
-  return room + lamp_light(lamp_.at(time_s), time_s, mains_phase_turns_);
+  return room + lamp_light(lamp_.at(time_s), time_s, mains_phase_turns_) +
+         flicker_light(flicker_.at(time_s), time_s, mains_phase_turns_);
 }
 
 double Nest::mains_nA(double time_s) const {
@@ -136,6 +141,7 @@ double Nest::dark_nA(double bias_V, double from_s, double time_s) const {
   if (lid_open_.at(from_s)) {
     light += room_light * (1.0 + room_flicker_depth * mean_sine(2.0 * mains_Hz_, mains_phase_turns_, from_s, to_s));
   }
+  light += mean_flicker(flicker_.at(from_s), mains_phase_turns_, from_s, to_s);
   light *= photocurrent_share(probe_->photodiode);
   return dark_current_nA(probe_->photodiode, ambient_degC_, bias_V) + probe_->ambient_nA * light + mains;
 }

@@ -4,6 +4,7 @@
 #include <optional>
 
 #include "drivers/emulated/deviates.h"
+#include "drivers/emulated/flicker.h"
 #include "drivers/emulated/lamp.h"
 #include "drivers/emulated/led_drive.h"
 #include "drivers/emulated/modulator.h"
@@ -37,6 +38,12 @@ class Nest {
   void remove(double time_s);             ///< LEDs go dark at once
   void set_lid(double time_s, bool open);
   void set_ambient(double degC) { ambient_degC_ = degC; }
+
+  // What goes wrong with the nest.
+  /// Its devices differ from their certificates like this from now on (but for the spectrometer, which is as made).
+  void set_errors(double time_s, const StationErrors& errors);
+  /// Light of the room that gets in although the lid is closed.
+  void set_flicker(double time_s, const Flicker& flicker) { flicker_.set(time_s, flicker); }
 
   const std::optional<Probe>& probe() const { return probe_; }
   std::uint32_t insertions() const { return insertions_; }  ///< since the bench began
@@ -75,17 +82,25 @@ class Nest {
 
  private:
   double ambient_light(double time_s) const;
+  void apply_modulation(double time_s);
   double mains_nA(double time_s) const;
   double led_light_nA(LedColour colour, double time_s, const LedDrive::Moment& drive) const;
   void add_led_lines(std::vector<SpectralLine>& lines, double from_s, double to_s) const;
 
+  struct Modulation {
+    int set_point = 0;
+    Depths depths;
+    double rate_Hz = 5.0;
+  };
   Setup setup_;
   StationErrors errors_;
+  Modulation modulation_;  ///< as the phantom set it
   Deviates noise_;
   Spectrometer spectrometer_;
   Modulator modulator_;
   Timeline<bool> blade_{false}, lid_open_{false};
   Timeline<Lamp> lamp_{Lamp{}};
+  Timeline<Flicker> flicker_{Flicker{}};
   LedDrive leds_;
   std::optional<Probe> probe_;
   std::function<void(double)> look_;

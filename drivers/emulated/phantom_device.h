@@ -32,6 +32,8 @@ class PhantomDevice {
 
   /// Power off and on: everything forgotten, another boot number.
   void power_cycle();
+  /// Another certificate number, as it is told from now on.
+  void set_certificate(std::string number) { setup_.identity.certificate = std::move(number); }
 
  private:
   /// What a unit does: how long it keeps the device busy, what it answers, or the error that it makes.

@@ -12,10 +12,8 @@ double unit_draw(Entropy& entropy) { return std::ldexp(static_cast<double>(entro
 }  // namespace
 
 FaultPort::FaultPort(std::unique_ptr<Port> port, std::vector<ByteFault> plan, FaultRate rate)
-    : ForwardingPort(std::move(port)),
-      rate_(std::move(rate)),
-      out_{0, {}, SeededEntropy{derived_seed(rate_.seed, 0)}},
-      in_{0, {}, SeededEntropy{derived_seed(rate_.seed, 1)}} {
+    : ForwardingPort(std::move(port)) {
+  add_rate(std::move(rate));
   for (const ByteFault& fault : plan) add(fault);
 }
 
@@ -24,30 +22,37 @@ void FaultPort::add(const ByteFault& fault) {
 }
 
 void FaultPort::set_rate(FaultRate rate) {
-  rate_ = std::move(rate);
-  out_.entropy = SeededEntropy{derived_seed(rate_.seed, 0)};
-  in_.entropy = SeededEntropy{derived_seed(rate_.seed, 1)};
+  rates_.clear();
+  add_rate(std::move(rate));
+}
+
+void FaultPort::add_rate(FaultRate rate) {
+  if (rate.per_byte > 0.0 && !rate.kinds.empty()) rates_.emplace_back(std::move(rate));
 }
 
 void FaultPort::heal() {
   out_.plan.clear();
   in_.plan.clear();
-  rate_.per_byte = 0.0;
+  rates_.clear();
 }
 
-void FaultPort::add_rate_fault(Side& side, Direction direction) {
-  if (rate_.only && *rate_.only != direction) return;
-  if (!(rate_.per_byte > 0.0) || rate_.kinds.empty() || unit_draw(side.entropy) >= rate_.per_byte) return;
-  const auto kind = rate_.kinds[side.entropy.next() % rate_.kinds.size()];
-  const auto flip = static_cast<std::uint8_t>(1 + side.entropy.next() % 255);
-  side.plan.emplace(side.count, ByteFault{direction, side.count, kind, flip});
+void FaultPort::add_rate_faults(Side& side, Direction direction) {
+  for (Rate& drawn : rates_) {
+    const FaultRate& rate = drawn.rate;
+    SeededEntropy& entropy = drawn.entropy(direction);
+    if (rate.only && *rate.only != direction) continue;
+    if (unit_draw(entropy) >= rate.per_byte) continue;
+    const auto kind = rate.kinds[entropy.next() % rate.kinds.size()];
+    const auto flip = static_cast<std::uint8_t>(1 + entropy.next() % 255);
+    side.plan.emplace(side.count, ByteFault{direction, side.count, kind, flip});
+  }
 }
 
 void FaultPort::pass(Side& side, std::byte byte, Bytes& to) {
   std::size_t copies = 1;
   const auto [first, last] = side.plan.equal_range(side.count);
   for (auto planned = first; planned != last; ++planned) {
-    ++faults_;
+    ++counts_[static_cast<std::size_t>(planned->second.kind)];
     if (planned->second.kind == FaultKind::lose) copies = 0;
     if (planned->second.kind == FaultKind::twice) copies *= 2;
     if (planned->second.kind == FaultKind::change) byte ^= std::byte{planned->second.flip};
@@ -59,13 +64,13 @@ void FaultPort::pass(Side& side, std::byte byte, Bytes& to) {
 Bytes FaultPort::spoil(Direction direction, std::span<const std::byte> bytes) {
   Side& side = direction == Direction::out ? out_ : in_;
   Bytes spoilt;
-  if (side.plan.empty() && !(rate_.per_byte > 0.0)) {
+  if (side.plan.empty() && rates_.empty()) {
     side.count += bytes.size();
     return {bytes.begin(), bytes.end()};
   }
   spoilt.reserve(bytes.size() + 4);
   for (const std::byte byte : bytes) {
-    add_rate_fault(side, direction);
+    add_rate_faults(side, direction);
     pass(side, byte, spoilt);
     ++side.count;
   }

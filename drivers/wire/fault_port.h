@@ -1,4 +1,5 @@
 #pragma once
+#include <array>
 #include <cstdint>
 #include <map>
 #include <memory>
@@ -40,12 +41,15 @@ class FaultPort final : public ForwardingPort {
   asio::awaitable<void> write_all(std::span<const std::byte> bytes, SteadyTime deadline) override;
   /// Bytes that went in so far, before any fault.
   std::uint64_t count(Direction direction) const { return side(direction).count; }
-  /// Faults done so far.
-  std::uint64_t faults() const { return faults_; }
+  /// Faults done so far, all or of one kind.
+  std::uint64_t faults() const { return counts_[0] + counts_[1] + counts_[2]; }
+  std::uint64_t faults(FaultKind kind) const { return counts_[static_cast<std::size_t>(kind)]; }
   /// One more planned fault; a byte that has passed already is past mending.
   void add(const ByteFault& fault);
-  /// Another rate from the next byte on.
+  /// This rate instead of all others, from the next byte on.
   void set_rate(FaultRate rate);
+  /// A rate more, from the next byte on.
+  void add_rate(FaultRate rate);
   /// No faults from now on; counting goes on.
   void heal();
 
@@ -53,17 +57,23 @@ class FaultPort final : public ForwardingPort {
   struct Side {
     std::uint64_t count = 0;
     std::multimap<std::uint64_t, ByteFault> plan;
-    SeededEntropy entropy;
+  };
+  struct Rate {
+    explicit Rate(FaultRate of)
+        : rate(std::move(of)), out(derived_seed(rate.seed, 0)), in(derived_seed(rate.seed, 1)) {}
+    SeededEntropy& entropy(Direction direction) { return direction == Direction::out ? out : in; }
+    FaultRate rate;
+    SeededEntropy out, in;
   };
   const Side& side(Direction direction) const { return direction == Direction::out ? out_ : in_; }
-  void add_rate_fault(Side& side, Direction direction);
+  void add_rate_faults(Side& side, Direction direction);
   void pass(Side& side, std::byte byte, Bytes& to);
   Bytes spoil(Direction direction, std::span<const std::byte> bytes);
 
-  FaultRate rate_;
+  std::vector<Rate> rates_;
   Side out_, in_;
-  Bytes surplus_;  // read and doubled, not yet asked for
-  std::uint64_t faults_ = 0;
+  Bytes surplus_;                          // read and doubled, not yet asked for
+  std::array<std::uint64_t, 3> counts_{};  // by FaultKind
 };
 
 }  // namespace probewright::wire

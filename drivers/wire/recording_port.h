@@ -10,6 +10,11 @@ class TrafficSink {
   virtual ~TrafficSink() = default;
   /// `bytes` live for the call only. Written bytes are told before they are sent, read ones when they were read.
   virtual void bytes(Direction direction, SteadyTime at, std::span<const std::byte> bytes) = 0;
+  /// The port is gone, as a read or write was told.
+  virtual void lost(SteadyTime at, const std::string& why) {
+    static_cast<void>(at);
+    static_cast<void>(why);
+  }
 };
 
 /// Tells a sink every byte both ways, with the time. Clock and sink must outlive it.

@@ -6,22 +6,28 @@ _probewright() {
   COMPREPLY=()
   for ((i = 1; i < COMP_CWORD; i++)); do
     case ${COMP_WORDS[i]} in
-      demo | line | bench | test | checkup | trace | ledger | limits | measure) command=${COMP_WORDS[i]} second=${COMP_WORDS[i+1]} && break ;;
+      demo | line | bench | test | replay | recording | checkup | trace | ledger | limits | measure) command=${COMP_WORDS[i]} second=${COMP_WORDS[i+1]} && break ;;
     esac
   done
   case $before in
-    --config | --ports | --attach | --control | --truth | --ledger | --model | --out) mapfile -t COMPREPLY < <(compgen -f -- "$word"); return ;;
+    --config | --ports | --attach | --control | --truth | --scenario | --record | --ledger | --model | --out) mapfile -t COMPREPLY < <(compgen -f -- "$word"); return ;;
     --purpose) mapfile -t COMPREPLY < <(compgen -W "production engineering reference challenge gauge echo training return" -- "$word"); return ;;
     --band) mapfile -t COMPREPLY < <(compgen -W "red infrared" -- "$word"); return ;;
     --frequency) mapfile -t COMPREPLY < <(compgen -W "known free" -- "$word"); return ;;
   esac
   local words=
   case $command in
-    "") words="demo line bench test checkup trace ledger limits measure --version $common" ;;
+    "") words="demo line bench test replay recording checkup trace ledger limits measure --version $common" ;;
     demo) words="--headless --probes --nests --speed --seed --mistakes --out --json $common" ;;
     line) words="--text --ledger --ports --speed --hands --control $common" ;;
-    bench) words="--nests --speed --seed --perfect --ambient-C --mains-Hz --ports --attach --control --truth --seat $common" ;;
-    test) words="--nest --purpose --operator --ledger --ports --speed --hands --no-hands --control --json $common" ;;
+    bench) words="--nests --speed --seed --perfect --ambient-C --mains-Hz --ports --attach --control --scenario --truth --seat $common" ;;
+    test) words="--nest --purpose --operator --ledger --ports --speed --hands --no-hands --control --record --json $common" ;;
+    replay) words="--json $common" ;;
+    recording)
+      words="show cut $common"
+      [ "$second" = show ] && words="--device --from --to $common"
+      [ "$second" = cut ] && words="--from --to $common"
+      ;;
     checkup) words="--ledger --ports --speed --json $common" ;;
     trace) words="--ledger --json $common" ;;
     ledger)

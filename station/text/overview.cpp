@@ -12,6 +12,8 @@ std::string overview() {
              "  line       run the station: scan badges, lot cards and probes, test in all nests\n"
              "  bench      emulated devices on pseudo-terminals, to work without hardware\n"
              "  test       test one probe in one nest\n"
+             "  replay     make a recorded run again from its bytes and compare\n"
+             "  recording  show, cut: look into recordings of what went over the lines\n"
              "  checkup    say what is wrong with the station and how to mend it\n"
              "  trace      print all that is known of one serial\n"
              "  ledger     verify, seal: check a ledger, print its newest hash\n"

@@ -19,6 +19,7 @@ struct TestOptions {
   std::string ports;            ///< folder for port names that are no full paths; empty: the station file's
   std::optional<double> speed;  ///< of the emulated bench; empty: the station file's
   std::string operator_name;    ///< who tests; kept with the run
+  std::string record;           ///< new folder for all bytes both ways; empty: none are kept
   /// The probe is seated and taken out through the bench's control socket; empty: where such a socket is.
   std::optional<bool> hands;
   std::string control;  ///< that socket; empty: the bench's usual one

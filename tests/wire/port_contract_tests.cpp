@@ -10,6 +10,7 @@
 #include "drivers/wire/pty_master.h"
 #include "drivers/wire/recording_port.h"
 #include "drivers/wire/serial_port.h"
+#include "drivers/wire/unsteady_port.h"
 #include "station/base/entropy.h"
 #include "tests/wire/line_trial.h"
 
@@ -93,6 +94,22 @@ const Case cases[] = {
        bed.line = std::make_unique<VirtualLine>();
        use_memory(bed);
        bed.near = std::make_unique<wire::RecordingPort>(std::move(bed.near), bed.line->clock(), bed.sink);
+     }},
+    {"UnsteadyWithoutTrouble",
+     [](Bed& bed) {
+       bed.line = std::make_unique<VirtualLine>();
+       use_memory(bed);
+       bed.near = std::make_unique<wire::UnsteadyPort>(std::move(bed.near), bed.line->clock(),
+                                                       std::make_shared<wire::Unsteadiness>());
+     }},
+    {"UnsteadyInPieces",
+     [](Bed& bed) {
+       bed.line = std::make_unique<VirtualLine>();
+       use_memory(bed);
+       auto unsteadiness = std::make_shared<wire::Unsteadiness>();
+       unsteadiness->add({wire::Unsteady::split, wire::Direction::out, 1.0});
+       unsteadiness->add({wire::Unsteady::split, wire::Direction::in, 1.0});
+       bed.near = std::make_unique<wire::UnsteadyPort>(std::move(bed.near), bed.line->clock(), unsteadiness);
      }},
     {"FaultWithoutFaults",
      [](Bed& bed) {
