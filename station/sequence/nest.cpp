@@ -28,10 +28,6 @@ db::RunDevice device_of(std::string role, const wire::Identity& identity, const 
 /// What a run that ends with this problem ends by. A lost device, a refusal, an odd answer: all a device's cause.
 Ending device_ending(const Problem& problem) { return {EndedBy::device, problem.id, problem.text()}; }
 
-std::uint32_t ceiling_uA(const measure::Model& model) {
-  return static_cast<std::uint32_t>(model.ceiling_mA * 1000.0 + 0.5);
-}
-
 }  // namespace
 
 Nest::Nest(const Configuration& configuration, const NestPlace& place, const PortOpener& ports, LineServices& services)
@@ -335,9 +331,7 @@ asio::awaitable<Ending> Nest::make_run(const Armed& armed, RunBook& book) {
 
 asio::awaitable<void> Nest::gather(const Armed& armed, RunBook& book) {
   const measure::Model& model = armed.model->value;
-  adapter_.set_ceiling({ceiling_uA(model), ceiling_uA(model)});
-  const auto slot_ns = static_cast<std::uint32_t>(model.slot_s * 1e9 + 0.5);
-  if (adapter_.slot_ns() != slot_ns) co_await adapter_.set_timing(slot_ns);
+  co_await prepare_adapter(adapter_, model);
   const Insertions insertions{seen_->phantom.probe.insertions, seen_->adapter.insertions};
   Routine routine{{phantom_, adapter_},
                   model,

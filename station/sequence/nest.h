@@ -11,6 +11,7 @@
 #include "station/sequence/configuration.h"
 #include "station/sequence/line_services.h"
 #include "station/sequence/routine.h"
+#include "station/sequence/run_book.h"
 
 namespace probewright::sequence {
 

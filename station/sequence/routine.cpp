@@ -80,6 +80,12 @@ asio::awaitable<void> watch_lid(phantom::Driver& phantom, wire::LineClock& clock
 
 }  // namespace
 
+asio::awaitable<void> prepare_adapter(adapter::Driver& adapter, const measure::Model& model) {
+  adapter.set_ceiling({microamperes(model.ceiling_mA), microamperes(model.ceiling_mA)});
+  const auto slot_ns = static_cast<std::uint32_t>(model.slot_s * 1e9 + 0.5);
+  if (adapter.slot_ns() != slot_ns) co_await adapter.set_timing(slot_ns);
+}
+
 class Routine::Going {
  public:
   Going(Routine& routine, std::string name, bool of_adapter, std::vector<Precedence> after = {})
@@ -99,7 +105,7 @@ class Routine::Going {
 };
 
 Routine::Routine(NestDevices devices, const measure::Model& model, const measure::PhantomCertificate& certificate,
-                 Insertions insertions, wire::LineClock& clock, RunBook& book, Progress progress)
+                 Insertions insertions, wire::LineClock& clock, CaptureBook& book, Progress progress)
     : devices_(devices),
       model_(model),
       certificate_(certificate),

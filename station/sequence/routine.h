@@ -9,10 +9,12 @@
 #include "drivers/phantom/driver.h"
 #include "drivers/wire/line_clock.h"
 #include "station/measure/model.h"
-#include "station/sequence/run_book.h"
+#include "station/sequence/capture_book.h"
 #include "station/sequence/run_step.h"
 
 namespace probewright::sequence {
+
+namespace asio = boost::asio;
 
 /// The two devices of one nest.
 struct NestDevices {
@@ -32,6 +34,10 @@ class Disturbed : public ProblemError {
   using ProblemError::ProblemError;
 };
 
+/// Tells the adapter's driver what the model's runs need before their first command: the highest drive, and the slots'
+/// timing. The drive must be off. Throws as the driver does.
+asio::awaitable<void> prepare_adapter(adapter::Driver& adapter, const measure::Model& model);
+
 /// What one nest does to one probe, in order: asks the devices for captures and hands them to the book. It computes no
 /// reading. One coroutine per run; line thread only; may be cancelled at any await.
 ///
@@ -49,7 +55,7 @@ class Routine {
   using Progress = std::function<void(std::string_view doing, int stage, int stages)>;
 
   Routine(NestDevices devices, const measure::Model& model, const measure::PhantomCertificate& certificate,
-          Insertions insertions, wire::LineClock& clock, RunBook& book, Progress progress);
+          Insertions insertions, wire::LineClock& clock, CaptureBook& book, Progress progress);
 
   /// Gathers all captures. Throws Disturbed, wire::DeviceLost and other ProblemErrors, system_error(operation_aborted)
   /// when cancelled. The drive may still be on then: whoever called switches it off.
@@ -106,7 +112,7 @@ class Routine {
   const measure::PhantomCertificate& certificate_;
   Insertions insertions_;
   wire::LineClock& clock_;
-  RunBook& book_;
+  CaptureBook& book_;
   Progress progress_;
   int stage_ = 0;
 

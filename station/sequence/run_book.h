@@ -6,6 +6,7 @@
 
 #include "db/rows.h"
 #include "station/measure/capture_format.h"
+#include "station/sequence/capture_book.h"
 #include "station/sequence/configuration.h"
 #include "station/sequence/ledger_writer.h"
 #include "station/sequence/line_types.h"
@@ -37,21 +38,19 @@ struct RunDocuments {
 
 /// Keeps the record of one run: its opening entry, captures and readings as they are made, its closing entry.
 /// Line thread only. All that it says to the ledger is said in order; the closing entry awaits all of it.
-class RunBook {
+class RunBook : public CaptureBook {
  public:
   RunBook(LedgerWriter& ledger, const RunDocuments& documents);
 
   /// Puts the opening entry and the documents that the ledger lacks on disk. Throws ProblemError; then no device
   /// command may follow.
   asio::awaitable<void> open(db::RunOpened opening);
-  /// Notes a capture of the stage that goes on. It counts from stage_done() on: a probe that is taken out in mid-stage
-  /// leaves nothing of it.
-  void add(measure::AnyCapture capture);
-  /// Notes a step that was made, for the outcome.
-  void note(RunStep step) { steps_.push_back(std::move(step)); }
+  void add(measure::AnyCapture capture) override;
+  /// Kept for the outcome.
+  void note(RunStep step) override { steps_.push_back(std::move(step)); }
   /// Evaluates what is there, judges what is new and hands both to the ledger. Throws ProblemError when the ledger is
   /// in trouble: the run cannot be recorded.
-  void stage_done();
+  void stage_done() override;
   /// Puts the rest and the closing entry on disk, then gives the outcome. Throws ProblemError: no verdict.
   asio::awaitable<RunOutcome> close(Ending ending, Body bench);
 
