@@ -131,8 +131,7 @@ Result<void> Lease::note(const Identity& identity) const {
   const bool written = ::pwrite(file_, text.data(), text.size(), 0) == static_cast<ssize_t>(text.size()) &&
                        ::ftruncate(file_, static_cast<off_t>(text.size())) == 0;
   if (written) return {};
-  return Problem{
-      "ledger_io", "lease", {{"reason", std::strerror(errno)}, {"code", "errno " + std::to_string(errno)}}};
+  return Problem{"ledger_io", "lease", {{"reason", std::strerror(errno)}, {"code", "errno " + std::to_string(errno)}}};
 }
 
 Result<Lease::Identity> Lease::identity_of(const std::string& ledger_path) {

@@ -8,20 +8,18 @@
 namespace probewright::db {
 namespace {
 
-/// A ledger that some line has used has a lease beside it, and a log while anybody has it open. A file without either
-/// is a copy or an archive. Opened as a live one, SQLite would put files beside it that a reader cannot take away.
-bool is_a_copy(const std::string& path) {
-  struct stat file {};
-  const auto lies_beside = [&](const char* suffix) { return stat((path + suffix).c_str(), &file) == 0; };
-  return !lies_beside("-wal") && !lies_beside("-journal") && !lies_beside(".lease");
-}
-
 bool wal_lies_beside(const std::string& path) {
   struct stat file {};
   return stat((path + "-wal").c_str(), &file) == 0 && file.st_size > 0;
 }
 
 }  // namespace
+
+bool is_copy(const std::string& path) {
+  struct stat file {};
+  const auto lies_beside = [&](const char* suffix) { return stat((path + suffix).c_str(), &file) == 0; };
+  return !lies_beside("-wal") && !lies_beside("-journal") && !lies_beside(".lease");
+}
 
 void refuse_foreign_file(Connection& connection) {
   const std::int64_t application = connection.ask_number("PRAGMA application_id");
@@ -37,7 +35,8 @@ void refuse_foreign_file(Connection& connection) {
 std::unique_ptr<Connection> open_readable(const std::string& path, ReadFrom from, const std::string& vfs) {
   if (from == ReadFrom::archive && wal_lies_beside(path)) throw ProblemError({"ledger_has_wal", path});
   if (from == ReadFrom::archive) return std::make_unique<Connection>(path, Access::immutable, vfs);
-  if (vfs.empty() && ::access(path.c_str(), R_OK) == 0 && is_a_copy(path))
+  // Opened as a live one, SQLite would put files beside a copy that a reader cannot take away.
+  if (vfs.empty() && ::access(path.c_str(), R_OK) == 0 && is_copy(path))
     return std::make_unique<Connection>(path, Access::immutable, vfs);
   try {
     auto connection = std::make_unique<Connection>(path, Access::read_only, vfs);

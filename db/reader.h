@@ -31,8 +31,13 @@ class Reader {
   Connection* connection_;
 };
 
-/// A connection for looking only. A copy (neither a log nor a lease lies beside it) and a closed ledger in a folder that
-/// may not be written are opened as archives: WAL would need to make files there, and would leave them. Throws db::Error, ProblemError ledger_has_wal.
+/// Whether a file is a copy or an archive: a ledger that some line has used has a lease beside it, and a log while
+/// anybody has it open; a file with neither is not in use.
+bool is_copy(const std::string& path);
+
+/// A connection for looking only. A copy (neither a log nor a lease lies beside it) and a closed ledger in a folder
+/// that may not be written are opened as archives: WAL would need to make files there, and would leave them. Throws
+/// db::Error, ProblemError ledger_has_wal.
 std::unique_ptr<Connection> open_readable(const std::string& path, ReadFrom from, const std::string& vfs = {});
 
 /// Throws ProblemError unless the file is a ledger with a layout that this program knows: ledger_not_a_ledger,

@@ -22,8 +22,8 @@ struct RestoreOptions {
 Result<CheckedCopy> restore_ledger(const std::string& backup, const std::string& to, const Clock& clock,
                                    const RestoreOptions& options);
 
-/// Tries a backup without touching the ledger: restores it in a folder of its own (beside `scratch`, which must be free)
-/// and takes that away again. Errors as above.
+/// Tries a backup without touching the ledger: restores it in a folder of its own (beside `scratch`, which must be
+/// free) and takes that away again. Errors as above.
 Result<CheckedCopy> restore_drill(const std::string& backup, const std::string& scratch, const RestoreOptions& options);
 
 }  // namespace probewright::db

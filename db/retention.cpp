@@ -43,7 +43,8 @@ class Standing {
 
 void add_captures(Reader& reader, std::int64_t run, PrunePlan& plan) {
   Row row = reader.begin(
-      "SELECT c.number, c.stored_size FROM capture AS c JOIN capture_bytes AS b ON b.capture = c.number WHERE c.run = ?");
+      "SELECT c.number, c.stored_size FROM capture AS c JOIN capture_bytes AS b ON b.capture = c.number WHERE c.run = "
+      "?");
   for (row.values(run); row.step();) {
     plan.captures.push_back(row.integer(0));
     plan.bytes += row.integer(1);

@@ -14,11 +14,12 @@ namespace probewright::db {
 /// Which captured bytes may go. Digests, readings and verdicts always stay.
 struct RetentionRules {
   UtcTime closed_before;  ///< the record period's end: only runs that were closed before it
-  int keep_one_in = 0;    ///< keep the captures of 1 serial in so many, chosen by is_kept; 0: keep none beyond the period
+  int keep_one_in = 0;  ///< keep the captures of 1 serial in so many, chosen by is_kept; 0: keep none beyond the period
 };
 
-/// Whether the captures of a serial are kept for good by "1 in n": the first 8 bytes of the SHA-256 over the serial, as a
-/// big-endian number, leave no remainder. The same serials on every station and in every year; nobody can choose them.
+/// Whether the captures of a serial are kept for good by "1 in n": the first 8 bytes of the SHA-256 over the serial, as
+/// a big-endian number, leave no remainder. The same serials on every station and in every year; nobody can choose
+/// them.
 bool is_kept(std::string_view serial, int one_in);
 
 /// What the rules take away and what they leave, counted in runs that still have captured bytes.

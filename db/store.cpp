@@ -195,9 +195,8 @@ void Store::refuse_closed_volume() {
 namespace {
 
 Body identity_body(const Lease::Identity& identity) {
-  return Body::Object{{"device", std::to_string(identity.device)},
-                      {"inode", std::to_string(identity.inode)},
-                      {"path", identity.path}};
+  return Body::Object{
+      {"device", std::to_string(identity.device)}, {"inode", std::to_string(identity.inode)}, {"path", identity.path}};
 }
 
 }  // namespace

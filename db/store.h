@@ -118,7 +118,8 @@ class Store {
   /// A ledger of an earlier layout gets the steps that it lacks, and an entry that says so, but only under the lease.
   /// Under the lease it is also noticed when the file was moved or copied since it was last opened: an entry says so.
   /// Errors: ledger_in_use, ledger_network, ledger_cannot_open, ledger_not_a_ledger, ledger_newer, ledger_older (no
-  /// lease), ledger_volume_closed, ledger_layout_altered, ledger_altered, ledger_other_station, ledger_mode, and what SQLite meets on the way.
+  /// lease), ledger_volume_closed, ledger_layout_altered, ledger_altered, ledger_other_station, ledger_mode, and what
+  /// SQLite meets on the way.
   static Result<std::unique_ptr<Store>> open(const StoreOptions& options, const Clock& clock);
   ~Store();
 

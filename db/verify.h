@@ -39,8 +39,8 @@ struct VerifyReport {
 
 /// Walks a whole ledger: layout with triggers, the chain, every projection, every run's digests, every capture's bytes,
 /// rows that belong to nothing, then SQLite's own check of its pages. Two threads, by range of entries. With `from`,
-/// the entries from there on, the runs that they open or close, and open runs. Readings of open runs are not yet covered
-/// by a digest; only their shape is looked at. Never throws for what is in the file: that is the first fault.
+/// the entries from there on, the runs that they open or close, and open runs. Readings of open runs are not yet
+/// covered by a digest; only their shape is looked at. Never throws for what is in the file: that is the first fault.
 /// Errors (the file cannot be looked at): ledger_cannot_open, ledger_newer, verify_stopped, verify_from_beyond.
 Result<VerifyReport> verify(const std::string& path, const VerifyOptions& options = {});
 

@@ -76,7 +76,8 @@ namespace {
 std::vector<Carried::Document> documents_in_force(Reader& reader) {
   std::vector<Carried::Document> documents;
   Row row = reader.begin(
-      "SELECT d.digest, d.kind, d.name, d.revision, d.text, e.who FROM document AS d JOIN entry AS e ON e.number = d.entry"
+      "SELECT d.digest, d.kind, d.name, d.revision, d.text, e.who FROM document AS d JOIN entry AS e ON e.number = "
+      "d.entry"
       " WHERE (SELECT s.state FROM document_state AS s WHERE s.document = d.digest ORDER BY s.entry DESC LIMIT 1)"
       " = 'in_force' ORDER BY d.entry");
   while (row.step()) {
@@ -209,8 +210,8 @@ void make_next(const CloseVolumeOptions& options, const Clock& clock, const Ende
   how.continues = ended.continuation;
   {
     auto store = Store::open(how, clock).value();
-    const auto written = store->commit(
-        [&](Change& change) { Carrying::write(change, carried, ended.continuation.volume); });
+    const auto written =
+        store->commit([&](Change& change) { Carrying::write(change, carried, ended.continuation.volume); });
     if (!written) throw ProblemError(written.error());
   }
   settle(part.path());
@@ -267,7 +268,8 @@ Result<std::optional<BrokenLink>> broken_link(const std::vector<std::string>& pa
     const std::int64_t volume = first.empty() ? 0 : first.front().data.number("volume", 0);
     const std::string previous = first.empty() ? "" : first.front().data.text("previous_seal");
     if (before && volume != number + 1)
-      return std::optional{BrokenLink{path, "is volume " + std::to_string(volume) + ", not " + std::to_string(number + 1)}};
+      return std::optional{
+          BrokenLink{path, "is volume " + std::to_string(volume) + ", not " + std::to_string(number + 1)}};
     if (before && previous != to_hex(before->hash))
       return std::optional{BrokenLink{path, "does not begin with the seal of the volume before it"}};
     before = newest_seal(*reader);

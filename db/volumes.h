@@ -29,12 +29,12 @@ struct ClosedVolume {
   std::int64_t standing = 0;   ///< open lots and holds
 };
 
-/// Ends the ledger's volume with an entry `volume_closed` and begins the next one under the ledger's name. Carried over:
-/// documents in force with their signatures and states, tries of serials whose last run has not passed, open lots,
-/// holds. No line may have the ledger. A closing that was cut short (a power cut) goes on when this is called again; at
-/// every moment in between one of the two files has the ledger's name, or opening the ledger gives it that name.
-/// Errors: volume_runs_open, ledger_in_use, ledger_locked (somebody reads: try again), file_exists (the archive's name
-/// is taken), and those of Store::open.
+/// Ends the ledger's volume with an entry `volume_closed` and begins the next one under the ledger's name. Carried
+/// over: documents in force with their signatures and states, tries of serials whose last run has not passed, open
+/// lots, holds. No line may have the ledger. A closing that was cut short (a power cut) goes on when this is called
+/// again; at every moment in between one of the two files has the ledger's name, or opening the ledger gives it that
+/// name. Errors: volume_runs_open, ledger_in_use, ledger_locked (somebody reads: try again), file_exists (the archive's
+/// name is taken), and those of Store::open.
 Result<ClosedVolume> close_volume(const CloseVolumeOptions& options, const Clock& clock);
 
 /// One link of the chain of volumes that does not hold, or nothing: each volume must begin with the number and the seal

@@ -226,8 +226,8 @@ std::optional<Fault> RangeWalker::run_fault(std::int64_t run, RangeWalk& walk) {
 std::optional<Fault> row_out_of_range(Connection& connection, std::int64_t first, std::int64_t last) {
   const auto look = [&](const std::string& table, const std::string& key) -> std::optional<Fault> {
     for (const char* where : {" < ?", " > ?"}) {
-      Statement statement(connection, "SELECT " + key + " FROM " + table + " WHERE " + key + where + " ORDER BY " +
-                                          key + " LIMIT 1");
+      Statement statement(
+          connection, "SELECT " + key + " FROM " + table + " WHERE " + key + where + " ORDER BY " + key + " LIMIT 1");
       Row row = statement.begin();
       if (row.values(where[1] == '<' ? first : last).step())
         return stray_fault(row.integer(0), table, key, row.integer(0));

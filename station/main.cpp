@@ -65,6 +65,12 @@ struct Dispatch {
   int operator()(const text::LabelOptions& options) const { return text::label(options, page_maker().get(), console); }
   int operator()(const text::LedgerVerifyOptions& options) const { return text::ledger_verify(options, console); }
   int operator()(const text::LedgerSealOptions& options) const { return text::ledger_seal(options, console); }
+  int operator()(const text::LedgerBackupOptions& options) const { return text::ledger_backup(options, console); }
+  int operator()(const text::LedgerRestoreOptions& options) const { return text::ledger_restore(options, console); }
+  int operator()(const text::LedgerCloseVolumeOptions& options) const {
+    return text::ledger_close_volume(options, console);
+  }
+  int operator()(const text::LedgerPruneOptions& options) const { return text::ledger_prune(options, console); }
   int operator()(const text::LimitsCheckOptions& options) const { return text::limits_check(options, console); }
   int operator()(const text::LimitsDiffOptions& options) const { return text::limits_diff(options, console); }
   int operator()(const text::MeasureSpectrumOptions& options) const { return text::measure_spectrum(options, console); }

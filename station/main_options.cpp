@@ -107,6 +107,8 @@ class Reader {
   void add_label();
   void add_page(CLI::App& app, text::ReportOptions& options);
   void add_ledger();
+  void add_ledger_copies(CLI::App& ledger);
+  void add_ledger_years(CLI::App& ledger);
   void add_limits();
   void add_measure();
   void add_recording();
@@ -135,6 +137,10 @@ class Reader {
   text::LabelOptions label_;
   text::LedgerVerifyOptions verify_;
   text::LedgerSealOptions seal_;
+  text::LedgerBackupOptions backup_;
+  text::LedgerRestoreOptions restore_;
+  text::LedgerCloseVolumeOptions close_volume_;
+  text::LedgerPruneOptions prune_;
   text::LimitsCheckOptions check_;
   text::LimitsDiffOptions diff_;
   text::MeasureSpectrumOptions spectrum_;
@@ -392,7 +398,7 @@ void Reader::add_label() {
 }
 
 void Reader::add_ledger() {
-  CLI::App& ledger = group("ledger", "check a ledger and print its seal");
+  CLI::App& ledger = group("ledger", "check, back up, restore and close ledgers; print the seal");
   CLI::App& verify = command(ledger, "verify", "walk a whole ledger and name the first place that does not agree",
                              "probewright ledger verify ledger.db");
   verify.add_option("FILE", verify_.file, "the ledger")->required()->type_name("");
@@ -401,6 +407,7 @@ void Reader::add_ledger() {
   CLI::Option* entry = add_whole(verify, "--entry", verify_.entry, "the entry that the seal was printed for");
   seal->needs(entry);
   entry->needs(seal);
+  add_whole(verify, "--from", verify_.from, "first entry to look at; the hash before it is taken as it stands");
   add_json(verify);
   answers(verify, verify_);
   CLI::App& newest =
@@ -408,6 +415,58 @@ void Reader::add_ledger() {
   newest.add_option("FILE", seal_.file, "the ledger; the station's unless told")->type_name("");
   add_json(newest);
   answers(newest, seal_);
+  add_ledger_copies(ledger);
+  add_ledger_years(ledger);
+}
+
+void Reader::add_ledger_copies(CLI::App& ledger) {
+  CLI::App& backup = command(ledger, "backup", "copy a ledger as it stands at one moment, and check the copy",
+                             "probewright ledger backup /mnt/backups");
+  backup.add_option("TO", backup_.to, "file to make, or a folder for it")->required()->type_name("");
+  backup.add_option("--ledger", backup_.ledger, "ledger instead of the station's")->type_name("FILE");
+  backup.add_option("--who", backup_.who, "who makes it; station unless told")->type_name("NAME");
+  add_json(backup);
+  answers(backup, backup_);
+  CLI::App& restore =
+      command(ledger, "restore", "make a ledger again from a backup, or try whether it could be",
+              "probewright ledger restore backup.db ledger.db --who 'Piet Hallgrim' --reason 'disk died'");
+  restore.add_option("BACKUP", restore_.backup, "the backup")->required()->type_name("");
+  restore.add_option("TO", restore_.to, "file to make; never written over")->type_name("");
+  restore.add_flag("--drill", restore_.drill, "only try it, and record the trial in the ledger");
+  restore.add_option("--ledger", restore_.ledger, "ledger that records the trial instead of the station's")
+      ->type_name("FILE");
+  CLI::Option* seal = restore.add_option("--seal", restore_.seal, "a seal from an earlier report, 64 digits");
+  seal->type_name("HASH");
+  CLI::Option* entry = add_whole(restore, "--entry", restore_.entry, "the entry that the seal was printed for");
+  seal->needs(entry);
+  entry->needs(seal);
+  restore.add_option("--who", restore_.who, "who restores; station unless told")->type_name("NAME");
+  restore.add_option("--reason", restore_.reason, "why; kept in the ledger")->type_name("TEXT");
+  add_json(restore);
+  answers(restore, restore_);
+}
+
+void Reader::add_ledger_years(CLI::App& ledger) {
+  CLI::App& close = command(ledger, "close-volume", "close the ledger's file as a volume and begin the next one",
+                            "probewright ledger close-volume --who 'Piet Hallgrim' --reason 'end of the year'");
+  close.add_option("--ledger", close_volume_.ledger, "ledger instead of the station's")->type_name("FILE");
+  close.add_option("--who", close_volume_.who, "who closes it")->required()->type_name("NAME");
+  close.add_option("--reason", close_volume_.reason, "why; kept in the ledger")->required()->type_name("TEXT");
+  add_json(close);
+  answers(close, close_volume_);
+  CLI::App& prune =
+      command(ledger, "prune", "tell which captured bytes may go after the record period, or take them away",
+              "probewright ledger prune --record-days 730 --keep-one-in 20");
+  prune.add_option("--ledger", prune_.ledger, "ledger instead of the station's")->type_name("FILE");
+  add_whole(prune, "--record-days", prune_.record_days, "how long captures are kept in any case")->required();
+  add_whole(prune, "--keep-one-in", prune_.keep_one_in, "keep those of 1 serial in so many for good");
+  CLI::Option* away = prune.add_flag("--take-away", prune_.take_away, "do it; otherwise it is only told");
+  CLI::Option* who = prune.add_option("--who", prune_.who, "who takes them away")->type_name("NAME");
+  CLI::Option* reason = prune.add_option("--reason", prune_.reason, "why; kept in the ledger")->type_name("TEXT");
+  away->needs(who);
+  away->needs(reason);
+  add_json(prune);
+  answers(prune, prune_);
 }
 
 void Reader::add_limits() {

@@ -26,12 +26,14 @@ struct ShowText {
 };
 
 /// What was asked for: one type for each command.
-using Request = std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions,
-                             text::TestOptions, text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions,
-                             text::LedgerSealOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
-                             text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
-                             text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions,
-                             text::ReplayOptions, text::RecordingShowOptions, text::RecordingCutOptions>;
+using Request =
+    std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions, text::TestOptions,
+                 text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions, text::LedgerSealOptions,
+                 text::LedgerBackupOptions, text::LedgerRestoreOptions, text::LedgerCloseVolumeOptions,
+                 text::LedgerPruneOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
+                 text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
+                 text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions, text::ReplayOptions,
+                 text::RecordingShowOptions, text::RecordingCutOptions>;
 
 struct CommandLine {
   bool json = false;

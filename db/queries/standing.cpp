@@ -27,8 +27,9 @@ std::vector<EntryRecord> last_of_each(std::vector<EntryRecord> all, const Key& k
 }
 
 std::vector<EntryRecord> last_of_lots(Reader& reader) {
-  return last_of_each(of_kinds(reader, "lot_opened", "lot_closed"),
-                      [](const Body& data) { return HoldSubject{"lot", data.text("lot")}; });
+  return last_of_each(of_kinds(reader, "lot_opened", "lot_closed"), [](const Body& data) {
+    return HoldSubject{"lot", data.text("lot")};
+  });
 }
 
 std::vector<EntryRecord> of_kind(std::vector<EntryRecord> all, std::string_view kind) {
@@ -48,7 +49,9 @@ std::set<std::string> closed_lots(Reader& reader) {
 
 std::vector<EntryRecord> standing_holds(Reader& reader) {
   return of_kind(last_of_each(of_kinds(reader, "hold", "hold_released"),
-                              [](const Body& data) { return HoldSubject{data.text("subject"), data.text("name")}; }),
+                              [](const Body& data) {
+                                return HoldSubject{data.text("subject"), data.text("name")};
+                              }),
                  "hold");
 }
 

@@ -1,5 +1,6 @@
 #include "db/hex.h"
 #include "db/verify.h"
+#include "station/text/interruption.h"
 #include "station/text/ledger.h"
 #include "station/text/table.h"
 
@@ -33,29 +34,36 @@ std::string counts(const db::VerifyReport& report) {
   return table.text(2);
 }
 
-/// What to compare with, or nothing where no seal was given.
-Result<std::optional<db::Seal>> printed_seal(const LedgerVerifyOptions& options) {
-  if (options.seal.empty() || !options.entry) return std::optional<db::Seal>{};
-  const auto hash = db::digest_from_hex(options.seal);
-  if (!hash) return Problem{"seal_malformed", "--seal", {{"text", options.seal}}};
-  return std::optional<db::Seal>{db::Seal{*options.entry, *hash}};
-}
-
 }  // namespace
 
+Result<std::optional<db::Seal>> printed_seal(const std::string& seal, const std::optional<std::int64_t>& entry) {
+  if (seal.empty() || !entry) return std::optional<db::Seal>{};
+  const auto hash = db::digest_from_hex(seal);
+  if (!hash) return Problem{"seal_malformed", "--seal", {{"text", seal}}};
+  return std::optional<db::Seal>{db::Seal{*entry, *hash}};
+}
+
 int ledger_verify(const LedgerVerifyOptions& options, Console& console) {
-  const auto printed = printed_seal(options);
+  const auto printed = printed_seal(options.seal, options.entry);
   if (!printed) return console.refuse(printed.error());
   db::VerifyOptions how;
   how.printed = *printed;
-  const auto report = db::verify(options.file, how);
+  how.from = options.from;
+  const Interruption interruption;
+  how.stop = interruption.token();
+  const auto report = [&] {
+    Progress progress(console, "checked");
+    how.progress = [&](std::int64_t done, std::int64_t total) { progress.at(done, total); };
+    return db::verify(options.file, how);
+  }();
   if (!report) return console.refuse(report.error());
   const ExitStatus status = report->ok() ? done : answer_is_no;
   if (console.json()) {
     console.print_json(json_of(*report));
     return status;
   }
-  console.print(options.file + (report->ok() ? ": all of it agrees" : ": it does not agree"));
+  const std::string part = options.from > 1 ? "everything from entry " + std::to_string(options.from) : "all of it";
+  console.print(options.file + ": " + (report->ok() ? part + " agrees" : "it does not agree"));
   console.print(counts(*report));
   if (!report->ok()) console.warn(db::altered_problem(options.file, *report->first_fault));
   return status;

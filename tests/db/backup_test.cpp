@@ -235,7 +235,8 @@ TEST_F(BackupTest, AMovedOrCopiedFileIsNoticedOnce) {
 
 TEST_F(BackupTest, AFileThatIsTakenAwayUnderTheLineStopsIt) {
   fs::rename(path, backup);
-  const auto outcome = store->commit([](Change& change) { change.add_entry("cleaning", "Imre Vasko", Body::Object{}); });
+  const auto outcome =
+      store->commit([](Change& change) { change.add_entry("cleaning", "Imre Vasko", Body::Object{}); });
   ASSERT_FALSE(outcome);
   EXPECT_EQ(outcome.error().id, "ledger_moved_away");
   EXPECT_TRUE(store->trouble());
