@@ -6,18 +6,19 @@ _probewright() {
   COMPREPLY=()
   for ((i = 1; i < COMP_CWORD; i++)); do
     case ${COMP_WORDS[i]} in
-      demo | line | bench | test | replay | recording | checkup | trace | ledger | limits | measure) command=${COMP_WORDS[i]} second=${COMP_WORDS[i+1]} && break ;;
+      demo | line | bench | test | replay | recording | checkup | trace | report | label | ledger | limits | measure) command=${COMP_WORDS[i]} second=${COMP_WORDS[i+1]} && break ;;
     esac
   done
   case $before in
     --config | --ports | --attach | --control | --truth | --scenario | --record | --ledger | --model | --out) mapfile -t COMPREPLY < <(compgen -f -- "$word"); return ;;
     --purpose) mapfile -t COMPREPLY < <(compgen -W "production engineering reference challenge gauge echo training return" -- "$word"); return ;;
     --band) mapfile -t COMPREPLY < <(compgen -W "red infrared" -- "$word"); return ;;
+    --kind) mapfile -t COMPREPLY < <(compgen -W "pass fail" -- "$word"); return ;;
     --frequency) mapfile -t COMPREPLY < <(compgen -W "known free" -- "$word"); return ;;
   esac
   local words=
   case $command in
-    "") words="demo line bench test replay recording checkup trace ledger limits measure --version $common" ;;
+    "") words="demo line bench test replay recording checkup trace report label ledger limits measure --version $common" ;;
     demo) words="--headless --probes --nests --speed --seed --mistakes --out --json $common" ;;
     line) words="--text --ledger --ports --speed --hands --control $common" ;;
     bench) words="--nests --speed --seed --perfect --ambient-C --mains-Hz --ports --attach --control --scenario --truth --seat $common" ;;
@@ -29,7 +30,14 @@ _probewright() {
       [ "$second" = cut ] && words="--from --to $common"
       ;;
     checkup) words="--ledger --ports --speed --json $common" ;;
-    trace) words="--ledger --json $common" ;;
+    trace) words="--lot --person --entry --day --ledger --json $common" ;;
+    label) words="--out --kind --reason --operator --width-mm --height-mm --dpi --ledger --json $common" ;;
+    report)
+      words="run serial shift $common"
+      [ "$second" = run ] && words="--out --ledger --json $common"
+      [ "$second" = serial ] && words="--out --ledger --json $common"
+      [ "$second" = shift ] && words="--from --to --day --lot --out --ledger --json $common"
+      ;;
     ledger)
       words="verify seal $common"
       [ "$second" = verify ] && words="--seal --entry --json $common"

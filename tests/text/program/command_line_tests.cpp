@@ -26,7 +26,7 @@ TEST_F(CommandLine, WithoutACommandItGivesAnOverviewWithTheCautions) {
   const auto told = ask({});
   EXPECT_EQ(told.status, 0);
   EXPECT_EQ(told.err, "");
-  for (const char* command : {"bench", "test", "checkup", "trace", "ledger", "limits", "measure"})
+  for (const char* command : {"bench", "test", "checkup", "trace", "report", "label", "ledger", "limits", "measure"})
     EXPECT_THAT(told.out, HasSubstr(command));
   EXPECT_THAT(told.out, HasSubstr("ISO 80601-2-61"));
   EXPECT_THAT(told.out, HasSubstr("demonstration"));
@@ -66,6 +66,15 @@ INSTANTIATE_TEST_SUITE_P(
         Wrong{{"trase", "X"}, "probewright: there is no command \"trase\" here (did you mean trace?"},
         Wrong{{"frobnicate"}, "there is no place for \"frobnicate\" here"},
         Wrong{{"trace"}, "probewright trace: SERIAL is missing"},
+        Wrong{{"trace", "A", "--lot", "L"}, "probewright trace: SERIAL and --lot cannot be asked for together"},
+        Wrong{{"trace", "--person", "P", "--day", "2026-12-01"}, "--person and --day cannot be asked for together"},
+        Wrong{{"trace", "--entry", "x"}, "\"x\" for --entry is not a whole number"},
+        Wrong{{"report"}, "probewright report: one of its commands is needed: run, serial, shift"},
+        Wrong{{"report", "run"}, "probewright report run: ENTRY is missing"},
+        Wrong{{"report", "run", "0"}, "is not a whole number from 1 up"},
+        Wrong{{"report", "serial"}, "probewright report serial: SERIAL is missing"},
+        Wrong{{"label"}, "probewright label: SERIAL is missing"},
+        Wrong{{"label", "A", "--kind", "void"}, "--kind cannot be \"void\" (choose one of pass, fail)"},
         Wrong{{"trace", "A", "B"}, "there is no place for \"B\" here"},
         Wrong{{"trace", "A", "--ledgr", "f"}, "there is no option --ledgr here (did you mean --ledger?"},
         Wrong{{"--frobnicate"}, "probewright: there is no option --frobnicate here"},
