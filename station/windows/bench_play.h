@@ -1,6 +1,5 @@
 #pragma once
 #include <string>
-#include <vector>
 
 #include "station/base/result.h"
 
@@ -12,11 +11,9 @@ class BenchPlay {
  public:
   virtual ~BenchPlay() = default;
 
-  /// What can be scanned to begin with: a badge, a lot card. Each with a name that may be shown.
-  struct Card {
-    std::string name, text;
-  };
-  virtual std::vector<Card> cards() const = 0;
+  /// What a badge and a lot card of the bench read like: scanned to begin with.
+  virtual std::string badge() const = 0;
+  virtual std::string lot_card() const = 0;
   /// The next serial of the lot that was not offered yet.
   virtual std::string next_serial() = 0;
   /// Puts the probe into the nest, as the hand does after a scan.

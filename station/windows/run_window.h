@@ -8,6 +8,7 @@ namespace probewright::windows {
 
 class BenchPlay;
 class LineFeed;
+class SetupDoor;
 
 struct WindowOptions {
   std::string version;   ///< as --version prints it
@@ -25,5 +26,15 @@ bool has_display();
 /// Opens the window over a running line and gives when it is closed: exit status 0, or 3 when the line ended by itself.
 /// The host goes on; finishing it is the caller's. Main thread only; makes the application.
 int run_window(sequence::LineHost& host, WindowOptions options);
+
+/// How the set-up page was left.
+enum class SetupEnd {
+  left,     ///< the window was closed; nothing is to be done
+  kept,     ///< a station file was written: start the line with it
+  emulated  ///< the emulated bench is wanted
+};
+/// The guided page of a first start. Of `options` feed and play are not looked at. Main thread only; makes the
+/// application and ends it.
+SetupEnd run_setup(SetupDoor& door, WindowOptions options);
 
 }  // namespace probewright::windows

@@ -44,9 +44,7 @@ void plan_stacked(BerthPlan& plan, QSizeF size, const TypeScale& type) {
   cut(left, pad * 0.8);
   plan.bar = cut(left, line * 0.55);
   cut(left, line * 0.45);
-  const double word_lines = plan.form == Form::tall    ? (size.width() > 24 * line ? 3.6 : 5.2)
-                            : size.width() < 12 * line ? 4.2
-                                                       : 3.2;
+  const double word_lines = plan.form == Form::tall ? (size.width() > 24 * line ? 3.6 : 5.2) : 4.4;
   const double plots = plan.form == Form::tall ? line * 4.6 : 0.0;
   const double rails = std::clamp(left.height() - word_lines * line - plots - line, line * 3.0, line * 14.0);
   plan.rails = cut(left, rails);

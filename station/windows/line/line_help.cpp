@@ -25,8 +25,8 @@ Passage berth() {
       Say::tr("What a berth shows"),
       {},
       {{Say::tr("Bar"),
-        Say::tr("The checks of the run in their order, each as wide as its time. Black is done. A struck-out part "
-                "was left out.")},
+        Say::tr("The checks of the run in their order, each as wide as its time. Full is done. A struck-out part was "
+                "left out; a taller one failed.")},
        {Say::tr("Rails"),
         Say::tr("The two thick lines are the acceptance limits of every check, drawn to one scale; the dotted line "
                 "is the middle, or what is typical. Each diamond is a reading, its vertical line the uncertainty. "
