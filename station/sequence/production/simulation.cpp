@@ -49,9 +49,9 @@ int threads_of(const BlockPlan& plan) {
 }
 
 /// Blocks done by several threads, each at its place.
-class Work {
+class BlockWork {
  public:
-  Work(const BlockPlan& plan, SimulationWatch& watch)
+  BlockWork(const BlockPlan& plan, SimulationWatch& watch)
       : plan_(plan), watch_(watch), done_(static_cast<std::size_t>(plan.blocks())) {}
 
   std::vector<std::optional<BlockTally>> run() {
@@ -139,7 +139,7 @@ Result<Simulation> simulate(const SimulatedDocuments& documents, const Simulatio
                             SimulationWatch& watch) {
   if (auto problem = senseless(documents, options)) return *problem;
   const BlockPlan plan{documents, filled_in(options)};
-  const auto blocks = Work{plan, watch}.run();
+  const auto blocks = BlockWork{plan, watch}.run();
   Simulation simulation = empty_simulation(plan);
   for (std::size_t i = 0; i < blocks.size(); ++i) {
     if (!blocks[i]) continue;
