@@ -12,6 +12,7 @@
 #include "station/text/limits.h"
 #include "station/text/line.h"
 #include "station/text/measure.h"
+#include "station/text/rederive.h"
 #include "station/text/report.h"
 #include "station/text/test.h"
 #include "station/text/trace.h"
@@ -28,9 +29,9 @@ using Request =
     std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions, text::TestOptions,
                  text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions, text::LedgerSealOptions,
                  text::LedgerBackupOptions, text::LedgerRestoreOptions, text::LedgerCloseVolumeOptions,
-                 text::LedgerPruneOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
-                 text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
-                 text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
+                 text::LedgerPruneOptions, text::RederiveOptions, text::ImpactOptions, text::LimitsCheckOptions,
+                 text::LimitsDiffOptions, text::MeasureSpectrumOptions, text::MeasurePulsesOptions,
+                 text::ReportRunOptions, text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
 
 struct CommandLine {
   bool json = false;
