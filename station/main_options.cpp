@@ -106,6 +106,8 @@ class Reader {
   void add_report();
   void add_label();
   void add_page(CLI::App& app, text::ReportOptions& options);
+  void add_rederive();
+  void add_impact();
   void add_ledger();
   void add_ledger_copies(CLI::App& ledger);
   void add_ledger_years(CLI::App& ledger);
@@ -141,6 +143,8 @@ class Reader {
   text::LedgerRestoreOptions restore_;
   text::LedgerCloseVolumeOptions close_volume_;
   text::LedgerPruneOptions prune_;
+  text::RederiveOptions rederive_;
+  text::ImpactOptions impact_;
   text::LimitsCheckOptions check_;
   text::LimitsDiffOptions diff_;
   text::MeasureSpectrumOptions spectrum_;
@@ -173,6 +177,8 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   add_trace();
   add_report();
   add_label();
+  add_rederive();
+  add_impact();
   add_ledger();
   add_limits();
   add_measure();
@@ -395,6 +401,47 @@ void Reader::add_label() {
   app.add_option("--ledger", label_.ledger, "ledger instead of the station's")->type_name("FILE");
   add_json(app);
   answers(app, label_);
+}
+
+void Reader::add_rederive() {
+  CLI::App& app = command(app_, "rederive", "compute readings and verdicts anew from stored captures, and compare",
+                          "probewright rederive AQ20-048-00001");
+  app.add_option("SERIAL", rederive_.serial, "all runs of this serial")->type_name("");
+  app.add_option("--lot", rederive_.lot, "all runs of this lot")->type_name("LOT");
+  add_whole(app, "--run", rederive_.run, "one run, by the number of its opening entry");
+  app.add_flag("--all", rederive_.everything, "every run of the ledger");
+  app.add_option("--ledger", rederive_.ledger, "ledger instead of the station's")->type_name("FILE");
+  add_whole(app, "--threads", rederive_.threads, "threads, as many as the machine has unless told");
+  add_json(app);
+  answers(app, rederive_);
+}
+
+void Reader::add_impact() {
+  CLI::App& app = command(app_, "impact", "tell which passed probes would have failed had a device been right",
+                          "probewright impact PH-07 --since 2026-03-03 --off wavelength --by 0.4");
+  app.add_option("DEVICE", impact_.device, "serial of the device, or number of its certificate")
+      ->required()
+      ->type_name("");
+  app.add_option("--since", impact_.since, "from this day or moment on")->required()->type_name("TIME");
+  app.add_option("--until", impact_.until, "up to this day or moment")->type_name("TIME");
+  CLI::Option* off = add_word(
+      app, "--off",
+      {"wavelength", "temperature", "slit", "ratio", "modulation", "drive", "photocurrent", "voltage", "resistance"},
+      [this](const std::string& word) { impact_.off = word; }, "what was off");
+  CLI::Option* by = add_number(app, "--by", impact_.by,
+                               "how much too high it told: nm for wavelength and slit, K for temperature, else %");
+  off->needs(by);
+  by->needs(off);
+  app.add_flag("--both-ways", impact_.both_ways, "the direction is not known: the worse of both counts")->needs(off);
+  app.add_option("--certificate", impact_.certificate, "the corrected certificate, instead of --off and --by")
+      ->type_name("FILE");
+  app.add_option("--ledger", impact_.ledger, "ledger instead of the station's")->type_name("FILE");
+  add_whole(app, "--threads", impact_.threads, "threads, as many as the machine has unless told");
+  CLI::Option* hold = app.add_flag("--hold", impact_.hold, "put the serials that would have failed on hold");
+  hold->needs(app.add_option("--who", impact_.who, "who puts them on hold")->type_name("NAME"));
+  hold->needs(app.add_option("--reason", impact_.reason, "why; kept in the ledger")->type_name("TEXT"));
+  add_json(app);
+  answers(app, impact_);
 }
 
 void Reader::add_ledger() {

@@ -13,6 +13,7 @@
 #include "station/text/line.h"
 #include "station/text/measure.h"
 #include "station/text/recording.h"
+#include "station/text/rederive.h"
 #include "station/text/replay.h"
 #include "station/text/report.h"
 #include "station/text/test.h"
@@ -30,10 +31,10 @@ using Request =
     std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions, text::TestOptions,
                  text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions, text::LedgerSealOptions,
                  text::LedgerBackupOptions, text::LedgerRestoreOptions, text::LedgerCloseVolumeOptions,
-                 text::LedgerPruneOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
-                 text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
-                 text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions, text::ReplayOptions,
-                 text::RecordingShowOptions, text::RecordingCutOptions>;
+                 text::LedgerPruneOptions, text::RederiveOptions, text::ImpactOptions, text::LimitsCheckOptions,
+                 text::LimitsDiffOptions, text::MeasureSpectrumOptions, text::MeasurePulsesOptions,
+                 text::ReportRunOptions, text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions,
+                 text::ReplayOptions, text::RecordingShowOptions, text::RecordingCutOptions>;
 
 struct CommandLine {
   bool json = false;
