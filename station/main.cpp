@@ -9,6 +9,7 @@
 #include "station/main_hands.h"
 #include "station/main_options.h"
 #include "station/main_pages.h"
+#include "station/main_window.h"
 #include "station/text/console.h"
 
 // Wires things together and nothing else: what was asked for, where it prints, what it ends with.
@@ -45,7 +46,8 @@ struct Dispatch {
   }
   int operator()(const text::LineOptions& options) const {
     const auto hands = bench_hands(options);
-    return text::line(options, hands ? &*hands : nullptr, console);
+    const auto window = options.text ? nullptr : line_window(options.build.version);
+    return text::line(options, hands ? &*hands : nullptr, window.get(), console);
   }
   int operator()(const text::TestOptions& options) const {
     const auto hands = bench_hands(options);

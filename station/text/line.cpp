@@ -205,11 +205,28 @@ Typed meaning_of_typed(const std::string& text) {
   return LineRequest{Scan{text}};
 }
 
-int line(const LineOptions& options, const BenchHands* hands, Console& console) {
+namespace {
+
+int line_in_window(const LineOptions& options, Configuration configuration, LineWindow& window, Console& console) {
+  LineHostOptions host;
+  host.ledger = options.ledger;
+  host.ports = options.ports;
+  host.software = {options.build.version, options.build.commit, options.build.compiler};
+  auto started = LineHost::start(std::move(configuration), host, window.listener());
+  if (!started) return console.refuse(started.error());
+  const int status = window.open(**started);
+  (*started)->finish("the person at the station");
+  return status;
+}
+
+}  // namespace
+
+int line(const LineOptions& options, const BenchHands* hands, LineWindow* window, Console& console) {
   auto configuration = chosen_configuration(options.choice, options.speed);
   if (!configuration) return console.refuse(configuration.error());
   // Real probes are put in by people, whatever bench may also be running on this machine.
   if (!configuration->station.value.emulated) hands = nullptr;
+  if (window && !options.text) return line_in_window(options, std::move(*configuration), *window, console);
   return LineInText{options, hands, console}.run(std::move(*configuration));
 }
 

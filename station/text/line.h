@@ -6,6 +6,7 @@
 #include "station/sequence/line_types.h"
 #include "station/text/choices.h"
 #include "station/text/console.h"
+#include "station/text/line_window.h"
 #include "station/text/test.h"
 
 namespace probewright::text {
@@ -26,7 +27,8 @@ struct LineOptions {
 /// elsewhere each change is a line.
 /// `hands`: who puts probes in and takes them out; nullptr: people.
 /// Exit status: 0 left in order, 2 refused configuration, 3 the line could not start or ended by a mistake of ours.
-int line(const LineOptions& options, const BenchHands* hands, Console& console);
+/// `window`: where the line is shown instead, unless options.text; nullptr: there is none.
+int line(const LineOptions& options, const BenchHands* hands, LineWindow* window, Console& console);
 
 /// "quit": the line is left when all runs have ended.
 struct Leave {};
