@@ -1,5 +1,6 @@
 #include "station/main_demo.h"
 
+#include "drivers/emulated/action_log.h"
 #include "drivers/emulated/bench_thread.h"
 #include "drivers/emulated/demo_lot.h"
 
@@ -53,6 +54,18 @@ sequence::NestPlace place_of(int nest) {
           {"nest" + number + "-adapter", "ADC-2026-01" + digits}};
 }
 
+/// The device floor of a run that went through at once: what the bench tells of its work, by the steps of the routine.
+std::optional<double> floor_of(const sequence::RunOutcome& run, emulated::ActionLog& log) {
+  if (run.asked_again > 0 || run.verdict == sequence::RunVerdict::void_run || run.steps.empty()) return std::nullopt;
+  std::vector<double> busy_s;
+  for (const sequence::RunStep& step : run.steps) {
+    const auto kind = step.on_adapter ? emulated::DeviceKind::adapter : emulated::DeviceKind::phantom;
+    busy_s.push_back(log.busy_s({run.nest, kind}, step.from, step.to));
+  }
+  log.forget(run.nest, run.steps.back().to);
+  return sequence::device_floor_s(run.steps, busy_s);
+}
+
 }  // namespace
 
 text::DemoParts demo_parts(const text::DemoOptions& options) {
@@ -65,13 +78,15 @@ text::DemoParts demo_parts(const text::DemoOptions& options) {
       std::string{"LOT/"} + lot_name + "/" + model + "/" + std::to_string(lot.size()) + "/" + lot.front().serial;
   parts.badge = operator_badge;
   parts.truth = emulated::truth_json(options.seed, emulated::truths_of(lot, options.seed));
-  parts.start_bench = [&options](const std::string& ports) -> Result<std::unique_ptr<ProbeHandler>> {
+  const auto log = std::make_shared<emulated::ActionLog>();  // outlives the bench, which tells it what it does
+  parts.device_floor_s = [log](const sequence::RunOutcome& run) { return floor_of(run, *log); };
+  parts.start_bench = [&options, log](const std::string& ports) -> Result<std::unique_ptr<ProbeHandler>> {
     emulated::RunBenchOptions bench;
     bench.bench.nests = options.nests;
     bench.bench.speed = options.speed;
     bench.bench.seed = options.seed;
     bench.folder = ports;
-    auto started = emulated::BenchThread::start(std::move(bench));
+    auto started = emulated::BenchThread::start(std::move(bench), log.get());
     if (!started) return started.error();
     return std::unique_ptr<ProbeHandler>{std::make_unique<HandsAtBench>(*std::move(started))};
   };

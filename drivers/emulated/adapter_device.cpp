@@ -95,7 +95,8 @@ asio::awaitable<void> AdapterDevice::answer(Shared self, std::shared_ptr<Outbox>
   }
   if (self->observer_ != nullptr) {
     const double on_line_s = line_seconds(request_bytes + bytes.size(), self->setup_.baud);
-    self->observer_->done({self->setup_.id, std::string(request::name(type)), start_s, busy_s + on_line_s});
+    self->observer_->done(
+        {self->setup_.id, std::string(request::name(type)), start_s, busy_s + on_line_s, self->clock_.moment(start_s)});
   }
   outbox->put(std::move(bytes));
   if (started && self->capture_) begin_stream(self, outbox);
@@ -127,7 +128,7 @@ asio::awaitable<void> AdapterDevice::stream(Shared self, std::shared_ptr<Outbox>
       framed(end_frame, sequence, wire::LeWriter{}.u16(capture.number).u32(capture.cycles).u32(check.value()).take()));
   if (self->observer_ != nullptr) {
     const double busy_s = capture.end_s() - capture.start_s + line_seconds(last_bytes, self->setup_.baud);
-    self->observer_->done({self->setup_.id, "capture", capture.start_s, busy_s});
+    self->observer_->done({self->setup_.id, "capture", capture.start_s, busy_s, self->clock_.moment(capture.start_s)});
   }
 }
 

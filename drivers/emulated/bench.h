@@ -52,8 +52,6 @@ class Bench final : public Hands {
   Bench& operator=(const Bench&) = delete;
 
   const BenchOptions& options() const { return options_; }
-  /// A moment of the line's clock in device seconds since the bench began, as actions tell theirs.
-  double device_s(SteadyTime moment) const { return clock_.at_s(moment); }
   std::vector<DeviceId> devices() const;
 
   /// The station's end of a new in-memory line to the device. An older line of it is lost, as by re-plugging. Throws

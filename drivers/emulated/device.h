@@ -41,6 +41,7 @@ struct Action {
   std::string what;      ///< the header of the message's first unit, or the name of the request
   double start_s = 0.0;  ///< device seconds since the bench began
   double busy_s = 0.0;
+  SteadyTime began{};  ///< the same on the line's clock
 };
 
 /// Is told every action when it ends. Must outlive the bench. Line thread only.
@@ -55,11 +56,9 @@ class DeviceClock {
  public:
   explicit DeviceClock(wire::LineClock& clock, double speed)
       : clock_(clock), epoch_(clock.steady_now()), speed_(speed) {}
-  double now_s() const { return at_s(clock_.steady_now()); }
-  double at_s(SteadyTime moment) const { return seconds(moment - epoch_) * speed_; }
-  asio::awaitable<void> wait_until_s(double time_s) const {
-    return clock_.wait_until(epoch_ + from_seconds(time_s / speed_));
-  }
+  double now_s() const { return seconds(clock_.steady_now() - epoch_) * speed_; }
+  SteadyTime moment(double time_s) const { return epoch_ + from_seconds(time_s / speed_); }
+  asio::awaitable<void> wait_until_s(double time_s) const { return clock_.wait_until(moment(time_s)); }
   double speed() const { return speed_; }
   wire::LineClock& line() const { return clock_; }
 

@@ -91,7 +91,8 @@ asio::awaitable<void> PhantomDevice::answer_line(std::shared_ptr<PhantomDevice> 
   std::string answer = answers.empty() ? std::string{} : self->framed(answers);
   if (self->observer_ != nullptr && !message.units.empty()) {
     const double on_line_s = line_seconds(line_bytes + answer.size(), self->setup_.baud);
-    self->observer_->done({self->setup_.id, header_text(message.units.front()), start_s, busy_s + on_line_s});
+    self->observer_->done({self->setup_.id, header_text(message.units.front()), start_s, busy_s + on_line_s,
+                           self->clock_.moment(start_s)});
   }
   if (!answer.empty()) co_await send_or_drop(*port, self->clock_.line(), std::as_bytes(std::span{answer}));
 }

@@ -251,8 +251,8 @@ asio::awaitable<void> Routine::take_slots_alone(Band lit) {
   const std::string led{slug(lit)};
   const Going step{*this, led + " slots", on_adapter};
   if (lit == Band::infrared) {
-    const adapter::ForwardVoltage first = co_await devices_.adapter.forward_voltage(adapter::Led::infrared);
-    if (!first.at_compliance) contact_.led.infrared.first_voltage_V = first.first_uV * 1e-6;
+    infrared_first_ = co_await devices_.adapter.forward_voltage(adapter::Led::infrared);
+    if (!infrared_first_.at_compliance) contact_.led.infrared.first_voltage_V = infrared_first_.first_uV * 1e-6;
   }
   if (!wants_crosstalk()) co_return;
   measure::AloneSlotsCapture alone;
@@ -294,10 +294,9 @@ asio::awaitable<void> Routine::take_contact() {
   contact_.id_open = id.open;
   if (!id.open) contact_.id_resistance_ohm = id.resistance_milliohm * 1e-3;
   const adapter::ForwardVoltage red = co_await adapter.forward_voltage(adapter::Led::red);
-  const adapter::ForwardVoltage infrared = co_await adapter.forward_voltage(adapter::Led::infrared);
   if (!red.at_compliance) contact_.led.red.first_voltage_V = red.first_uV * 1e-6;
   const measure::ForwardVoltage at_red = forward_voltage(red, model_.drive_mA.red),
-                                at_infrared = forward_voltage(infrared, model_.drive_mA.infrared);
+                                at_infrared = forward_voltage(infrared_first_, model_.drive_mA.infrared);
   if (measure::cannot_shine(at_red) || measure::cannot_shine(at_infrared)) {
     contact_.led.red.at_drive = at_red;
     contact_.led.infrared.at_drive = at_infrared;

@@ -120,6 +120,7 @@ class Routine {
   std::vector<phantom::SetPoint> stored_set_points_;
   std::optional<phantom::Spectrum> dark_frame_;  ///< of the first exposure
   adapter::DarkCurrent dark_connected_, dark_open_;
+  adapter::ForwardVoltage infrared_first_;
   measure::ElectricalCapture contact_, driven_;
   SteadyTime both_on_{};
   bool blade_in_ = false;

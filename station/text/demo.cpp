@@ -162,7 +162,7 @@ class Demonstration {
   void hear(const LineEvent& event) {
     if (const auto* ended = std::get_if<RunEnded>(&event)) {
       const RunOutcome& outcome = ended->outcome;
-      if (parts_.device_floor_s) floors_[outcome.run] = parts_.device_floor_s(outcome.nest, outcome.run);
+      if (parts_.device_floor_s) floors_[outcome.run] = parts_.device_floor_s(outcome);
       say(run_line(outcome, options_.speed));
     } else if (const auto* lost = std::get_if<RunNotRecorded>(&event)) {
       say("nest " + std::to_string(lost->nest) + ": " + lost->serial + ": " + lost->problem.text());

@@ -34,8 +34,9 @@ struct DemoParts {
   std::string truth;                             ///< text of the truth file
   /// Starts the bench with its ports in this folder.
   std::function<Result<std::unique_ptr<sequence::production::ProbeHandler>>(const std::string& ports)> start_bench;
-  /// The device floor of a run that has just ended in this nest, in device seconds; empty: nobody measures it.
-  std::function<std::optional<double>(int nest, std::int64_t run)> device_floor_s;
+  /// The device floor of a run that has just ended, in device seconds; nothing where something had to be asked again or
+  /// the run did not go through. Empty: nobody measures it.
+  std::function<std::optional<double>(const sequence::RunOutcome& outcome)> device_floor_s;
   /// Makes the labels of these runs into a folder and gives how many; empty: this program draws none.
   std::function<Result<int>(const std::string& ledger, const std::vector<std::int64_t>& runs,
                             const std::string& folder)>
