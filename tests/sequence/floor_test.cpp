@@ -16,7 +16,7 @@ using trial::MemoryLedger;
 using trial::Told;
 using trial::Trial;
 
-constexpr DeviceId phantom{1, DeviceKind::phantom}, adapter{1, DeviceKind::adapter};
+constexpr DeviceId the_phantom{1, DeviceKind::phantom}, the_adapter{1, DeviceKind::adapter};
 constexpr emulated::AdapterDevice::Drive dark{};
 
 class Floor : public ::testing::Test {
@@ -165,7 +165,7 @@ TEST_P(Disturbance, AnotherProbePutInDuringTheRunEndsItVoid) {
 }
 
 TEST_P(Disturbance, APulledDeviceVoidsTheRunAndComesBack) {
-  for (const DeviceId device : {phantom, adapter}) {
+  for (const DeviceId device : {the_phantom, the_adapter}) {
     at_stage(GetParam(), [this, device] { station.bench().pull(device).value(); });
     const Told told = station.test("AQ20-048-00001");
     ASSERT_TRUE(told.outcome) << to_text(device);
@@ -181,7 +181,7 @@ TEST_P(Disturbance, APulledDeviceVoidsTheRunAndComesBack) {
 }
 
 TEST_P(Disturbance, ADeviceThatStartsAnewVoidsTheRun) {
-  for (const DeviceId device : {phantom, adapter}) {
+  for (const DeviceId device : {the_phantom, the_adapter}) {
     at_stage(GetParam(), [this, device] { station.bench().restart(device).value(); });
     const Told told = station.test("AQ20-048-00001");
     ASSERT_TRUE(told.outcome) << to_text(device);
@@ -197,7 +197,7 @@ INSTANTIATE_TEST_SUITE_P(AtEveryStage, Disturbance, ::testing::Range(1, 7));
 TEST(Readiness, AWrongCertificateIsRefusedInWords) {
   MemoryLedger ledger;
   trial::Options options = ledger.options(1);
-  options.bench.wrong_certificate = {adapter};
+  options.bench.wrong_certificate = {the_adapter};
   Trial station{options};
   station.let_pass(std::chrono::seconds(5));
   const auto view = station.line().views().front();
