@@ -69,6 +69,8 @@ std::string why_of_run(const db::RunRecord& run) {
   if (closing.verdict != "pass") why = trace::cause_words(closing.cause, closing.cause_words, closing.failing);
   const std::string likely = closing.bench.text("likely_cause_words");
   if (!likely.empty()) why += "\nlikely cause: " + likely;
+  const std::string rework = closing.bench.text("rework");
+  if (!rework.empty()) why += "\nrework: " + rework;
   const db::ReadingRow* nearest = trace::nearest_to_an_edge(run);
   if (nearest && closing.verdict == "pass")
     why =

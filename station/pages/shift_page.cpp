@@ -55,7 +55,7 @@ ShiftReport shift_report_of(const trace::ShiftFacts& facts, const trace::PageNot
   const trace::ShiftCounts& probes = facts.probes;
   report.counts = {probes.tested(), probes.passed, probes.passed_first_time, probes.failed, probes.voided};
   report.runs = {facts.runs.all(), facts.runs.passed, facts.runs.failed, facts.runs.voided};
-  report.rework = facts.rework;
+  report.sent_to_rework = facts.sent_to_rework;
   report.left_open = facts.left_open;
   for (const trace::FailingCheckFacts& check : facts.failing)
     report.failing_checks.push_back({trace::shown_as(check.check), check.runs, check.likely_cause_words});

@@ -135,7 +135,7 @@ std::string runs_words(const ShiftReport& report) {
   std::string words = std::to_string(report.runs->all) + " production: " + std::to_string(report.runs->passed) +
                       " passed, " + std::to_string(report.runs->failed) + " failed, " +
                       std::to_string(report.runs->voided) + " void";
-  if (report.rework > 0) words += "; " + std::to_string(report.rework) + " after rework";
+  if (report.sent_to_rework > 0) words += "; " + std::to_string(report.sent_to_rework) + " sent to rework";
   if (report.left_open > 0) words += "; " + std::to_string(report.left_open) + " had begun and not ended";
   for (const std::string& other : report.others) words += "\n" + other + " (not counted above)";
   return words;

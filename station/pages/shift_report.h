@@ -70,7 +70,7 @@ struct ShiftReport {
   bool emulated = false;
   ShiftCounts counts;
   std::optional<ShiftRuns> runs;
-  int rework = 0;                            ///< production runs after rework
+  int sent_to_rework = 0;                    ///< failed production runs that a rework instruction was named for
   int left_open = 0;                         ///< runs that had begun and not ended
   std::vector<std::string> others;           ///< runs of other purposes, in words, one a line
   std::vector<FailingCheck> failing_checks;  ///< any order; drawn with the commonest first

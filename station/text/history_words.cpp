@@ -80,6 +80,7 @@ std::string words_of(const db::RunRecord& run) {
   if (run.closing)
     facts.add("cause", trace::cause_words(run.closing->cause, run.closing->cause_words, run.closing->failing));
   if (run.closing) facts.add("likely", run.closing->bench.text("likely_cause_words"));
+  if (run.closing) facts.add("rework", run.closing->bench.text("rework"));
   facts.add("nearest", nearest_line(run));
   for (std::size_t i = 0; i < run.documents.size(); ++i)
     facts.add(i == 0 ? "documents" : "", run.documents[i].role + ": " + trace::document_words(run.documents[i]));

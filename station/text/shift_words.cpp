@@ -29,7 +29,7 @@ std::string counts_of(const trace::ShiftFacts& facts) {
                      " of " + number(probes.judged()) + " with a verdict)\n" + number(facts.runs.all()) +
                      " production runs: " + number(facts.runs.passed) + " passed, " + number(facts.runs.failed) +
                      " failed, " + number(facts.runs.voided) + " void\n";
-  if (facts.rework > 0) text += number(facts.rework) + " of them after rework\n";
+  if (facts.sent_to_rework > 0) text += number(facts.sent_to_rework) + " of them sent to rework\n";
   for (const trace::PurposeFacts& other : facts.other_purposes)
     text += number(other.runs.all()) + " " + other.purpose + " runs, not counted above: " + number(other.runs.passed) +
             " passed, " + number(other.runs.failed) + " failed, " + number(other.runs.voided) + " void\n";
@@ -162,7 +162,7 @@ Json json_of(const trace::ShiftFacts& facts) {
   json.set("first_entry", facts.entries.first).set("last_entry", facts.entries.last);
   json.set("seal", to_hex(facts.seal.hash)).set("seal_entry", facts.seal.entry);
   json.set("probes", std::move(probes)).set("production", json_of(facts.runs));
-  json.set("left_open", facts.left_open).set("rework", facts.rework);
+  json.set("left_open", facts.left_open).set("sent_to_rework", facts.sent_to_rework);
   json.set("other_purposes", list_of(facts.other_purposes)).set("failing", list_of(facts.failing));
   json.set("nests", list_of(facts.nests)).set("people", list_of(facts.people)).set("lots", list_of(facts.lots));
   return std::move(json.set("stretches", list_of(facts.stretches)).set("series", list_of(facts.series)));

@@ -275,10 +275,7 @@ ShiftFacts shift_facts(db::Reader& reader, const ShiftQuestion& question) {
   std::set<std::int64_t> numbers;
   for (const RunBrief& run : production) {
     count(facts.runs, verdict_of(run));
-    const Body* rework = run.closing->bench.find("rework");
-    if (rework && !rework->is_null() && !(rework->boolean() && !*rework->boolean()) &&
-        !(rework->string() && rework->string()->empty()) && !(rework->integer() && *rework->integer() == 0))
-      ++facts.rework;
+    if (verdict_of(run) == "fail" && !run.closing->bench.text("rework").empty()) ++facts.sent_to_rework;
     numbers.insert(run.run.value);
   }
   facts.left_open = static_cast<int>(open.size());

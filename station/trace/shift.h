@@ -100,7 +100,7 @@ struct ShiftFacts {
   ShiftCounts probes;
   RunCounts runs;                          ///< production
   int left_open = 0;                       ///< runs of any purpose that had begun and not ended
-  int rework = 0;                          ///< production runs after rework
+  int sent_to_rework = 0;                  ///< failed production runs whose closing entry names a rework instruction
   std::vector<FailingCheckFacts> failing;  ///< commonest first
   std::vector<NestFacts> nests;            ///< by number
   std::vector<PersonFacts> people;         ///< in the order in which they appear

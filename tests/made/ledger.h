@@ -61,7 +61,7 @@ struct Run {
   std::string lot = "AQ20-W48-07";
   int nest = 1;
   std::string operator_name = "Imre Vasko";
-  std::string likely_cause, likely_cause_words;
+  std::string likely_cause, likely_cause_words, rework;
   double cycle_s = 0.0;  ///< 0: not told
   std::vector<db::ReadingRow> readings = {centroid(660.0)};
   std::vector<std::pair<std::string, Bytes>> captures = {};  ///< kind and decoded bytes
@@ -149,6 +149,7 @@ class Ledger {
     Body::Object bench;
     if (!wanted.likely_cause.empty()) bench["likely_cause"] = wanted.likely_cause;
     if (!wanted.likely_cause_words.empty()) bench["likely_cause_words"] = wanted.likely_cause_words;
+    if (!wanted.rework.empty()) bench["rework"] = wanted.rework;
     if (wanted.cycle_s > 0.0) bench["cycle_us"] = static_cast<std::int64_t>(wanted.cycle_s * 1e6);
     closed.bench = std::move(bench);
     return closed;

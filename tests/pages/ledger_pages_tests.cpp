@@ -74,6 +74,14 @@ measure::PulseCapture pulses(double ratio) {
   return capture;
 }
 
+/// Accepted from 936 to 944 nm: margin 1 at 940.
+db::ReadingRow infrared_centroid(double value) {
+  db::ReadingRow row = made::centroid(value - 280.0, "infrared_centroid");
+  *row.value += 280.0;
+  for (auto* limit : {&row.lower, &row.upper, &row.acceptance_lower, &row.acceptance_upper}) **limit += 280.0;
+  return row;
+}
+
 std::vector<std::pair<std::string, Bytes>> usual_captures() {
   std::vector<std::pair<std::string, Bytes>> all;
   const auto keep = [&](const measure::AnyCapture& capture) {
@@ -124,13 +132,13 @@ class LedgerPages : public testing::Test {
             .likely_cause = "leaky_detector",
             .likely_cause_words = "a leaky detector",
             .cycle_s = 24.2,
-            .readings = {made::centroid(661.2), made::centroid(659.0, "infrared_centroid"), made::dark_current(6.4)},
+            .readings = {made::centroid(661.2), infrared_centroid(939.0), made::dark_current(6.4)},
             .captures = usual_captures()};
   }
   made::Run passed(const std::string& serial) {
     return {.serial = serial,
             .cycle_s = 23.8,
-            .readings = {made::centroid(661.2), made::centroid(663.5, "infrared_centroid"), made::dark_current(1.25)},
+            .readings = {made::centroid(661.2), infrared_centroid(943.5), made::dark_current(1.25)},
             .captures = usual_captures()};
   }
 
@@ -288,7 +296,7 @@ void whole_shift(made::Ledger& ledger) {
                   .likely_cause = fails ? "leaky_detector" : "",
                   .likely_cause_words = fails ? "leaky detector or a soiled lens" : "",
                   .cycle_s = 23.8 + 0.1 * (i % 7),
-                  .readings = {made::centroid(660.4 + 1.2 * wave), made::centroid(660.0 - wave, "infrared_centroid"),
+                  .readings = {made::centroid(660.4 + 1.2 * wave), infrared_centroid(940.0 - wave),
                                made::dark_current(fails ? 5.6 : 1.6 + 0.4 * wave)}};
     if (i % 70 == 5) run.readings.clear();
     const std::int64_t minute = 5 * 60 + 10 + i * 3;

@@ -36,6 +36,7 @@ class ShiftTest : public testing::Test {
          .nest = 2,
          .likely_cause = "leaky_detector",
          .likely_cause_words = "a leaky detector",
+         .rework = "RW-05 clean the window",
          .cycle_s = 26.0,
          .readings = {centroid(661.0), dark_current(6.0)}});
     at("2026-12-01T05:20:00Z");
@@ -96,6 +97,7 @@ TEST_F(ShiftTest, ProbesAreCountedByTheirLastVerdict) {
 TEST_F(ShiftTest, RunsOfProductionAreToldApartFromOthers) {
   const ShiftFacts told = early();
   EXPECT_EQ(told.runs, (RunCounts{3, 3, 2}));
+  EXPECT_EQ(told.sent_to_rework, 1);
   ASSERT_EQ(told.other_purposes.size(), 2u);
   EXPECT_EQ(told.other_purposes[0].purpose, "challenge");
   EXPECT_EQ(told.other_purposes[0].runs, (RunCounts{0, 1, 0}));
