@@ -42,7 +42,10 @@ struct Dispatch {
   }
   int operator()(const text::DemoOptions& options) const {
     if (const auto problem = text::impossible(options)) return console.refuse(*problem);
-    return text::demo(options, demo_parts(options), console);
+    const auto pages = page_maker();
+    text::DemoParts parts = demo_parts(options);
+    parts.pages = pages.get();
+    return text::demo(options, parts, console);
   }
   int operator()(const text::LineOptions& options) const {
     const auto hands = bench_hands(options);

@@ -12,6 +12,7 @@
 #include "station/sequence/line_host.h"
 #include "station/text/berth_lines.h"
 #include "station/text/demo_folder.h"
+#include "station/text/demo_pages.h"
 #include "station/text/demo_summary.h"
 #include "station/text/live_block.h"
 
@@ -129,18 +130,13 @@ class Demonstration {
   }
 
   void make_pages() {
-    std::vector<std::int64_t> runs;
-    for (const DemoRun& run : result_.runs) runs.push_back(run.outcome.run);
-    if (parts_.make_labels) {
-      const auto made = parts_.make_labels(result_.folder.ledger(), runs, result_.folder.labels());
-      if (made) result_.labels = *made;
-      if (!made) result_.troubles.push_back(made.error());
-    }
-    if (parts_.write_report) {
-      const auto written = parts_.write_report(result_.folder.ledger(), result_.folder.report());
-      result_.report = written.has_value();
-      if (!written) result_.troubles.push_back(written.error());
-    }
+    if (!parts_.pages) return;
+    const auto made = make_demo_labels(*parts_.pages, result_, options_.build);
+    if (made) result_.labels = *made;
+    if (!made) result_.troubles.push_back(made.error());
+    const auto written = write_demo_report(*parts_.pages, result_.folder);
+    result_.report = written.has_value();
+    if (!written) result_.troubles.push_back(written.error());
   }
 
   /// What only the ledger knows: its seal, and the likely causes of the fails.

@@ -10,6 +10,7 @@
 #include "station/sequence/station_file.h"
 #include "station/text/choices.h"
 #include "station/text/console.h"
+#include "station/text/page_maker.h"
 
 namespace probewright::text {
 
@@ -37,12 +38,7 @@ struct DemoParts {
   /// The device floor of a run that has just ended, in device seconds; nothing where something had to be asked again or
   /// the run did not go through. Empty: nobody measures it.
   std::function<std::optional<double>(const sequence::RunOutcome& outcome)> device_floor_s;
-  /// Makes the labels of these runs into a folder and gives how many; empty: this program draws none.
-  std::function<Result<int>(const std::string& ledger, const std::vector<std::int64_t>& runs,
-                            const std::string& folder)>
-      make_labels;
-  /// Writes the report of everything in the ledger as PDF; empty: this program draws none.
-  std::function<Result<void>(const std::string& ledger, const std::string& file)> write_report;
+  PageMaker* pages = nullptr;  ///< draws labels and report; nullptr: this program was built without pages
 };
 
 /// `demo`: a lot of probes with planted faults on an emulated bench, worked through by an emulated operator, with

@@ -47,14 +47,15 @@ std::vector<char*> pointers(std::vector<std::string>& texts) {
 }
 
 pid_t start(const std::string& program, const Folder& folder, const std::vector<std::string>& arguments,
-            const std::map<std::string, std::string>& more, const std::string& out, const std::string& err) {
+            const std::map<std::string, std::string>& more, const std::string& out, const std::string& err,
+            const std::string& in = "/dev/null") {
   std::vector<std::string> words{program};
   words.insert(words.end(), arguments.begin(), arguments.end());
   std::vector<std::string> environment = environment_of(folder, more);
   posix_spawn_file_actions_t files;
   posix_spawn_file_actions_init(&files);
   constexpr int fresh = O_CREAT | O_TRUNC | O_WRONLY;
-  posix_spawn_file_actions_addopen(&files, STDIN_FILENO, "/dev/null", O_RDONLY, 0);
+  posix_spawn_file_actions_addopen(&files, STDIN_FILENO, in.c_str(), O_RDONLY, 0);
   posix_spawn_file_actions_addopen(&files, STDOUT_FILENO, out.c_str(), fresh, 0600);
   posix_spawn_file_actions_addopen(&files, STDERR_FILENO, err.c_str(), fresh, 0600);
   pid_t process = -1;
@@ -108,10 +109,10 @@ Ran run(const Folder& folder, const std::vector<std::string>& arguments,
 }
 
 Beside::Beside(const Folder& folder, const std::vector<std::string>& arguments, const std::string& name,
-               const std::string& program)
+               const std::string& program, const std::string& input)
     : out_file_(folder.file("." + name + ".out")),
       err_file_(folder.file("." + name + ".err")),
-      process_(start(program, folder, arguments, {}, out_file_, err_file_)) {}
+      process_(start(program, folder, arguments, {}, out_file_, err_file_, input)) {}
 
 Beside::~Beside() { end(); }
 
@@ -133,15 +134,19 @@ bool Beside::says(const std::string& text, double seconds) {
   return false;
 }
 
-int Beside::end() { return end_by(SIGTERM); }
-
-int Beside::end_by(int signal) {
+int Beside::wait() {
   if (process_ <= 0) return status_;
-  kill(process_, signal);
   int waited = 0;
   waitpid(process_, &waited, 0);
   process_ = -1;
   return status_ = status_of(waited);
+}
+
+int Beside::end() { return end_by(SIGTERM); }
+
+int Beside::end_by(int signal) {
+  if (process_ > 0) kill(process_, signal);
+  return wait();
 }
 
 }  // namespace program

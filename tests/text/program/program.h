@@ -36,17 +36,20 @@ Ran run(const Folder& folder, const std::vector<std::string>& arguments,
 /// The program that is tested.
 extern const std::string probewright;
 
-/// A program that goes on beside the test; asked to end (SIGTERM) and waited for when this goes.
+/// A program that goes on beside the test, its standard input read from a file or FIFO; asked to end (SIGTERM) and
+/// waited for when this goes.
 class Beside {
  public:
   Beside(const Folder& folder, const std::vector<std::string>& arguments, const std::string& name,
-         const std::string& program = probewright);
+         const std::string& program = probewright, const std::string& input = "/dev/null");
   ~Beside();
   Beside(const Beside&) = delete;
   /// Waits until its output holds `text`; false when it ended or `seconds` have passed.
   bool says(const std::string& text, double seconds);
   std::string out() const;
   std::string err() const;
+  /// Waits for its own end; its exit status.
+  int wait();
   /// Asks it to end; its exit status.
   int end();
   /// The same by another signal: SIGKILL leaves it no time for anything.
