@@ -10,7 +10,7 @@ The radiation of LEDs and electrical safety are for qualified people to judge, u
 rules in force.
 The limits, models and certificates that come with this program are a demonstration. Every one of them must be
 replaced by your own before a probe is shipped on its verdict.</source>
-        <translation>„Bestanden“ ist ein Nachweis der Fertigung: diese Sonde hat an dieser Station ihr Grenzwertblatt eingehalten. Es zeigt nicht, wie genau Sättigungswerte bei Menschen sind; dazu braucht es kontrollierte Entsättigungsstudien, wie ISO 80601-2-61 sie beschreibt.
+        <translation>„Gut“ ist ein Nachweis der Fertigung: diese Sonde hat an dieser Station ihr Grenzwertblatt eingehalten. Es zeigt nicht, wie genau Sättigungswerte bei Menschen sind; dazu braucht es kontrollierte Entsättigungsstudien, wie ISO 80601-2-61 sie beschreibt.
 Über die Strahlung von LEDs und die elektrische Sicherheit urteilen Fachleute nach den geltenden Normen und örtlichen Regeln.
 Die Grenzwerte, Modelle und Scheine, die mit diesem Programm kommen, sind eine Vorführung. Jeder davon muss durch einen eigenen ersetzt sein, bevor eine Sonde auf sein Urteil hin ausgeliefert wird.</translation>
     </message>
@@ -669,12 +669,12 @@ Die Grenzwerte, Modelle und Scheine, die mit diesem Programm kommen, sind eine V
     <message>
         <source>{serial} has passed already, in run {run}</source>
         <comment>serial_passed</comment>
-        <translation>{serial} hat schon bestanden, in Lauf {run}</translation>
+        <translation>{serial} ist schon gut, nach Lauf {run}</translation>
     </message>
     <message>
         <source>put it on the tray for passed probes</source>
         <comment>serial_passed</comment>
-        <translation>auf das Tablett für bestandene Sonden legen</translation>
+        <translation>auf das Tablett „gut“ legen</translation>
     </message>
     <message>
         <source>{serial} is in test already</source>
@@ -694,7 +694,7 @@ Die Grenzwerte, Modelle und Scheine, die mit diesem Programm kommen, sind eine V
     <message>
         <source>put it on the tray for failed probes</source>
         <comment>serial_tries_used</comment>
-        <translation>auf das Tablett für nicht bestandene Sonden legen</translation>
+        <translation>auf das Tablett „schlecht“ legen</translation>
     </message>
     <message>
         <source>{serial} must rest for another {seconds} s</source>

@@ -9,7 +9,7 @@
     </message>
     <message>
         <source>What a pass says, and what it does not</source>
-        <translation>Was „bestanden“ sagt und was nicht</translation>
+        <translation>Was „gut“ sagt und was nicht</translation>
     </message>
     <message>
         <source>This program</source>
@@ -84,11 +84,11 @@
     </message>
     <message>
         <source>Pass</source>
-        <translation>Bestanden</translation>
+        <translation>Gut</translation>
     </message>
     <message>
         <source>Fail</source>
-        <translation>Nicht bestanden</translation>
+        <translation>Schlecht</translation>
     </message>
     <message>
         <source>Void</source>
@@ -198,7 +198,7 @@
     </message>
     <message>
         <source>The checks of the run in their order, each as wide as its time. Full is done. A struck-out part was left out; a taller one failed.</source>
-        <translation>Die Prüfungen des Laufs der Reihe nach, jede so breit wie ihre Zeit. Gefüllt ist erledigt. Ein durchgestrichener Teil wurde ausgelassen; ein höherer ist nicht bestanden.</translation>
+        <translation>Die Prüfungen des Laufs der Reihe nach, jede so breit wie ihre Zeit. Gefüllt ist erledigt. Ein durchgestrichener Teil wurde ausgelassen; ein höherer ist schlecht.</translation>
     </message>
     <message>
         <source>Rails</source>
@@ -230,7 +230,7 @@
     </message>
     <message>
         <source>What to do with the probe; after a fail which check failed, by how much, and the likely cause.</source>
-        <translation>Was mit der Sonde zu tun ist; ist sie nicht bestanden, welche Prüfung, um wie viel, und die wahrscheinliche Ursache.</translation>
+        <translation>Was mit der Sonde zu tun ist; ist sie schlecht, welche Prüfung, um wie viel, und die wahrscheinliche Ursache.</translation>
     </message>
     <message>
         <source>Keys</source>
@@ -298,7 +298,7 @@
     </message>
     <message>
         <source>The run could not be completed or trusted. The probe has neither passed nor failed.</source>
-        <translation>Der Lauf ging nicht zu Ende oder ist nicht verlässlich. Die Sonde ist weder bestanden noch nicht bestanden.</translation>
+        <translation>Der Lauf ging nicht zu Ende oder ist nicht verlässlich. Die Sonde ist weder gut noch schlecht.</translation>
     </message>
     <message>
         <source>A run stops</source>
@@ -306,7 +306,7 @@
     </message>
     <message>
         <source>Opening the lid or taking the probe out stops the run. After a reading outside its limits, that is a fail.</source>
-        <translation>Den Deckel öffnen oder die Sonde herausnehmen bricht den Lauf ab. Nach einem Messwert außerhalb seiner Grenzen heißt das „nicht bestanden“.</translation>
+        <translation>Den Deckel öffnen oder die Sonde herausnehmen bricht den Lauf ab. Nach einem Messwert außerhalb seiner Grenzen heißt das „schlecht“.</translation>
     </message>
     <message>
         <source>Power cut</source>
@@ -314,14 +314,14 @@
     </message>
     <message>
         <source>At the next start the window tells which probe was in which nest. A run that was cut short is never a pass.</source>
-        <translation>Beim nächsten Start sagt das Fenster, welche Sonde in welchem Nest war. Ein abgebrochener Lauf ist nie bestanden.</translation>
+        <translation>Beim nächsten Start sagt das Fenster, welche Sonde in welchem Nest war. Ein abgebrochener Lauf ist nie gut.</translation>
     </message>
 </context>
 <context>
     <name>LateNotice</name>
     <message>
         <source>A reading already lay outside its limits, so the run was closed as a fail. Take the probe out and put it on the tray for failed probes.</source>
-        <translation>Ein Messwert lag schon außerhalb seiner Grenzen, darum wurde der Lauf als nicht bestanden geschlossen. Die Sonde herausnehmen und auf das Tablett für nicht bestandene Sonden legen.</translation>
+        <translation>Ein Messwert lag schon außerhalb seiner Grenzen, darum wurde der Lauf als schlecht geschlossen. Die Sonde herausnehmen und auf das Tablett „schlecht“ legen.</translation>
     </message>
     <message>
         <source>The run was closed as void: nothing was decided. Take the probe out; scan it again to test it.</source>
@@ -478,11 +478,11 @@
     </message>
     <message>
         <source>take the probe out and put it on the tray for failed probes</source>
-        <translation>die Sonde herausnehmen und auf das Tablett für nicht bestandene legen</translation>
+        <translation>die Sonde herausnehmen und auf das Tablett „schlecht“ legen</translation>
     </message>
     <message>
         <source>put it on the tray for failed probes</source>
-        <translation>auf das Tablett für nicht bestandene legen</translation>
+        <translation>auf das Tablett „schlecht“ legen</translation>
     </message>
     <message>
         <source>take the probe out; nothing was decided about it</source>
@@ -523,6 +523,10 @@
     <message>
         <source>testing {serial}</source>
         <translation>{serial} wird geprüft</translation>
+    </message>
+    <message>
+        <source>no answer in time</source>
+        <translation>keine Antwort in der Zeit</translation>
     </message>
     <message>
         <source>nest {nest} is stopped</source>
@@ -815,6 +819,10 @@ Tempo %1</translation>
         <translation>Schein %1, an %2</translation>
     </message>
     <message>
+        <source>1 nest is complete.</source>
+        <translation>1 Nest ist vollständig.</translation>
+    </message>
+    <message>
         <source>%1 nests are complete.</source>
         <translation>%1 Nester sind vollständig.</translation>
     </message>
@@ -842,7 +850,7 @@ Tempo %1</translation>
     </message>
     <message>
         <source>passed first time</source>
-        <translation>sofort bestanden</translation>
+        <translation>sofort gut</translation>
     </message>
     <message>
         <source>%1 % of %2</source>
@@ -850,7 +858,7 @@ Tempo %1</translation>
     </message>
     <message>
         <source>failed</source>
-        <translation>nicht bestanden</translation>
+        <translation>schlecht</translation>
     </message>
     <message>
         <source>void</source>

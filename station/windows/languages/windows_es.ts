@@ -525,6 +525,10 @@
         <translation>probando {serial}</translation>
     </message>
     <message>
+        <source>no answer in time</source>
+        <translation>sin respuesta a tiempo</translation>
+    </message>
+    <message>
         <source>nest {nest} is stopped</source>
         <translation>el nido {nest} está detenido</translation>
     </message>
@@ -813,6 +817,10 @@ a velocidad %1</translation>
     <message>
         <source>certificate %1, at %2</source>
         <translation>certificado %1, en %2</translation>
+    </message>
+    <message>
+        <source>1 nest is complete.</source>
+        <translation>1 nido está completo.</translation>
     </message>
     <message>
         <source>%1 nests are complete.</source>

@@ -115,8 +115,8 @@ void Berth::draw_head(QPainter& painter) {
   const Text text = verdict ? plan_.headline_text : Text::headline;
   QFont font = look_.type().font(text);
   if (quiet) font.setBold(false);
-  QRectF row = plan_.headline;
-  write_line(painter, row, content_.headline, font, colours.of(content_.tone));
+  font = fitting(font, content_.headline, plan_.headline.width());
+  write_line(painter, plan_.headline, content_.headline, font, colours.of(content_.tone));
   if (content_.time_left >= 0.0) {
     const double thick = look_.type().length(3);
     const double top = plan_.short_title ? plan_.head.top() + 2 : plan_.head.bottom() - thick - 1;
@@ -150,8 +150,9 @@ void Berth::draw_words(QPainter& painter) {
   const Text strong = wide ? Text::body : Text::strong;
   left.setTop(left.top() + write(painter, left, {content_.to_do, type.font(strong), fit(strong)}, look_.colours().ink));
   const Written why{content_.why, type.font(Text::body), fit(Text::body)};
-  // Half a reason helps nobody: where there is little room, it is told whole or not at all.
-  if (!wide || lines_of(why, left.width()) <= why.most_lines) write(painter, left, why, look_.colours().quiet);
+  // Half a reason helps nobody but after a fail: where there is little room, it is told whole or not at all.
+  if (content_.tone == Tone::fail || lines_of(why, left.width()) <= why.most_lines)
+    write(painter, left, why, look_.colours().quiet);
 }
 
 }  // namespace probewright::windows

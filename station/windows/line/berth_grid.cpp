@@ -52,7 +52,7 @@ void BerthGrid::show_view() {
 void BerthGrid::lay_out() {
   if (berths_.empty()) return;
   const QSizeF room = viewport()->size();
-  const double gap = look_.type().length(berths_.size() > 8 ? 8 : 12);
+  const double gap = look_.type().length(berths_.size() > 8 ? 6 : 12);
   const QSizeF least = least_berth(look_.type());
   const int most = std::max(1, static_cast<int>((room.width() + gap) / (least.width() + gap)));
   const int count = static_cast<int>(berths_.size());

@@ -10,7 +10,7 @@ using Form = BerthPlan::Form;
 
 // Lengths in lines of body text, so that everything grows with the text.
 constexpr double middle_height = 12.5, tall_height = 20.5, tall_width = 13.0;
-constexpr double wide_height = 3.7, wide_width = 10.5;
+constexpr double wide_height = 3.55, wide_width = 10.5;
 
 /// Cuts a strip off the top of what is left.
 QRectF cut(QRectF& left, double height) {
@@ -44,9 +44,12 @@ void plan_stacked(BerthPlan& plan, QSizeF size, const TypeScale& type) {
   cut(left, pad * 0.8);
   plan.bar = cut(left, line * 0.55);
   cut(left, line * 0.45);
-  const double word_lines = plan.form == Form::tall ? (size.width() > 24 * line ? 3.6 : 5.2) : 4.4;
-  const double plots = plan.form == Form::tall ? line * 4.6 : 0.0;
-  const double rails = std::clamp(left.height() - word_lines * line - plots - line, line * 3.0, line * 14.0);
+  const double plots = plan.form == Form::tall ? line * 4.6 : 0.0, spaces = line * 0.5;
+  const double room = left.height() - plots - spaces;
+  // Rails keep their height whatever the words are, so that nothing jumps and neighbours can be compared.
+  const double wanted = size.width() > 24 * line ? 3.6 : 6.2;
+  const double words = std::clamp(room - 4.8 * line, 2.4 * line, wanted * line);
+  const double rails = std::clamp(room - words, line * 3.0, line * 14.0);
   plan.rails = cut(left, rails);
   if (plots > 0) {
     cut(left, line * 0.4);

@@ -161,6 +161,17 @@ std::vector<std::optional<QRectF>> label_rects(const RailScale& scale, const std
   return places;
 }
 
+/// A thin line to a name that could not stand beside its mark.
+void draw_leader(QPainter& painter, QPointF mark, const QRectF& label, double r) {
+  const QPointF near{std::clamp(mark.x(), label.left() + 3, label.right() - 3),
+                     mark.y() < label.top() ? label.top() + 2 : label.bottom() - 2};
+  if (mark.y() > label.top() - r && mark.y() < label.bottom() + r) return;
+  const QPen words = painter.pen();
+  painter.setPen(QPen{words.color(), 1.0, Qt::DotLine});
+  painter.drawLine(mark, near);
+  painter.setPen(words);
+}
+
 void draw_labels(QPainter& painter, const RailScale& scale, const std::vector<RailPoint>& points, const Look& look) {
   const QFont font = look.type().font(Text::small);
   const QFontMetricsF metrics{font};
@@ -179,6 +190,7 @@ void draw_labels(QPainter& painter, const RailScale& scale, const std::vector<Ra
   for (std::size_t i = 0; i < places.size(); ++i) {
     if (!places[i]) continue;
     painter.setPen(named[i]->kind == Kind::inside ? look.colours().ink : look.colours().fail);
+    draw_leader(painter, wishes[i].at, *places[i], r);
     painter.drawText(*places[i], Qt::AlignCenter | Qt::TextSingleLine, words[static_cast<qsizetype>(i)]);
   }
 }

@@ -5,6 +5,7 @@
 #include <QPainter>
 #include <QTextLayout>
 #include <QTextOption>
+#include <algorithm>
 #include <vector>
 
 namespace probewright::windows {
@@ -49,6 +50,14 @@ double write(QPainter& painter, const QRectF& place, const Written& written, con
     painter.drawText(QPointF{place.left(), place.top() + i * metrics.height() + metrics.ascent()}, line);
   }
   return count * metrics.height();
+}
+
+QFont fitting(const QFont& font, const QString& words, double width) {
+  const double wanted = QFontMetricsF{font}.horizontalAdvance(words);
+  if (wanted <= width) return font;
+  QFont smaller = font;
+  smaller.setPixelSize(std::max(static_cast<int>(font.pixelSize() * width / wanted), font.pixelSize() * 7 / 10));
+  return smaller;
 }
 
 void write_line(QPainter& painter, const QRectF& place, const QString& words, const QFont& font, const QColor& colour,

@@ -23,4 +23,7 @@ double write(QPainter& painter, const QRectF& place, const Written& written, con
 void write_line(QPainter& painter, const QRectF& place, const QString& words, const QFont& font, const QColor& colour,
                 Qt::Alignment alignment = Qt::AlignLeft);
 
+/// The font, or where the words are too long for `width` the same one smaller, down to seven tenths.
+QFont fitting(const QFont& font, const QString& words, double width);
+
 }  // namespace probewright::windows

@@ -129,7 +129,7 @@ void SetupPage::show_state() {
   const auto nests = nests_of(placed_);
   keep_->setEnabled(nests.has_value());
   if (nests)
-    state_->say(tr("%1 nests are complete.").arg(nests->size()));
+    state_->say(nests->size() == 1 ? tr("1 nest is complete.") : tr("%1 nests are complete.").arg(nests->size()));
   else if (search_.waiting() > 0)
     state_->say(tr("Looking at %1 ports ...").arg(search_.waiting()));
   else

@@ -39,6 +39,7 @@ constexpr std::array patterns = {
     QT_TRANSLATE_NOOP("Said", "scan a probe"),
     QT_TRANSLATE_NOOP("Said", "testing {serial}"),
     // answers
+    QT_TRANSLATE_NOOP("Said", "no answer in time"),
     QT_TRANSLATE_NOOP("Said", "nest {nest} is stopped"),
     QT_TRANSLATE_NOOP("Said", "{name}, {role}, is signed in"),
     QT_TRANSLATE_NOOP("Said", "{name} is signed out"),
