@@ -13,6 +13,12 @@ namespace {
 /// Causes with less of a share are not worth naming; a station's cause must explain at least this part of what the
 /// probe's best does.
 constexpr double least_share = 0.02, least_part = 0.05;
+/// Causes with this part of the first one's share are told in its sentence.
+constexpr double worth_mention = 0.2;
+
+bool contains(const std::vector<std::string>& all, const std::string& one) {
+  return std::find(all.begin(), all.end(), one) != all.end();
+}
 
 /// What was compared, up to the stage at which it was decided.
 struct Decided {
@@ -117,6 +123,9 @@ std::string Telling::cause_words(const Diagnosis& out) const {
   const LikelyCause& first = out.causes.front();
   std::string text = first.words;
   for (const std::string& other : first.looks_like) text += " (or " + other + ", which looks the same)";
+  for (const LikelyCause& other : out.causes)
+    if (&other != &first && other.share >= worth_mention * first.share && !contains(first.looks_like, other.words))
+      text += " (perhaps " + other.words + ")";
   for (const LikelyCause& more : out.besides) text += " and " + more.words;
   std::vector<Evidence> evidence = first.evidence;
   for (const LikelyCause& more : out.besides)

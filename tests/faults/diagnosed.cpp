@@ -21,8 +21,9 @@ const limits::diagnosis::Rules& probe_rules() {
 
 Diagnosed DiagnosingStation::test(const std::vector<emulated::PlantedFault>& faults) {
   const std::string number = std::to_string(++made_);
-  const std::string serial = "AQ20-048-" + std::string(5 - number.size(), '0') + number;
-  emulated::Probe probe = emulated::draw_probe(seed_, serial, "AQ-20");
+  const std::string serial =
+      model_.substr(0, 2) + model_.substr(3) + "-048-" + std::string(5 - number.size(), '0') + number;
+  emulated::Probe probe = emulated::draw_probe(seed_, serial, model_);
   for (const emulated::PlantedFault& fault : faults) probe = with_fault(std::move(probe), fault, seed_);
   station_.bench().seat(1, std::move(probe)).value();  // from now on the serial is this probe
   station_.bench().remove(1).value();
@@ -31,7 +32,7 @@ Diagnosed DiagnosingStation::test(const std::vector<emulated::PlantedFault>& fau
   std::vector<limits::diagnosis::JudgedValue> readings;
   for (const sequence::JudgedReading& one : told.outcome->readings)
     readings.push_back({one.judgement, one.reading.value, one.reading.expanded_uncertainty.value_or(0.0)});
-  const limits::Sheet& sheet = trial::demonstration().sheets.at("AQ-20").value;
+  const limits::Sheet& sheet = trial::demonstration().sheets.find(model_)->second.value;
   return {pattern_of(probe_rules(), sheet, readings), likely_causes(probe_rules(), sheet, readings),
           told.outcome->verdict};
 }

@@ -22,7 +22,8 @@ struct Diagnosed {
 /// One station with errors of its own, and a ledger in memory.
 class DiagnosingStation {
  public:
-  explicit DiagnosingStation(std::uint64_t seed) : station_(ledger_.options(seed)), seed_(seed) {}
+  explicit DiagnosingStation(std::uint64_t seed, std::string model = "AQ-20")
+      : station_(ledger_.options(seed)), seed_(seed), model_(std::move(model)) {}
 
   /// Makes the next probe with these faults, tests it and diagnoses it. Throws when no run came about.
   Diagnosed test(const std::vector<emulated::PlantedFault>& faults);
@@ -31,6 +32,7 @@ class DiagnosingStation {
   trial::MemoryLedger ledger_;
   trial::Trial station_;
   std::uint64_t seed_;
+  std::string model_;
   int made_ = 0;
 };
 
