@@ -29,9 +29,10 @@ using Request =
     std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions, text::TestOptions,
                  text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions, text::LedgerSealOptions,
                  text::LedgerBackupOptions, text::LedgerRestoreOptions, text::LedgerCloseVolumeOptions,
-                 text::LedgerPruneOptions, text::RederiveOptions, text::ImpactOptions, text::LimitsCheckOptions,
-                 text::LimitsDiffOptions, text::MeasureSpectrumOptions, text::MeasurePulsesOptions,
-                 text::ReportRunOptions, text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
+                 text::LedgerPruneOptions, text::LedgerExportOptions, text::RederiveOptions, text::ImpactOptions,
+                 text::LimitsCheckOptions, text::LimitsDiffOptions, text::MeasureSpectrumOptions,
+                 text::MeasurePulsesOptions, text::ReportRunOptions, text::ReportSerialOptions,
+                 text::ReportShiftOptions, text::LabelOptions>;
 
 struct CommandLine {
   bool json = false;
