@@ -429,6 +429,8 @@ constexpr std::array rows = std::to_array<ProblemRow>({
     {"bundle_name", our_bug, "a file of a bundle cannot have this name", "report this as a mistake in the program"},
     {"bundle_too_large", refused_input, "a file of more than 8 GiB does not fit into a tar file",
      "make a folder instead: give a name that does not end with .tar"},
+    {"volume_link_broken", ledger_trouble, "the volume {what}",
+     "put the volume that belongs here back from a backup; verify each of them"},
     {"volume_runs_open", not_ready, "{count} runs are still open", "end them, or start the line once: it closes them"},
     {"ledger_other_station", not_ready, "the ledger belongs to station {found}, not to {wanted}",
      "check the ledger's path in the station file"},
