@@ -76,6 +76,7 @@ struct Dispatch {
     return text::ledger_close_volume(options, console);
   }
   int operator()(const text::LedgerPruneOptions& options) const { return text::ledger_prune(options, console); }
+  int operator()(const text::LedgerExportOptions& options) const { return text::ledger_export(options, console); }
   int operator()(const text::RederiveOptions& options) const { return text::rederive(options, console); }
   int operator()(const text::ImpactOptions& options) const { return text::impact(options, console); }
   int operator()(const text::LimitsCheckOptions& options) const { return text::limits_check(options, console); }

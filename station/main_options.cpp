@@ -111,6 +111,7 @@ class Reader {
   void add_ledger();
   void add_ledger_copies(CLI::App& ledger);
   void add_ledger_years(CLI::App& ledger);
+  void add_ledger_export(CLI::App& ledger);
   void add_limits();
   void add_measure();
   void add_recording();
@@ -143,6 +144,7 @@ class Reader {
   text::LedgerRestoreOptions restore_;
   text::LedgerCloseVolumeOptions close_volume_;
   text::LedgerPruneOptions prune_;
+  text::LedgerExportOptions export_;
   text::RederiveOptions rederive_;
   text::ImpactOptions impact_;
   text::LimitsCheckOptions check_;
@@ -464,6 +466,7 @@ void Reader::add_ledger() {
   answers(newest, seal_);
   add_ledger_copies(ledger);
   add_ledger_years(ledger);
+  add_ledger_export(ledger);
 }
 
 void Reader::add_ledger_copies(CLI::App& ledger) {
@@ -514,6 +517,26 @@ void Reader::add_ledger_years(CLI::App& ledger) {
   away->needs(reason);
   add_json(prune);
   answers(prune, prune_);
+}
+
+void Reader::add_ledger_export(CLI::App& ledger) {
+  CLI::App& app =
+      command(ledger, "export", "write runs and readings for use elsewhere, as tables or as a signed bundle",
+              "probewright ledger export lot-07.tar --lot AQ20-W48-07 --key station.pem");
+  app.add_option("TO", export_.to, "file or folder to make; a bundle named .tar is one file")
+      ->required()
+      ->type_name("");
+  add_word(
+      app, "--as", {"runs", "readings", "json", "bundle"}, [this](const std::string& word) { export_.as = word; },
+      "runs or readings as CSV, both as JSON, or all of it as a bundle; a bundle unless told");
+  CLI::Option* serial = app.add_option("--serial", export_.serial, "runs of this serial")->type_name("SERIAL");
+  app.add_option("--lot", export_.lot, "runs of this lot")->type_name("LOT")->excludes(serial);
+  app.add_option("--key", export_.key, "private Ed25519 key (PEM) that signs the bundle")->type_name("FILE");
+  app.add_flag("--with-captures", export_.with_captures, "put the raw data into the bundle too");
+  app.add_option("--ledger", export_.ledger, "ledger instead of the station's")->type_name("FILE");
+  app.add_option("--who", export_.who, "who exports; station unless told")->type_name("NAME");
+  add_json(app);
+  answers(app, export_);
 }
 
 void Reader::add_limits() {

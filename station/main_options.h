@@ -31,10 +31,11 @@ using Request =
     std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions, text::TestOptions,
                  text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions, text::LedgerSealOptions,
                  text::LedgerBackupOptions, text::LedgerRestoreOptions, text::LedgerCloseVolumeOptions,
-                 text::LedgerPruneOptions, text::RederiveOptions, text::ImpactOptions, text::LimitsCheckOptions,
-                 text::LimitsDiffOptions, text::MeasureSpectrumOptions, text::MeasurePulsesOptions,
-                 text::ReportRunOptions, text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions,
-                 text::ReplayOptions, text::RecordingShowOptions, text::RecordingCutOptions>;
+                 text::LedgerPruneOptions, text::LedgerExportOptions, text::RederiveOptions, text::ImpactOptions,
+                 text::LimitsCheckOptions, text::LimitsDiffOptions, text::MeasureSpectrumOptions,
+                 text::MeasurePulsesOptions, text::ReportRunOptions, text::ReportSerialOptions,
+                 text::ReportShiftOptions, text::LabelOptions, text::ReplayOptions, text::RecordingShowOptions,
+                 text::RecordingCutOptions>;
 
 struct CommandLine {
   bool json = false;

@@ -6,19 +6,21 @@ _probewright() {
   COMPREPLY=()
   for ((i = 1; i < COMP_CWORD; i++)); do
     case ${COMP_WORDS[i]} in
-      demo | line | bench | test | replay | recording | checkup | trace | report | label | ledger | limits | measure) command=${COMP_WORDS[i]} second=${COMP_WORDS[i+1]} && break ;;
+      demo | line | bench | test | replay | recording | checkup | trace | rederive | impact | report | label | ledger | limits | simulate | measure) command=${COMP_WORDS[i]} second=${COMP_WORDS[i+1]} && break ;;
     esac
   done
   case $before in
-    --config | --ports | --attach | --control | --truth | --scenario | --record | --ledger | --model | --out) mapfile -t COMPREPLY < <(compgen -f -- "$word"); return ;;
+    --config | --ports | --attach | --control | --truth | --scenario | --record | --ledger | --model | --out | --key | --certificate | --sheet) mapfile -t COMPREPLY < <(compgen -f -- "$word"); return ;;
     --purpose) mapfile -t COMPREPLY < <(compgen -W "production engineering reference challenge gauge echo training return" -- "$word"); return ;;
     --band) mapfile -t COMPREPLY < <(compgen -W "red infrared" -- "$word"); return ;;
+    --as) mapfile -t COMPREPLY < <(compgen -W "runs readings json bundle" -- "$word"); return ;;
+    --off) mapfile -t COMPREPLY < <(compgen -W "wavelength temperature slit ratio modulation drive photocurrent voltage resistance" -- "$word"); return ;;
     --kind) mapfile -t COMPREPLY < <(compgen -W "pass fail" -- "$word"); return ;;
     --frequency) mapfile -t COMPREPLY < <(compgen -W "known free" -- "$word"); return ;;
   esac
   local words=
   case $command in
-    "") words="demo line bench test replay recording checkup trace report label ledger limits measure --version $common" ;;
+    "") words="demo line bench test replay recording checkup trace rederive impact report label ledger limits simulate measure --version $common" ;;
     demo) words="--headless --probes --nests --speed --seed --mistakes --out --json $common" ;;
     line) words="--text --ledger --ports --speed --hands --control $common" ;;
     bench) words="--nests --speed --seed --perfect --ambient-C --mains-Hz --ports --attach --control --scenario --truth --seat $common" ;;
@@ -38,11 +40,19 @@ _probewright() {
       [ "$second" = serial ] && words="--out --ledger --json $common"
       [ "$second" = shift ] && words="--from --to --day --lot --out --ledger --json $common"
       ;;
+    rederive) words="--lot --run --all --ledger --threads --json $common" ;;
+    impact) words="--since --until --off --by --both-ways --certificate --ledger --threads --hold --who --reason --json $common" ;;
     ledger)
-      words="verify seal $common"
-      [ "$second" = verify ] && words="--seal --entry --json $common"
+      words="verify seal backup restore close-volume prune export $common"
+      [ "$second" = backup ] && words="--ledger --who --json $common"
+      [ "$second" = restore ] && words="--drill --ledger --seal --entry --who --reason --json $common"
+      [ "$second" = close-volume ] && words="--ledger --who --reason --json $common"
+      [ "$second" = prune ] && words="--ledger --record-days --keep-one-in --take-away --who --reason --json $common"
+      [ "$second" = export ] && words="--as --serial --lot --key --with-captures --ledger --who --json $common"
+      [ "$second" = verify ] && words="--seal --entry --from --json $common"
       [ "$second" = seal ] && words="--json $common"
       ;;
+    simulate) words="--probes --stations --seed --sheet --model --retest --faults --threads --json $common" ;;
     limits)
       words="check diff $common"
       [ "$second" = check ] && words="--model --json $common"

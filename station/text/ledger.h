@@ -72,6 +72,21 @@ struct LedgerPruneOptions {
 /// `ledger prune`: tells which captured bytes the rules let go, and with `take_away` takes them away.
 int ledger_prune(const LedgerPruneOptions& options, Console& console);
 
+struct LedgerExportOptions {
+  StationChoice choice;
+  Build build;
+  std::string ledger;         ///< empty: the station's
+  std::string to;             ///< file or folder to make; a bundle whose name ends with .tar is one file
+  std::string as = "bundle";  ///< runs, readings (CSV), json, bundle
+  std::string serial, lot;    ///< at most one; neither: all closed runs
+  std::string key;            ///< private key that signs a bundle; empty: not signed
+  bool with_captures = false;
+  std::string who = "station";
+};
+/// `ledger export`: runs and readings for use elsewhere. Exit status: 0, 1 there are no such runs, 2 refused, 3 it
+/// could not be made.
+int ledger_export(const LedgerExportOptions& options, Console& console);
+
 /// A checked copy for people and as JSON.
 void print_copy(const db::CheckedCopy& copy, Console& console);
 Json json_of(const db::CheckedCopy& copy);
