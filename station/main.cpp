@@ -61,6 +61,7 @@ struct Dispatch {
   int operator()(const text::LedgerSealOptions& options) const { return text::ledger_seal(options, console); }
   int operator()(const text::LimitsCheckOptions& options) const { return text::limits_check(options, console); }
   int operator()(const text::LimitsDiffOptions& options) const { return text::limits_diff(options, console); }
+  int operator()(const text::SimulateOptions& options) const { return text::simulate(options, console); }
   int operator()(const text::MeasureSpectrumOptions& options) const { return text::measure_spectrum(options, console); }
   int operator()(const text::MeasurePulsesOptions& options) const { return text::measure_pulses(options, console); }
 };

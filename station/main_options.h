@@ -13,6 +13,7 @@
 #include "station/text/line.h"
 #include "station/text/measure.h"
 #include "station/text/report.h"
+#include "station/text/simulate.h"
 #include "station/text/test.h"
 #include "station/text/trace.h"
 
@@ -24,11 +25,12 @@ struct ShowText {
 };
 
 /// What was asked for: one type for each command.
-using Request = std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions,
-                             text::TestOptions, text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions,
-                             text::LedgerSealOptions, text::LimitsCheckOptions, text::LimitsDiffOptions,
-                             text::MeasureSpectrumOptions, text::MeasurePulsesOptions, text::ReportRunOptions,
-                             text::ReportSerialOptions, text::ReportShiftOptions, text::LabelOptions>;
+using Request =
+    std::variant<ShowText, emulated::RunBenchOptions, text::DemoOptions, text::LineOptions, text::TestOptions,
+                 text::CheckupOptions, text::TraceOptions, text::LedgerVerifyOptions, text::LedgerSealOptions,
+                 text::LimitsCheckOptions, text::LimitsDiffOptions, text::MeasureSpectrumOptions,
+                 text::MeasurePulsesOptions, text::ReportRunOptions, text::ReportSerialOptions,
+                 text::ReportShiftOptions, text::LabelOptions, text::SimulateOptions>;
 
 struct CommandLine {
   bool json = false;
