@@ -81,6 +81,7 @@ struct Dispatch {
   int operator()(const text::ImpactOptions& options) const { return text::impact(options, console); }
   int operator()(const text::LimitsCheckOptions& options) const { return text::limits_check(options, console); }
   int operator()(const text::LimitsDiffOptions& options) const { return text::limits_diff(options, console); }
+  int operator()(const text::SimulateOptions& options) const { return text::simulate(options, console); }
   int operator()(const text::MeasureSpectrumOptions& options) const { return text::measure_spectrum(options, console); }
   int operator()(const text::ReplayOptions& options) const { return text::replay(options, console); }
   int operator()(const text::RecordingShowOptions& options) const { return text::recording_show(options, console); }

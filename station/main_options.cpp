@@ -105,6 +105,7 @@ class Reader {
   void add_trace();
   void add_report();
   void add_label();
+  void add_simulate();
   void add_page(CLI::App& app, text::ReportOptions& options);
   void add_rederive();
   void add_impact();
@@ -149,6 +150,7 @@ class Reader {
   text::ImpactOptions impact_;
   text::LimitsCheckOptions check_;
   text::LimitsDiffOptions diff_;
+  text::SimulateOptions simulate_;
   text::MeasureSpectrumOptions spectrum_;
   text::MeasurePulsesOptions pulses_;
   text::ReplayOptions replay_;
@@ -181,6 +183,7 @@ Reader::Reader(const text::Build& build, const std::filesystem::path& installed)
   add_label();
   add_rederive();
   add_impact();
+  add_simulate();
   add_ledger();
   add_limits();
   add_measure();
@@ -553,6 +556,24 @@ void Reader::add_limits() {
   diff.add_option("AFTER", diff_.after, "the later sheet")->required()->type_name("");
   add_json(diff);
   answers(diff, diff_);
+}
+
+void Reader::add_simulate() {
+  CLI::App& app = command(app_, "simulate", "estimate yield, false accepts and false rejects of a sheet by simulation",
+                          "probewright simulate --sheet configs/sheets/aq-20.yaml --probes 10000 --retest");
+  auto& simulation = simulate_.simulation;
+  add_whole(app, "--probes", simulation.probes, "how many probes, 2000 unless told");
+  add_whole(app, "--stations", simulation.stations, "how many stations they are spread over, up to 40 unless told");
+  add_whole(app, "--seed", simulation.seed, "what probes, stations and noise are drawn from, 1 unless told");
+  app.add_option("--sheet", simulate_.sheet, "limit sheet instead of the configuration's")->type_name("FILE");
+  app.add_option("--model", simulate_.model, "model; the sheet's unless told")->type_name("NAME");
+  app.add_flag("--retest", simulation.retest, "test probes that failed again, as the sheet allows");
+  app.add_option("--faults", simulate_.faults,
+                 "which probes have a fault: none (unless told), lot (as the demonstration's), or a share such as 0.02")
+      ->type_name("MIX");
+  add_whole(app, "--threads", simulation.threads, "threads, as many as cores unless told; the answer is the same");
+  add_json(app);
+  answers(app, simulate_);
 }
 
 void Reader::add_measure() {

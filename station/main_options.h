@@ -16,6 +16,7 @@
 #include "station/text/rederive.h"
 #include "station/text/replay.h"
 #include "station/text/report.h"
+#include "station/text/simulate.h"
 #include "station/text/test.h"
 #include "station/text/trace.h"
 
@@ -35,7 +36,7 @@ using Request =
                  text::LimitsCheckOptions, text::LimitsDiffOptions, text::MeasureSpectrumOptions,
                  text::MeasurePulsesOptions, text::ReportRunOptions, text::ReportSerialOptions,
                  text::ReportShiftOptions, text::LabelOptions, text::ReplayOptions, text::RecordingShowOptions,
-                 text::RecordingCutOptions>;
+                 text::RecordingCutOptions, text::SimulateOptions>;
 
 struct CommandLine {
   bool json = false;

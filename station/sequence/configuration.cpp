@@ -208,15 +208,7 @@ class Reading {
       faults_.push_back({"model_without_sheet", model.document.file, {{"model", model.value.name}}});
       return;
     }
-    add(limits::faults_against_routine(sheet->second.value, model.value.routine));
-    std::vector<limits::ModelBin> bins;
-    for (const auto& bin : model.value.bins) bins.push_back({bin.name, bin.nominal_nm.red, bin.coded_ohm});
-    add(limits::faults_against_bins(sheet->second.value, bins));
-    const auto& written_for = sheet->second.value.for_model;
-    if (written_for && *written_for != model.document.digest)
-      faults_.push_back({"sheet_for_other_model",
-                         sheet->second.document.file,
-                         {{"model", model.document.file}, {"digest", to_hex(model.document.digest)}}});
+    add(faults_against_model(sheet->second, model));
   }
 
   template <class Map>
@@ -276,6 +268,19 @@ ResultOrFaults<Configuration> read_configuration(const fs::path& folder, std::st
 
 ResultOrFaults<Documented<StationFile>> read_station(const fs::path& folder, std::string_view station) {
   return Reading{folder}.read_station_alone(station);
+}
+
+Problems faults_against_model(const Documented<limits::Sheet>& sheet, const Documented<measure::Model>& model) {
+  Problems faults = limits::faults_against_routine(sheet.value, model.value.routine);
+  std::vector<limits::ModelBin> bins;
+  for (const auto& bin : model.value.bins) bins.push_back({bin.name, bin.nominal_nm.red, bin.coded_ohm});
+  const Problems of_bins = limits::faults_against_bins(sheet.value, bins);
+  faults.insert(faults.end(), of_bins.begin(), of_bins.end());
+  if (sheet.value.for_model && *sheet.value.for_model != model.document.digest)
+    faults.push_back({"sheet_for_other_model",
+                      sheet.document.file,
+                      {{"model", model.document.file}, {"digest", to_hex(model.document.digest)}}});
+  return faults;
 }
 
 }  // namespace probewright::sequence

@@ -60,6 +60,10 @@ Result<std::filesystem::path> find_configuration(std::string_view chosen, const 
 /// is not there.
 ResultOrFaults<Configuration> read_configuration(const std::filesystem::path& folder, std::string_view station);
 
+/// What a sheet and the model that it is used for tell differently: checks of the routine that the sheet does not name,
+/// bins, the digest of another model file.
+Problems faults_against_model(const Documented<limits::Sheet>& sheet, const Documented<measure::Model>& model);
+
 /// The station file alone, chosen in the same way, for questions that need no model: a fault in a sheet does not keep
 /// an auditor from the ledger.
 ResultOrFaults<Documented<StationFile>> read_station(const std::filesystem::path& folder, std::string_view station);

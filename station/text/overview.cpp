@@ -20,6 +20,7 @@ std::string overview() {
              "  label      the label of a serial's last production run, kept in the ledger\n"
              "  ledger     verify, seal: check a ledger, print its newest hash\n"
              "  limits     check, diff: faults of a limit sheet, what changed between two\n"
+             "  simulate   yield, false accepts and false rejects of a sheet, estimated by simulation\n"
              "  measure    spectrum, pulses: readings from a lab's own files\n"
              "\n"
              "Each command answers --help with an example. To begin without hardware:\n"

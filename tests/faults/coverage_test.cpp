@@ -9,6 +9,7 @@
 #include "station/base/catalogue.h"
 #include "station/base/numbers.h"
 #include "station/sequence/production/simulated_nest.h"
+#include "station/sequence/production/simulation.h"
 #include "station/sequence/production/true_values.h"
 #include "tests/trial/trial.h"
 
@@ -86,8 +87,7 @@ TEST(Coverage, UncertaintiesHoldOnFreshlyDrawnStations) {
   const sequence::Configuration& demo = trial::demonstration();
   const measure::Model& model = demo.models.at("AQ-20").value;
   const limits::Sheet& sheet = demo.sheets.at("AQ-20").value;
-  const measure::Certificates certificates{demo.phantom_certificates.at("PHC-2026-0101").value,
-                                           demo.adapter_certificates.at("ADC-2026-0101").value};
+  const measure::Certificates certificates = simulated_certificates(demo).value();
   const TrueValues values{model};
   std::map<std::string, Errors> errors;
   for (int i = 0; i < probes(); ++i) {

@@ -116,6 +116,18 @@ void tidy(Simulation& simulation) {
 
 }  // namespace
 
+Result<measure::Certificates> simulated_certificates(const Configuration& configuration) {
+  const std::string phantom = "PHC-2026-0101", adapter = "ADC-2026-0101";  // drivers/emulated/README.md
+  const auto of_phantom = configuration.phantom_certificates.find(phantom);
+  const auto of_adapter = configuration.adapter_certificates.find(adapter);
+  const std::string where = configuration.folder.string();
+  if (of_phantom == configuration.phantom_certificates.end())
+    return Problem{"simulation_certificate", where, {{"number", phantom}}};
+  if (of_adapter == configuration.adapter_certificates.end())
+    return Problem{"simulation_certificate", where, {{"number", adapter}}};
+  return measure::Certificates{of_phantom->second.value, of_adapter->second.value};
+}
+
 Decisions& Decisions::operator+=(const Decisions& other) {
   passed += other.passed, false_accepts += other.false_accepts, false_rejects += other.false_rejects;
   return *this;

@@ -8,6 +8,7 @@
 #include "limits/sheet.h"
 #include "station/measure/certificate.h"
 #include "station/measure/model.h"
+#include "station/sequence/configuration.h"
 
 // Simulated production: probes and stations drawn from the emulated bench's spreads, tested by this station's own
 // drivers, routine, evaluation and judging, in software and in no time. It estimates what a sheet does; it is no
@@ -45,6 +46,9 @@ struct SimulatedDocuments {
   const limits::Sheet& sheet;
   const measure::Certificates& certificates;  ///< of the emulated bench's nest 1
 };
+
+/// What the configuration says of the bench's nest 1. Errors: simulation_certificate.
+Result<measure::Certificates> simulated_certificates(const Configuration& configuration);
 
 /// What was decided about probes. False: against their true values and the sheet's limits.
 struct Decisions {

@@ -45,6 +45,7 @@ const std::vector<std::vector<std::string>>& commands() {
                                                          {"limits"},
                                                          {"limits", "check"},
                                                          {"limits", "diff"},
+                                                         {"simulate"},
                                                          {"measure"},
                                                          {"measure", "spectrum"},
                                                          {"measure", "pulses"}};
