@@ -45,6 +45,8 @@ struct Dispatch {
     const auto pages = page_maker();
     text::DemoParts parts = demo_parts(options);
     parts.pages = pages.get();
+    const auto window = options.headless ? nullptr : line_window(options.build.version);
+    parts.window = window.get();
     return text::demo(options, parts, console);
   }
   int operator()(const text::LineOptions& options) const {

@@ -16,6 +16,7 @@ class Window final : public text::LineWindow {
     options.feed = &feed_;
     return windows::run_window(host, options);
   }
+  void close() override { windows::close_window(); }
 
  private:
   std::string version_;

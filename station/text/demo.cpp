@@ -5,6 +5,7 @@
 #include <boost/asio/signal_set.hpp>
 #include <csignal>
 #include <filesystem>
+#include <thread>
 
 #include "db/queries/run_record.h"
 #include "db/queries/seal.h"
@@ -48,7 +49,10 @@ class Demonstration {
     handler_ = std::move(*handler);
     const SteadyTime begin = clock_.steady_now();
     if (auto started = start(std::move(*configuration)); !started) return console_.refuse(started.error());
-    wait();
+    if (parts_.window)
+      wait_in_window();
+    else
+      wait();
     finish();
     result_.took = clock_.steady_now() - begin;
     return tell();
@@ -74,6 +78,10 @@ class Demonstration {
       asio::post(io_, [this, event] { hear(event); });
     };
     listener.broken = [this](const std::string& what) { asio::post(io_, [this, what] { broken_ = what; }); };
+    if (parts_.window) {
+      host.views_per_s = LineHostOptions{}.views_per_s;
+      listener = both(std::move(listener), parts_.window->listener());
+    }
     auto started = LineHost::start(std::move(configuration), host, std::move(listener));
     if (!started) return started.error();
     host_ = std::move(*started);
@@ -84,6 +92,22 @@ class Demonstration {
               .text());
     operator_->start();
     return {};
+  }
+
+  /// Until somebody closes the window. What is told goes to the terminal meanwhile, on a thread of its own: the window
+  /// has the main one.
+  void wait_in_window() {
+    asio::signal_set signals{io_, SIGINT, SIGTERM, SIGHUP};
+    signals.async_wait([this](const boost::system::error_code& error, int) {
+      if (!error) parts_.window->close();
+    });
+    std::thread teller{[this] { io_.run(); }};
+    parts_.window->open(*host_);
+    asio::post(io_, [this, &signals] {
+      signals.cancel();
+      result_.interrupted = !operator_ended_;
+    });
+    teller.join();
   }
 
   /// Until the operator is through, or somebody stops it.

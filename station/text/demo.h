@@ -10,6 +10,7 @@
 #include "station/sequence/station_file.h"
 #include "station/text/choices.h"
 #include "station/text/console.h"
+#include "station/text/line_window.h"
 #include "station/text/page_maker.h"
 
 namespace probewright::text {
@@ -38,6 +39,8 @@ struct DemoParts {
   /// The device floor of a run that has just ended, in device seconds; nothing where something had to be asked again or
   /// the run did not go through. Empty: nobody measures it.
   std::function<std::optional<double>(const sequence::RunOutcome& outcome)> device_floor_s;
+  /// Where the line is shown while the lot is worked through; nullptr: in text.
+  LineWindow* window = nullptr;
   PageMaker* pages = nullptr;  ///< draws labels and report; nullptr: this program was built without pages
 };
 

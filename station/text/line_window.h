@@ -12,6 +12,8 @@ class LineWindow {
   virtual sequence::LineHost::Listener listener() = 0;
   /// Shows the line until a person closes the window; gives an exit status. The host goes on.
   virtual int open(sequence::LineHost& host) = 0;
+  /// Closes it as a person would, if it is open. Any thread.
+  virtual void close() = 0;
 };
 
 /// Both hear everything, the first one first.

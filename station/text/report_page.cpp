@@ -1,7 +1,7 @@
 #include "station/text/report_page.h"
 
-#include "station/base/clock.h"
 #include "station/base/cautions.h"
+#include "station/base/clock.h"
 
 namespace probewright::text {
 

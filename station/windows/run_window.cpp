@@ -108,6 +108,12 @@ class Surroundings {
 
 }  // namespace
 
+void close_window() {
+  if (QCoreApplication* application = QCoreApplication::instance())
+    QMetaObject::invokeMethod(
+        application, [] { QCoreApplication::quit(); }, Qt::QueuedConnection);
+}
+
 int run_window(sequence::LineHost& host, WindowOptions options) {
   Surroundings around{options};
   HostDoor door{host};

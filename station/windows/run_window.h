@@ -27,6 +27,9 @@ bool has_display();
 /// The host goes on; finishing it is the caller's. Main thread only; makes the application.
 int run_window(sequence::LineHost& host, WindowOptions options);
 
+/// Closes the window that run_window() has open, if any. Any thread.
+void close_window();
+
 /// How the set-up page was left.
 enum class SetupEnd {
   left,     ///< the window was closed; nothing is to be done
