@@ -1,5 +1,6 @@
 #include "station/text/demo.h"
 
+#include <boost/asio/executor_work_guard.hpp>
 #include <boost/asio/io_context.hpp>
 #include <boost/asio/post.hpp>
 #include <boost/asio/signal_set.hpp>
@@ -101,10 +102,12 @@ class Demonstration {
     signals.async_wait([this](const boost::system::error_code& error, int) {
       if (!error) parts_.window->close();
     });
+    auto until_closed = asio::make_work_guard(io_);
     std::thread teller{[this] { io_.run(); }};
     parts_.window->open(*host_);
-    asio::post(io_, [this, &signals] {
+    asio::post(io_, [&] {
       signals.cancel();
+      until_closed.reset();
       result_.interrupted = !operator_ended_;
     });
     teller.join();
