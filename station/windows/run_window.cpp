@@ -5,11 +5,11 @@
 
 #include "station/windows/frame/main_window.h"
 #include "station/windows/frame/settings.h"
+#include "station/windows/host_door.h"
 #include "station/windows/line/line_model.h"
 #include "station/windows/line/line_page.h"
 #include "station/windows/line/play_strip.h"
 #include "station/windows/line/scan_field.h"
-#include "station/windows/line_feed.h"
 #include "station/windows/look/system_scheme.h"
 #include "station/windows/setup/setup_page.h"
 #include "station/windows/watchdog.h"
@@ -23,44 +23,6 @@ using Application = QApplication;
 #else
 using Application = WatchedApplication;
 #endif
-
-class HostDoor : public LineDoor {
- public:
-  explicit HostDoor(sequence::LineHost& host) : host_(host) {}
-  void request(sequence::LineRequest request) override { host_.request(std::move(request)); }
-  std::shared_ptr<const sequence::LineView> view() const override { return host_.view(); }
-  std::vector<sequence::ClosedLate> closed_late() const override { return host_.closed_late(); }
-
- private:
-  sequence::LineHost& host_;
-};
-
-/// Lets the model hear all that the feed holds, each time there is something new.
-class Pump {
- public:
-  Pump(LineFeed* feed, LineModel& model) : feed_(feed), model_(model) {
-    if (feed_)
-      feed_->wake_by([this] {
-        QMetaObject::invokeMethod(
-            &model_, [this] { pump(); }, Qt::QueuedConnection);
-      });
-  }
-  ~Pump() {
-    if (feed_) feed_->wake_by({});
-  }
-  Pump(const Pump&) = delete;
-  Pump& operator=(const Pump&) = delete;
-
- private:
-  void pump() {
-    LineFeed::Told told = feed_->take();
-    for (const auto& event : told.events) model_.hear(event);
-    if (told.view) model_.take(std::move(told.view));
-    if (told.broken) model_.break_off(*told.broken);
-  }
-  LineFeed* feed_;
-  LineModel& model_;
-};
 
 QString settings_file(const std::string& chosen) {
   if (!chosen.empty()) return QString::fromStdString(chosen);

@@ -145,8 +145,10 @@ RunOutcome some_outcome(int nest, const std::string& serial, double dark_nA, uns
   }
   outcome.verdict = outcome.failing.empty() ? RunVerdict::pass : RunVerdict::fail;
   outcome.cause = outcome.failing.empty() ? "completed" : "limits";
-  outcome.cause_words = outcome.failing.empty() ? "all judged readings lie inside their acceptance limits"
-                                                : "a reading lies outside its acceptance limits";
+  if (outcome.verdict == RunVerdict::fail)
+    outcome.likely = {"detector_leaky", "leaky detector", "RW-10 exchange the detector",
+                      "Leaky detector: dark current 1.1 times its tolerance. Rework: RW-10 exchange the detector.",
+                      false};
   outcome.cycle = from_seconds(6.8);
   return outcome;
 }
@@ -192,7 +194,7 @@ BerthView ended_berth(const RunOutcome& outcome) {
   last.cause = outcome.cause, last.cause_words = outcome.cause_words;
   last.what_to_do = outcome.verdict == RunVerdict::pass ? "take the probe out and apply its label"
                     : outcome.verdict == RunVerdict::fail
-                        ? "take the probe out and put it on the tray for failed probes"
+                        ? "take the probe out and put it on the tray for RW-10 exchange the detector"
                         : "take the probe out; nothing was decided about it";
   if (outcome.verdict == RunVerdict::fail) last.likely_cause = "leaky detector";
   if (!outcome.failing.empty()) last.decided_by = outcome.failing.front();

@@ -133,7 +133,8 @@ TEST(Berths, SayWhatTheyShow) {
   Stage stage{busy_scene(4)};
   const auto& berths = stage.window->line().grid().berths();
   EXPECT_EQ(berths[1]->accessibleName(),
-            "Nest 2. AQ20-048-00138. Fail. Take the probe out and put it on the tray for failed probes. Dark current "
+            "Nest 2. AQ20-048-00138. Fail. Take the probe out and put it on the tray for RW-10 exchange the detector. "
+            "Dark current "
             "5.10\u00a0nA, accepted up to 4.60\u00a0nA. Likely cause: leaky detector.");
   EXPECT_EQ(berths[3]->accessibleName(),
             "Nest 4. AQ20-048-00140. 14 s left. Put it in. Put probe AQ20-048-00140 into nest 4.");
@@ -161,7 +162,8 @@ TEST(Berths, AVoidStaysInSightWhileItsNestIsNotReady) {
   EXPECT_EQ(content.headline, "Not ready");
   EXPECT_EQ(content.note, "last: Void");
   EXPECT_EQ(content.serial, "AQ20-048-00137");
-  EXPECT_TRUE(content.why.contains("nothing was decided about it")) << content.why.toStdString();
+  EXPECT_EQ(content.to_do, "Take the probe out; nothing was decided about it.");
+  EXPECT_TRUE(content.why.contains("does not answer")) << content.why.toStdString();
 }
 
 }  // namespace

@@ -76,6 +76,7 @@ TEST(Setup, FindsDevicesNestByNestAndKeepsThem) {
   machine.there.insert(machine.there.end(), {"/dev/ph2", "/dev/ad2"});
   EXPECT_TRUE(QTest::qWaitFor([&] { return state->text() == "2 nests are complete."; }, 5000))
       << state->text().toStdString();
+  QApplication::processEvents();
   const QString kept_in = qEnvironmentVariable("PW_KEEP_SCREENS");
   if (!kept_in.isEmpty()) page.grab().save(kept_in + "/setup.png");
   QSignalSpy kept{&page, &SetupPage::kept};

@@ -30,8 +30,7 @@ std::vector<Message> messages(const QString& name) {
   std::vector<Message> all;
   QString context;
   while (!xml.atEnd()) {
-    if (!xml.readNextStartElement() && !xml.isEndElement()) continue;
-    if (xml.isEndElement()) continue;
+    if (xml.readNext() != QXmlStreamReader::StartElement) continue;
     if (xml.name() == u"name") context = xml.readElementText();
     if (xml.name() == u"message") all.push_back({context, {}, {}, {}, false});
     if (xml.name() == u"source") all.back().source = xml.readElementText();

@@ -485,6 +485,14 @@
         <translation>auf das Tablett „schlecht“ legen</translation>
     </message>
     <message>
+        <source>take the probe out and put it on the tray for {rework}</source>
+        <translation>die Sonde herausnehmen und auf das Tablett für {rework} legen</translation>
+    </message>
+    <message>
+        <source>put it on the tray for {rework}</source>
+        <translation>auf das Tablett für {rework} legen</translation>
+    </message>
+    <message>
         <source>take the probe out; nothing was decided about it</source>
         <translation>die Sonde herausnehmen; über sie ist nichts entschieden</translation>
     </message>

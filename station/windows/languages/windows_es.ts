@@ -485,6 +485,14 @@
         <translation>póngala en la bandeja de las que fallan</translation>
     </message>
     <message>
+        <source>take the probe out and put it on the tray for {rework}</source>
+        <translation>saque la sonda y póngala en la bandeja para {rework}</translation>
+    </message>
+    <message>
+        <source>put it on the tray for {rework}</source>
+        <translation>póngala en la bandeja para {rework}</translation>
+    </message>
+    <message>
         <source>take the probe out; nothing was decided about it</source>
         <translation>saque la sonda; no se decidió nada sobre ella</translation>
     </message>

@@ -42,7 +42,8 @@ void Berth::show_content(BerthContent content) {
   if (!same_head(before, content_)) update(part(plan_.head));
   if (before.passage != content_.passage || before.progress != content_.progress || before.failed != content_.failed)
     update(part(plan_.bar));
-  if (before.points != content_.points || before.rail_places != content_.rail_places) update(part(plan_.rails));
+  if (before.points != content_.points || before.rail_places != content_.rail_places)
+    update(part(label_room(plan_.rails, look_.type())));
   if (before.plots != content_.plots) {
     update(part(plan_.spectra));
     update(part(plan_.pulses));
@@ -82,7 +83,8 @@ void Berth::paintEvent(QPaintEvent* event) {
   if (wanted(plan_.bar))
     draw_passage_bar(painter, plan_.bar, segments_of(content_.passage, content_.progress, content_.failed),
                      look_.colours());
-  if (wanted(plan_.rails)) draw_margin_rails(painter, plan_.rails, content_.points, content_.rail_places, look_);
+  if (wanted(label_room(plan_.rails, look_.type())))
+    draw_margin_rails(painter, plan_.rails, content_.points, content_.rail_places, look_);
   if (wanted(plan_.spectra)) draw_spectra(painter, plan_.spectra, content_.plots.get(), look_);
   if (wanted(plan_.pulses)) draw_pulses(painter, plan_.pulses, content_.plots.get(), look_);
   if (wanted(plan_.words)) draw_words(painter);

@@ -97,10 +97,9 @@ void tell_not_ready(BerthContent& content, const BerthView& view) {
   content.serial = text_of(view.last->serial);
   content.note =
       view.last->recorded ? Say::tr("last: %1").arg(verdict_words(view.last->verdict)) : Say::tr("last: not recorded");
-  content.to_do = what;
-  content.why = remedy;
-  if (view.last->verdict == RunVerdict::void_run && view.last->recorded)
-    content.why += QLatin1Char(' ') + as_sentence(said(view.last->what_to_do));
+  const bool undecided = view.last->verdict == RunVerdict::void_run || !view.last->recorded;
+  content.to_do = undecided ? as_sentence(said(view.last->what_to_do)) : what;
+  content.why = undecided ? what + QLatin1Char(' ') + remedy : remedy;
 }
 
 void tell_armed(BerthContent& content, const NestView& nest, int left_s) {

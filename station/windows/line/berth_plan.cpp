@@ -68,7 +68,8 @@ void plan_wide(BerthPlan& plan, QSizeF size, const TypeScale& type) {
   const double serial = type.width(Text::serial, QStringLiteral("AQ20-048-00137 "));
   const double share = low ? serial + type.width(Text::body, QStringLiteral("16")) : size.width() * 0.46 - pad;
   const double words = std::max(serial, share);
-  QRectF left{pad, pad * 0.5, words, size.height() - pad};
+  const double inset = low ? pad * 0.3 : pad * 0.5;
+  QRectF left{pad, inset, words, size.height() - 2 * inset};
   plan.short_title = low;
   plan.title = cut(left, low ? type.line(Text::serial) : line);
   if (!low && !one_title_row(words, type)) plan.serial = cut(left, line);

@@ -39,6 +39,11 @@ std::vector<const RailPoint*> named_points(const std::vector<RailPoint>& points,
   return named;
 }
 
+QRectF label_room(const QRectF& place, const TypeScale& type) {
+  const double more = type.line(Text::body) * 0.34;
+  return place.adjusted(0, -more, 0, more);
+}
+
 namespace {
 
 /// Half the width of a mark.
@@ -145,20 +150,13 @@ std::vector<QRectF> posts_of(const RailScale& scale, const std::vector<RailPoint
   return posts;
 }
 
-/// Places that keep clear of the posts as well, and where there is none, such as only keep clear of the marks.
-std::vector<std::optional<QRectF>> label_rects(const RailScale& scale, const std::vector<LabelWish>& wishes,
-                                               const std::vector<RailPoint>& points, double r) {
-  std::vector<QRectF> taken = taken_by(scale, points, r), all = posts_of(scale, points);
-  all.insert(all.end(), taken.begin(), taken.end());
-  auto places = label_places(scale.place, wishes, all);
-  for (std::size_t i = 0; i < places.size(); ++i) {
-    if (places[i]) continue;
-    std::vector<QRectF> others = taken;
-    for (const auto& place : places)
-      if (place) others.push_back(*place);
-    places[i] = label_places(scale.place, {wishes[i]}, others).front();
-  }
-  return places;
+/// A place that keeps clear of the posts as well, and where there is none, one that only keeps clear of the marks.
+std::optional<QRectF> label_rect(const QRectF& room, const LabelWish& wish, const std::vector<QRectF>& marks,
+                                 const std::vector<QRectF>& posts) {
+  std::vector<QRectF> all = marks;
+  all.insert(all.end(), posts.begin(), posts.end());
+  if (const auto place = label_places(room, {wish}, all).front()) return place;
+  return label_places(room, {wish}, marks).front();
 }
 
 /// A thin line to a name that could not stand beside its mark.
@@ -175,23 +173,24 @@ void draw_leader(QPainter& painter, QPointF mark, const QRectF& label, double r)
 void draw_labels(QPainter& painter, const RailScale& scale, const std::vector<RailPoint>& points, const Look& look) {
   const QFont font = look.type().font(Text::small);
   const QFontMetricsF metrics{font};
-  const double r = reach(scale, look), height = metrics.height() * 0.94;
-  const int most = scale.place.height() > 5.5 * metrics.height() ? 4 : 2;
-  const auto named = named_points(points, most);
-  std::vector<LabelWish> wishes;
-  QStringList words;
-  for (const RailPoint* point : named) {
-    words << metrics.elidedText(point->name, Qt::ElideRight, scale.place.width() * 0.8);
-    const double y = point->kind == Kind::unknown ? scale.y(0.0) : scale.y(point->position);
-    wishes.push_back({{scale.x(point->slot), y}, {metrics.horizontalAdvance(words.back()) + 4, height}, r * 1.3 + 3});
-  }
-  const auto places = label_rects(scale, wishes, points, r);
+  const double r = reach(scale, look);
+  const QRectF room = label_room(scale.place, look.type());
+  std::vector<QRectF> taken = taken_by(scale, points, r);
+  const std::vector<QRectF> posts = posts_of(scale, points);
   painter.setFont(font);
-  for (std::size_t i = 0; i < places.size(); ++i) {
-    if (!places[i]) continue;
-    painter.setPen(named[i]->kind == Kind::inside ? look.colours().ink : look.colours().fail);
-    draw_leader(painter, wishes[i].at, *places[i], r);
-    painter.drawText(*places[i], Qt::AlignCenter | Qt::TextSingleLine, words[static_cast<qsizetype>(i)]);
+  for (const RailPoint* point : named_points(points, scale.place.height() > 5.5 * metrics.height() ? 4 : 2)) {
+    const QPointF at{scale.x(point->slot), scale.y(point->kind == Kind::unknown ? 0.0 : point->position)};
+    for (const double share : {0.8, 0.5, 0.32}) {  // a shortened name is better than none
+      const QString words = metrics.elidedText(point->name, Qt::ElideRight, scale.place.width() * share);
+      const LabelWish wish{at, {metrics.horizontalAdvance(words) + 4, metrics.height() * 0.94}, r * 1.3 + 3};
+      const auto place = label_rect(room, wish, taken, posts);
+      if (!place) continue;
+      painter.setPen(point->kind == Kind::inside ? look.colours().ink : look.colours().fail);
+      draw_leader(painter, at, *place, r);
+      painter.drawText(*place, Qt::AlignCenter | Qt::TextSingleLine, words);
+      taken.push_back(*place);
+      break;
+    }
   }
 }
 
@@ -201,7 +200,7 @@ void draw_margin_rails(QPainter& painter, const QRectF& place, const std::vector
                        const Look& look) {
   const RailScale scale{place, rail_places};
   painter.save();
-  painter.setClipRect(place);
+  painter.setClipRect(label_room(place, look.type()));
   draw_rails(painter, scale, look.colours());
   painter.setRenderHint(QPainter::Antialiasing);
   for (const RailPoint& point : points) draw_guard(painter, scale, point, look);

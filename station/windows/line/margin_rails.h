@@ -9,6 +9,7 @@ class QPainter;
 namespace probewright::windows {
 
 class Look;
+class TypeScale;
 
 /// Where things stand between the rails: the common scale of all checks in px. Pure.
 struct RailScale {
@@ -26,6 +27,9 @@ struct RailScale {
 /// an edge or outside named beside its mark.
 void draw_margin_rails(QPainter& painter, const QRectF& place, const std::vector<RailPoint>& points, int rail_places,
                        const Look& look);
+
+/// Names may stand a little above and below the rails' place.
+QRectF label_room(const QRectF& place, const TypeScale& type);
 
 /// Which points are named, the most important first: those outside and without a value by rising margin, and the one
 /// that is nearest to an edge. At most `most`.

@@ -32,6 +32,7 @@ PlayStrip::PlayStrip(BenchPlay& play, LineModel& model, const Look& look, QWidge
   row->addWidget(title_);
   row->addWidget(next_);
   row->addWidget(said_, 1);
+  next_->set_outlined(true);
   next_->setObjectName(QStringLiteral("play_next"));
   connect(next_, &WordButton::clicked, this, &PlayStrip::do_next);
   connect(new QShortcut(Qt::Key_F5, this), &QShortcut::activated, this, &PlayStrip::do_next);

@@ -51,6 +51,7 @@ QWidget* make_run_page(const sequence::RunOutcome& outcome, const Look& look) {
   };
   add(Tone::quiet, facts_of(outcome));
   if (outcome.verdict != sequence::RunVerdict::pass) add(Tone::plain, as_sentence(said(outcome.cause_words)));
+  add(Tone::plain, QString::fromStdString(outcome.likely.sentences));
   column->addSpacing(8);
   if (outcome.readings.empty())
     add(Tone::quiet, Say::tr("The run ended before its first reading."));

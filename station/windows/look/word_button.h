@@ -13,6 +13,8 @@ class WordButton : public QAbstractButton {
   Q_OBJECT
  public:
   WordButton(const Look& look, Text text, QWidget* parent = nullptr);
+  /// Draws an outline, for a word that invites to be pressed.
+  void set_outlined(bool outlined);
   QSize sizeHint() const override;
 
  protected:
@@ -21,8 +23,10 @@ class WordButton : public QAbstractButton {
   void leaveEvent(QEvent* event) override;
 
  private:
+  void draw_outline(QPainter& painter);
   const Look& look_;
   Text text_;
+  bool outlined_ = false;
 };
 
 }  // namespace probewright::windows

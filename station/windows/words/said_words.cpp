@@ -27,6 +27,8 @@ constexpr std::array patterns = {
     QT_TRANSLATE_NOOP("Said", "this run releases no label"),
     QT_TRANSLATE_NOOP("Said", "take the probe out and put it on the tray for failed probes"),
     QT_TRANSLATE_NOOP("Said", "put it on the tray for failed probes"),
+    QT_TRANSLATE_NOOP("Said", "take the probe out and put it on the tray for {rework}"),
+    QT_TRANSLATE_NOOP("Said", "put it on the tray for {rework}"),
     QT_TRANSLATE_NOOP("Said", "take the probe out; nothing was decided about it"),
     QT_TRANSLATE_NOOP("Said", "nothing was decided about it"),
     QT_TRANSLATE_NOOP("Said", "take the probe out and keep it apart: this run is not on record"),
