@@ -30,7 +30,13 @@ LAYERS = {
 LAYERS["station"] = set(LAYERS)
 
 # Folders of tests that test no single layer, and the layer down to which they see.
-TEST_REACH = {"trial": "station/sequence", "faults": "station/sequence", "made": "db", "screens": "station/windows"}
+TEST_REACH = {
+    "trial": "station/sequence",
+    "faults": "station/sequence",
+    "made": "db",
+    "screens": "station/windows",
+    "rederive": "station/text",
+}
 
 # A test folder may use the layer that it tests, all below it, the test folders of those, what tests share, and the
 # emulated bench. A file beside it needs no path.
