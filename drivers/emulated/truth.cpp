@@ -122,10 +122,10 @@ double slot_variance_nA2(double current_nA) {
   return FrontEnd::slot_noise_nA * FrontEnd::slot_noise_nA + photons;
 }
 
-/// The dark under a slot is the mean of the two dark slots half a cycle around it. A contact that opens takes the
+/// The dark under a slot is the mean of the dark slots before and after it. A contact that opens takes the
 /// light away for a share of the slots.
 double cable_noise_of(const Probe& probe, const Led& led) {
-  constexpr double gap_s = 0.004, to_dark_s = 2.0 * 439e-6, mains_Hz = 50.0;
+  constexpr double gap_s = 0.004, to_dark_s = 439e-6, mains_Hz = 50.0;
   const double light_nA = led.standard_drive_mA * led.transfer_nA_per_mA;
   const double dark_nA = dark_current_nA(probe.photodiode, 25.0, 5.0);
   const double own = std::hypot(FrontEnd::drive_noise, probe.contact_noise) * light_nA;

@@ -126,7 +126,7 @@ std::vector<Expected> table() {
       {ProbeFault::detector_short, dead_detector()},
       {ProbeFault::detector_reversed, {"red_transfer", "infrared_transfer", "dark_current", "ambient_uptake"}},
       {ProbeFault::detector_leaky, {"dark_current"}},
-      {ProbeFault::shield_open, {"mains_pickup", "cable_noise"}},
+      {ProbeFault::shield_open, {"mains_pickup"}, {"cable_noise"}},
       {ProbeFault::housing_light_leak, {"ambient_uptake"}},
       {ProbeFault::direct_light_shunt, Slugs{"closed_path_light"} + at_points("red_modulation_deviation", all) +
                                            at_points("infrared_modulation_deviation", all)},
