@@ -95,12 +95,19 @@ build() {
   fi
 }
 
-# make_preset PRESET TARGET... : configures and builds with several files compiled at once, which takes half the time. If two
-# files of a target got helpers of the same name, that fails though the code is right: then each file is compiled alone.
+# make_preset PRESET [cmake option...] TARGET...: configures and builds with several files compiled at once, which takes half
+# the time. If two files of a target got helpers of the same name, that fails though the code is right: then each file is
+# compiled alone.
 make_preset() {
   local preset=$1
-  configure "$preset" -DPW_JOIN_FILES=ON || return 1
-  build "$@" && return 0
+  local -a options=()
+  shift
+  while [[ ${1-} == -D* ]]; do
+    options+=("$1")
+    shift
+  done
+  configure "$preset" -DPW_JOIN_FILES=ON "${options[@]}" || return 1
+  build "$preset" "$@" && return 0
   say "Building anew with each file compiled alone."
-  configure "$preset" -DPW_JOIN_FILES=OFF && build "$@"
+  configure "$preset" -DPW_JOIN_FILES=OFF && build "$preset" "$@"
 }

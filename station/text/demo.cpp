@@ -115,8 +115,7 @@ class Demonstration {
 
   /// Until the operator is through, or somebody stops it.
   void wait() {
-    asio::signal_set signals{io_, SIGINT, SIGTERM, SIGHUP};
-    signals.async_wait([this](const boost::system::error_code& error, int) {
+    signals_.async_wait([this](const boost::system::error_code& error, int) {
       if (!error) result_.interrupted = true;
     });
     while (!operator_ended_ && !result_.interrupted && broken_.empty()) {
@@ -214,6 +213,7 @@ class Demonstration {
   LiveBlock block_;
   SystemClock clock_;
   asio::io_context io_{1};
+  asio::signal_set signals_{io_, SIGINT, SIGTERM, SIGHUP};  ///< to the end: a second Ctrl-C does not cut the end short
   DemoResult result_;
   std::map<std::int64_t, std::optional<double>> floors_;  ///< by run
   bool operator_ended_ = false;

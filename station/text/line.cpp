@@ -76,8 +76,7 @@ class LineInText {
   }
 
   void serve() {
-    asio::signal_set signals{io_, SIGINT, SIGTERM, SIGHUP};
-    signals.async_wait([this](const boost::system::error_code& error, int) {
+    signals_.async_wait([this](const boost::system::error_code& error, int) {
       if (!error) stopped_ = true;
     });
     std::optional<OwnEcho> own_echo;
@@ -173,6 +172,7 @@ class LineInText {
   Console& console_;
   LiveBlock block_;
   asio::io_context io_{1};
+  asio::signal_set signals_{io_, SIGINT, SIGTERM, SIGHUP};  ///< to the end: a second Ctrl-C does not cut it short
   std::vector<std::string> badges_;
   double speed_ = 1.0;
   TypedLine typed_;
