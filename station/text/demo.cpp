@@ -98,15 +98,14 @@ class Demonstration {
   /// Until somebody closes the window. What is told goes to the terminal meanwhile, on a thread of its own: the window
   /// has the main one.
   void wait_in_window() {
-    asio::signal_set signals{io_, SIGINT, SIGTERM, SIGHUP};
-    signals.async_wait([this](const boost::system::error_code& error, int) {
+    signals_.async_wait([this](const boost::system::error_code& error, int) {
       if (!error) parts_.window->close();
     });
     auto until_closed = asio::make_work_guard(io_);
     std::thread teller{[this] { io_.run(); }};
     parts_.window->open(*host_);
     asio::post(io_, [&] {
-      signals.cancel();
+      signals_.cancel();
       until_closed.reset();
       result_.interrupted = !operator_ended_;
     });
