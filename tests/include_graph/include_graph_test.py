@@ -117,8 +117,8 @@ class IncludeGraph(unittest.TestCase):
         self.expect({"station/text/x.cpp": "#include <qcustomplot.h>\n"}, "<qcustomplot.h> is not for this folder")
         self.expect({"station/windows/x.cpp": "#include <QLabel>\n#include <QtWidgets/QPushButton>\n#include <qcustomplot.h>\n"})
 
-    def test_pages_know_no_ledger(self):
-        self.expect({"station/pages/x.cpp": '#include "db/store.h"\n'}, "station/pages/x.cpp:1: db/store.h lies on no arrow")
+    def test_pages_run_no_line(self):
+        self.expect({"station/pages/x.cpp": '#include "drivers/wire/port.h"\n'}, "station/pages/x.cpp:1: drivers/wire/port.h lies on no arrow")
         self.expect({"station/pages/x.cpp": '#include "station/base/units.h"\n#include <QPainter>\n#include <zint.h>\n',
                      "tests/pages/x.cpp": "#include <QProcess>\n"})
 

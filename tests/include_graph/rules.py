@@ -32,7 +32,7 @@ LAYERS["station"] = set(LAYERS)
 # Folders of tests that test no single layer, and the layer down to which they see.
 TEST_REACH = {
     "trial": "station/sequence",
-    "faults": "station/sequence",
+    "faults": "station/sequence/production",
     "made": "db",
     "screens": "station/windows",
     "rederive": "station/text",

@@ -196,9 +196,10 @@ asio::awaitable<bool> EmulatedOperator::meddle(int nest) {
   }
   if (pending(piece) != Mistake::lid_opened) co_return false;
   if (spot.lid_at_stage == 0) {
+    // Before the last part of the run: that one may be over before the hand is there.
     SeededEntropy entropy{derived_seed(settings_.mistakes.seed + 1, piece)};
     spot.lid_at_stage =
-        1 + static_cast<int>(entropy.next() % static_cast<std::uint64_t>(std::max(spot.seen.stages, 1)));
+        1 + static_cast<int>(entropy.next() % static_cast<std::uint64_t>(std::max(spot.seen.stages - 1, 1)));
   }
   if (spot.seen.stage < spot.lid_at_stage) co_return false;
   blunder(Mistake::lid_opened, piece, nest);
