@@ -5,6 +5,7 @@
 
 #include "drivers/emulated/demo_lot.h"
 #include "station/base/numbers.h"
+#include "station/sequence/production/true_values.h"
 #include "tests/faults/measured.h"
 #include "tests/trial/memory_ledger.h"
 
@@ -24,20 +25,22 @@ struct Count {
   std::map<std::string, int> failing;
 };
 
-/// Whether the truth of every judged check lies inside its limits. The bench defines no truth of cable noise, of bin
-/// against centroid and of the modelled errors.
-bool conforms(const emulated::Truth& truth, const limits::Sheet& sheet) {
+/// Whether the truth of every judged check lies inside its limits; one that this probe has no more does not.
+bool conforms(const emulated::Truth& truth, const limits::Sheet& sheet,
+              const sequence::production::TrueValues& values) {
   return std::none_of(sheet.checks.begin(), sheet.checks.end(), [&](const limits::CheckRule& rule) {
-    const double value = faults::truth_of(truth, rule.check);
-    const bool known = rule.use == limits::Use::judged && !rule.must_be_yes && !std::isnan(value);
-    return known &&
-           ((rule.limits.lower && value < *rule.limits.lower) || (rule.limits.upper && value > *rule.limits.upper));
+    if (rule.use != limits::Use::judged || rule.must_be_yes) return false;
+    const auto value = values.of(truth, rule.check);
+    if (!value) return false;
+    return std::isnan(*value) || (rule.limits.lower && *value < *rule.limits.lower) ||
+           (rule.limits.upper && *value > *rule.limits.upper);
   });
 }
 
 class Lot {
  public:
-  Lot(const char* model, std::uint64_t seed) : sheet_(trial::demonstration().sheets.at(model).value) {
+  Lot(const char* model, std::uint64_t seed)
+      : sheet_(trial::demonstration().sheets.at(model).value), values_(trial::demonstration().models.at(model).value) {
     trial::Options options = ledger_.options(seed);
     options.bench.perfect = true;
     station_.emplace(std::move(options));
@@ -48,7 +51,7 @@ class Lot {
     ASSERT_TRUE(told.outcome) << serial << (told.problem ? told.problem->text() : " hung");
     const sequence::RunOutcome& run = *told.outcome;
     const emulated::Truth& truth = station_->bench().truths().at(serial);
-    const bool good = conforms(truth, sheet_), passed = run.verdict == RunVerdict::pass;
+    const bool good = conforms(truth, sheet_, values_), passed = run.verdict == RunVerdict::pass;
     ++count.made;
     count.passed += passed;
     count.voided += run.verdict == RunVerdict::void_run;
@@ -58,9 +61,9 @@ class Lot {
     EXPECT_EQ(station_->bench().drive(1), emulated::AdapterDevice::Drive{}) << serial;
     if (fault) return;
     for (const auto& judged : run.readings) {
-      const double expected = faults::truth_of(truth, judged.reading.check);
-      if (!std::isnan(expected) && judged.reading.value)
-        errors[judged.reading.check].add(*judged.reading.value - expected);
+      const auto expected = values_.at_station(truth, judged.reading.check, {}, 25.0);
+      if (expected && !std::isnan(*expected) && judged.reading.value)
+        errors[judged.reading.check].add(*judged.reading.value - *expected);
     }
     cycles_s.push_back(seconds(run.cycle));
   }
@@ -73,6 +76,7 @@ class Lot {
   trial::MemoryLedger ledger_;
   std::optional<trial::Trial> station_;
   const limits::Sheet& sheet_;
+  sequence::production::TrueValues values_;
 };
 
 std::string words_of(const Count& count) {
@@ -108,7 +112,12 @@ TEST_P(FaultTrial, ALotWithEveryFault) {
 
   EXPECT_EQ(healthy.voided, 0);
   EXPECT_EQ(healthy.escaped, 0);
-  for (const auto& [fault, count] : faulty) EXPECT_EQ(count.passed, 0) << fault;
+  EXPECT_LE(healthy.false_fails, healthy.made / 20);  // guard bands fail what lies between them and the limits
+  for (const auto& [fault, count] : faulty) {
+    EXPECT_EQ(count.escaped, 0) << fault;
+    EXPECT_EQ(count.voided, 0) << fault;
+    if (is_hard(*emulated::parse_fault(fault))) EXPECT_EQ(count.passed, 0) << fault;
+  }
   for (const char* centroid : {"red_centroid", "infrared_centroid"}) {
     EXPECT_LE(std::abs(lot.errors[centroid].bias()), 0.05) << centroid;  // nm
     EXPECT_LE(lot.errors[centroid].sd(), 0.03) << centroid;
@@ -131,7 +140,11 @@ TEST_P(FaultTrial, EachFaultInPartsOfItsSeverity) {
       }
       std::cout << slug_of(fault) << " " << shortest(severity) << ": " << words_of(count) << "\n";
       EXPECT_EQ(count.voided, 0) << slug_of(fault);
-      if (severity == 1.0) EXPECT_EQ(count.passed, 0) << slug_of(fault);
+      // In full severity nothing outside its limits passes. A bad die attach of the infrared LED lies outside of none:
+      // its warm-up is recorded only.
+      if (severity == 1.0) EXPECT_EQ(count.escaped, 0) << slug_of(fault);
+      if (severity == 1.0 && fault != emulated::ProbeFault::infrared_die_attach)
+        EXPECT_EQ(count.passed, 0) << slug_of(fault);
     }
   lot.finish();
 }

@@ -1,17 +1,11 @@
 #pragma once
+#include <algorithm>
 #include <cmath>
-#include <limits>
 #include <map>
 #include <string>
-#include <string_view>
 
-#include "drivers/emulated/truth.h"
-
-// What the emulated bench says of a probe, check by check, and how far a station's readings are from it.
+// How far a station's readings are from what the emulated bench knows, check by check.
 namespace probewright::faults {
-
-/// The truth of a check in its unit; not a number where the bench defines none.
-double truth_of(const emulated::Truth& truth, std::string_view check);
 
 /// Mean and standard deviation of errors.
 class Moments {
