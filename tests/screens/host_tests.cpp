@@ -23,7 +23,7 @@
 namespace probewright::windows {
 namespace {
 
-constexpr double speed = 30.0;
+constexpr double speed = 3.0;  // slow enough for a machine that builds meanwhile
 constexpr int patience_ms = 60'000;
 
 /// The window over the real line in its own thread, its ledger on disk, and an emulated bench behind pseudo-terminals.

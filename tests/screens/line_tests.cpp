@@ -110,6 +110,16 @@ TEST(Line, AnswersInWordsOfTheProblem) {
   EXPECT_EQ(stage.find<Label>("answer").text(), "Put probe AQ20-048-00139 into nest 4.");
 }
 
+TEST(Line, AnAnswerEndsWithTheRunThatItAskedFor) {
+  Scene scene = busy_scene(4);
+  Stage stage{scene};
+  stage.model->hear(Answered{true, "put probe AQ20-048-00140 into nest 4", {}, 4});
+  stage.model->hear(RunEnded{some_outcome(2, "AQ20-048-00138", 1.0, 2)});
+  EXPECT_EQ(stage.find<Label>("answer").text(), "Put probe AQ20-048-00140 into nest 4.");
+  stage.model->hear(RunEnded{some_outcome(4, "AQ20-048-00140", 1.0, 4)});
+  EXPECT_EQ(stage.find<Label>("answer").text(), "Scan a probe.");
+}
+
 TEST(Berths, AnUnchangedBerthIsNotDrawnAgain) {
   Scene scene = busy_scene(4);
   Stage stage{scene};

@@ -130,8 +130,8 @@
 <context>
     <name>Details</name>
     <message>
-        <source>Run %1, purpose %2, %3 s of device time</source>
-        <translation>Lauf %1, Zweck %2, %3 s Gerätezeit</translation>
+        <source>Run %1, purpose %2, took %3 s</source>
+        <translation>Lauf %1, Zweck %2, dauerte %3 s</translation>
     </message>
     <message>
         <source>%1 repeated exchanges</source>

@@ -130,8 +130,8 @@
 <context>
     <name>Details</name>
     <message>
-        <source>Run %1, purpose %2, %3 s of device time</source>
-        <translation>Pasada %1, propósito %2, %3 s de tiempo de aparato</translation>
+        <source>Run %1, purpose %2, took %3 s</source>
+        <translation>Pasada %1, propósito %2, duró %3 s</translation>
     </message>
     <message>
         <source>%1 repeated exchanges</source>

@@ -26,6 +26,12 @@ AnswerLine::AnswerLine(LineModel& model, const Look& look, QWidget* parent)
     answered_ = true;
     show_answer();
   });
+  connect(&model, &LineModel::run_ended, this, [this](int nest) {
+    // What was asked for is done: an answer that tells to put the probe in would send hands the wrong way.
+    if (!model_.answer() || model_.answer()->nest != nest) return;
+    answered_ = false;
+    show_beginning();
+  });
   connect(&model, &LineModel::view_changed, this, [this] {
     if (!answered_) show_beginning();
   });

@@ -43,7 +43,7 @@ void plan_stacked(BerthPlan& plan, QSizeF size, const TypeScale& type) {
   plan.head = {0, 0, size.width(), left.top() + pad * 0.2};
   cut(left, pad * 0.8);
   plan.bar = cut(left, line * 0.55);
-  cut(left, line * 0.45);
+  cut(left, line * 0.6);
   const double plots = plan.form == Form::tall ? line * 4.6 : 0.0, spaces = line * 0.5;
   const double room = left.height() - plots - spaces;
   // Rails keep their height whatever the words are, so that nothing jumps and neighbours can be compared.
@@ -68,12 +68,12 @@ void plan_wide(BerthPlan& plan, QSizeF size, const TypeScale& type) {
   const double serial = type.width(Text::serial, QStringLiteral("AQ20-048-00137 "));
   const double share = low ? serial + type.width(Text::body, QStringLiteral("16")) : size.width() * 0.46 - pad;
   const double words = std::max(serial, share);
-  const double inset = low ? pad * 0.3 : pad * 0.5;
+  const double inset = pad * (low ? 0.3 : 0.4);
   QRectF left{pad, inset, words, size.height() - 2 * inset};
   plan.short_title = low;
   plan.title = cut(left, low ? type.line(Text::serial) : line);
   if (!low && !one_title_row(words, type)) plan.serial = cut(left, line);
-  place_headline(plan, cut(left, type.line(Text::headline) * (low ? 1.0 : 1.1)), type, Text::headline);
+  place_headline(plan, cut(left, type.line(Text::headline)), type, Text::headline);
   const double rails_bottom = low ? left.top() : size.height() - pad;
   plan.head = {0, 0, words + 1.5 * pad, low ? left.top() : size.height()};
   plan.words = left;

@@ -40,7 +40,7 @@ std::vector<const RailPoint*> named_points(const std::vector<RailPoint>& points,
 }
 
 QRectF label_room(const QRectF& place, const TypeScale& type) {
-  const double more = type.line(Text::body) * 0.34;
+  const double more = type.line(Text::body) * 0.28;
   return place.adjusted(0, -more, 0, more);
 }
 
@@ -187,6 +187,10 @@ void draw_labels(QPainter& painter, const RailScale& scale, const std::vector<Ra
       if (!place) continue;
       painter.setPen(point->kind == Kind::inside ? look.colours().ink : look.colours().fail);
       draw_leader(painter, at, *place, r);
+      // Where it could not keep clear of the posts, they stand back behind it.
+      QColor ground = scale.between().contains(place->center()) ? look.colours().well : look.colours().card;
+      ground.setAlphaF(0.85F);
+      painter.fillRect(*place, ground);
       painter.drawText(*place, Qt::AlignCenter | Qt::TextSingleLine, words);
       taken.push_back(*place);
       break;

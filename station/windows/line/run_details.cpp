@@ -19,7 +19,7 @@ struct Say {
 };
 
 QString facts_of(const sequence::RunOutcome& outcome) {
-  QString facts = Say::tr("Run %1, purpose %2, %3 s of device time")
+  QString facts = Say::tr("Run %1, purpose %2, took %3 s")
                       .arg(outcome.run)
                       .arg(purpose_words(outcome.purpose), QString::fromStdString(fixed(seconds(outcome.cycle), 1)));
   if (outcome.asked_again > 0)

@@ -32,7 +32,7 @@ SetupPage::SetupPage(SetupDoor& door, const Look& look, QWidget* parent)
       look_(look),
       search_(door),
       list_(new QWidget),
-      rows_(new QGridLayout(list_)),
+      rows_(new QGridLayout),
       state_(words(look, Text::strong, Tone::plain, {})),
       keep_(new QPushButton(tr("&Use these devices"))),
       emulated_(new QPushButton(tr("&Open the emulated bench"))) {
@@ -44,6 +44,10 @@ SetupPage::SetupPage(SetupDoor& door, const Look& look, QWidget* parent)
                           tr("Plug in the phantom and the adapter of nest 1 and switch them on, then those of nest 2, "
                              "and so on. Each appears below and is given the lowest nest that lacks it. Change the "
                              "number where it is wrong.")));
+  auto* list = new QVBoxLayout(list_);
+  list->setContentsMargins(0, 8, 0, 8);
+  list->addLayout(rows_);
+  list->addStretch(1);
   auto* area = new QScrollArea;
   area->setFrameShape(QFrame::NoFrame);
   area->setWidgetResizable(true);
@@ -92,7 +96,6 @@ void SetupPage::show_devices() {
   rows_->setColumnStretch(2, 1);
   rows_->setHorizontalSpacing(20);
   for (std::size_t i = 0; i < placed_.size(); ++i) add_row(i);
-  rows_->setRowStretch(static_cast<int>(placed_.size()), 1);
   show_state();
 }
 
