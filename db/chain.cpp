@@ -47,7 +47,10 @@ std::string select(std::span<const DigestedColumn> columns, std::string_view tab
 
 template <class Unsigned>
 void put_big_endian(std::string& to, Unsigned value) {
-  for (int shift = 8 * int{sizeof value} - 8; shift >= 0; shift -= 8) to += static_cast<char>(value >> shift & 0xff);
+  std::array<char, sizeof value> bytes;
+  for (std::size_t i = 0; i < sizeof value; ++i)
+    bytes[i] = static_cast<char>(value >> (8 * (sizeof value - 1 - i)) & 0xff);
+  to.append(bytes.data(), bytes.size());
 }
 
 void put_integer(std::string& to, std::int64_t value) { put_big_endian(to, static_cast<std::uint64_t>(value)); }
@@ -68,19 +71,24 @@ bool put(std::string& to, const Row& row, int column, Field field) {
       if (!row.is_text(column)) return false;
       put_text(to, row.text_view(column));
       return true;
-    case Field::maybe_text:
-      to += row.is_null(column) ? '\0' : '\1';
-      return row.is_null(column) || put(to, row, column, Field::text);
-    case Field::maybe_real:
-      to += row.is_null(column) ? '\0' : '\1';
-      if (row.is_null(column)) return true;
-      if (!row.is_real(column)) return false;
+    case Field::maybe_text: {
+      const bool none = row.is_null(column);
+      to += none ? '\0' : '\1';
+      return none || put(to, row, column, Field::text);
+    }
+    case Field::maybe_real: {
+      const bool real = row.is_real(column);
+      to += real ? '\1' : '\0';
+      if (!real) return row.is_null(column);
       put_big_endian(to, std::bit_cast<std::uint64_t>(row.real(column)));
       return true;
-    case Field::flag:
-      if (!row.is_integer(column) || (row.integer(column) != 0 && row.integer(column) != 1)) return false;
-      to += row.integer(column) != 0 ? '\1' : '\0';
+    }
+    case Field::flag: {
+      const std::int64_t flag = row.is_integer(column) ? row.integer(column) : -1;
+      if (flag != 0 && flag != 1) return false;
+      to += flag != 0 ? '\1' : '\0';
       return true;
+    }
     case Field::digest:
       if (!row.is_blob(column) || row.blob(column).size() != 32) return false;
       to.append(reinterpret_cast<const char*>(row.blob(column).data()), 32);

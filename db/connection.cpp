@@ -94,6 +94,13 @@ Row Connection::begin(const char* sql) {
 
 bool Connection::in_transaction() const { return sqlite3_get_autocommit(handle_) == 0; }
 
+Interrupting::Interrupting(Connection& connection, int steps) : connection_(connection) {
+  sqlite3_progress_handler(
+      connection.handle(), steps, [](void*) { return 1; }, nullptr);
+}
+
+Interrupting::~Interrupting() { sqlite3_progress_handler(connection_.handle(), 0, nullptr, nullptr); }
+
 void Connection::wait_for_locks(int milliseconds) { sqlite3_busy_timeout(handle_, milliseconds); }
 
 }  // namespace probewright::db

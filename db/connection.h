@@ -54,4 +54,15 @@ class Connection {
   std::map<const char*, std::unique_ptr<Statement>> kept_;
 };
 
+/// While it lives, every statement of a connection ends with an interrupt after so many steps of SQLite's machine.
+class Interrupting {
+ public:
+  Interrupting(Connection& connection, int steps);
+  ~Interrupting();
+  Interrupting(const Interrupting&) = delete;
+
+ private:
+  Connection& connection_;
+};
+
 }  // namespace probewright::db

@@ -36,6 +36,8 @@ std::string_view problem_id(int code) {
 Error::Error(Problem problem, int code, std::string sql)
     : ProblemError(std::move(problem)), code_(code), sql_(std::move(sql)) {}
 
+bool Error::interrupted() const { return (code_ & 0xff) == SQLITE_INTERRUPT; }
+
 bool Error::refused() const { return (code_ & 0xff) == SQLITE_CONSTRAINT; }
 
 Problem problem_of(int code, std::string_view reason, std::string_view file) {

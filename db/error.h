@@ -17,6 +17,8 @@ class Error : public ProblemError {
   const std::string& sql() const { return sql_; }
   /// True where the database is well and only this change was refused: a constraint, a trigger.
   bool refused() const;
+  /// True where the work was ended from outside (Interrupting).
+  bool interrupted() const;
 
  private:
   int code_;
