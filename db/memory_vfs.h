@@ -20,6 +20,7 @@ struct DiskFaults {
   bool from_then_on = false;                                      ///< and so does every later one of its kind
   std::int64_t short_write = 0;  ///< this write stores its first half, then the disk is full
   std::int64_t full_at = 0;      ///< no file may take the disk beyond so many bytes
+  bool lies_about_sync = false;  ///< syncs say that they worked and save nothing
   std::int64_t die_at = 0;  ///< at this write, sync, truncate or delete the machine stops: it and every later call fail
 };
 

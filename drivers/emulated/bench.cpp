@@ -372,8 +372,17 @@ Result<void> Bench::cause(const ScenarioFault& fault) { return player_->cause(fa
 void Bench::mend() { player_->mend(); }
 
 std::map<BenchFault, std::uint64_t> Bench::troubles() const {
-  std::map<BenchFault, std::uint64_t> counts = player_->begun();
+  std::map<BenchFault, std::uint64_t> all;
+  for (int nest = 1; nest <= options_.nests; ++nest) {
+    for (const auto& [fault, count] : troubles(nest)) all[fault] += count;
+  }
+  return all;
+}
+
+std::map<BenchFault, std::uint64_t> Bench::troubles(int nest) const {
+  std::map<BenchFault, std::uint64_t> counts = player_->begun(nest);
   for (const auto& [device, line] : lines_) {
+    if (device.nest != nest) continue;
     counts[BenchFault::byte_lost] += spoilt(line, wire::FaultKind::lose);
     counts[BenchFault::byte_changed] += spoilt(line, wire::FaultKind::change);
     counts[BenchFault::byte_doubled] += spoilt(line, wire::FaultKind::twice);

@@ -84,8 +84,9 @@ class Bench final : public Hands {
 
   /// Plays a scenario; its times count from the start of the bench. Errors: bench_no_such_nest.
   Result<void> play(const Scenario& scenario);
-  /// How often each fault of the bench has happened.
+  /// How often each fault of the bench has happened, in all or in one nest (the room counts to nest 1).
   std::map<BenchFault, std::uint64_t> troubles() const;
+  std::map<BenchFault, std::uint64_t> troubles(int nest) const;
 
   // What scenarios turn at. Devices and nests are those of the bench.
   int add_share(const DeviceId& device, const SpoiltShare& share);  ///< beside others; the number ends it

@@ -179,10 +179,18 @@ asio::awaitable<void> ScenarioPlayer::at_random(Alive alive, DeviceClock clock, 
   }
 }
 
+std::map<BenchFault, std::uint64_t> ScenarioPlayer::begun(int nest) const {
+  std::map<BenchFault, std::uint64_t> counts;
+  for (const auto& [what, count] : begun_) {
+    if (what.first == nest) counts[what.second] += count;
+  }
+  return counts;
+}
+
 void ScenarioPlayer::start(const Act& act) {
   const ScenarioFault& fault = act.fault;
   if (is_of_line(fault.fault) || is_of_talk(fault.fault)) return start_on_line(act);
-  ++begun_[fault.fault];
+  ++begun_[{act.place.nest, fault.fault}];
   if (is_of_physics(fault.fault)) {
     lasting_.push_back({act.number, fault, act.place.nest, 1.0});
     return fault.fault == warm_room ? apply_room() : apply_physics(act.place.nest);

@@ -31,8 +31,9 @@ class ScenarioPlayer {
   Result<void> cause(const ScenarioFault& fault, double zero_s);
   void mend();
 
-  /// How often each fault of devices, nests and the room has begun; those of lines are counted by their lines.
-  const std::map<BenchFault, std::uint64_t>& begun() const { return begun_; }
+  /// How often each fault of a nest and its devices has begun (nest 1 for the room); those of lines are counted by
+  /// their lines.
+  std::map<BenchFault, std::uint64_t> begun(int nest) const;
 
  private:
   /// One fault at one place.
@@ -80,7 +81,7 @@ class ScenarioPlayer {
   int season_ = 0;  ///< counts mend(): what began in an older one ends
   std::list<Lasting> lasting_;
   std::map<int, std::vector<std::function<void()>>> endings_;  ///< by act: what takes its rates off the lines
-  std::map<BenchFault, std::uint64_t> begun_;
+  std::map<std::pair<int, BenchFault>, std::uint64_t> begun_;  ///< by nest
   std::shared_ptr<ScenarioPlayer*> self_;
 };
 

@@ -48,11 +48,13 @@ Trial::Trial(Options options)
   closed_late_ = start->closed_late;
   workers_.emplace(clock_, derived_seed(options_.seed, 2));
   bench_ = std::make_unique<emulated::Bench>(io_.get_executor(), clock_, options_.bench, options_.observer);
+  bench_->play(options_.scenario).value();
   ledger_ = std::make_unique<LedgerWriter>(std::move(start->store), *workers_, io_.get_executor());
-  const PortOpener ports = [this](const DevicePlace&, int nest, DeviceKind kind) {
+  PortOpener ports = [this](const DevicePlace&, int nest, DeviceKind kind) {
     return bench_->source(
         {nest, kind == DeviceKind::phantom ? emulated::DeviceKind::phantom : emulated::DeviceKind::adapter});
   };
+  if (options_.between) ports = options_.between(std::move(ports));
   LineServices services{clock_, entropy_, *ledger_, software, Zone{}, [this](const LineEvent& e) { hear(e); }};
   line_ = std::make_unique<Line>(configuration, ports, std::move(services));
   line_->start(io_.get_executor(), [this](const std::exception_ptr& error) {

@@ -29,6 +29,9 @@ struct Options {
   sequence::Purpose purpose = sequence::Purpose::engineering;
   const sequence::Configuration* configuration = nullptr;  ///< nullptr: demonstration()
   emulated::ActionObserver* observer = nullptr;            ///< of the bench; outlives the trial
+  emulated::Scenario scenario;                             ///< what goes wrong with the bench
+  /// Puts something between the line and its ports; empty: nothing.
+  std::function<sequence::PortOpener(sequence::PortOpener)> between;
 };
 
 /// What came out of one probe.
@@ -60,6 +63,10 @@ class Trial {
   sequence::Line& line() { return *line_; }
   wire::VirtualClock& clock() { return clock_; }
   boost::asio::io_context& io() { return io_; }
+  /// Why a nest ended by an exception: our own mistake.
+  const std::optional<std::string>& broken() const { return broken_; }
+  /// What is wrong with the ledger.
+  const std::optional<Problem>& ledger_trouble() const { return ledger_->trouble(); }
   /// The newest entry on disk as the store knows it.
   db::Seal seal() const { return store_ ? store_->seal() : db::Seal{}; }
   const std::vector<sequence::LineEvent>& events() const { return events_; }
