@@ -1,5 +1,6 @@
 #include <gtest/gtest.h>
 
+#include <boost/asio/co_spawn.hpp>
 #include <boost/asio/post.hpp>
 #include <map>
 
@@ -92,26 +93,46 @@ TEST_F(ManyNests, RunAtTheSameTimeEachWithItsOwnProbe) {
   ASSERT_TRUE(station.finish());
 }
 
-TEST_F(ManyNests, APulledDeviceIsNothingToTheOthers) {
+/// Where in a run of nest 2 which cable is pulled, and how long after the stage began.
+struct Pull {
+  int stage;
+  DeviceKind device;
+  int after_ms;
+};
+class PulledCable : public ManyNests, public ::testing::WithParamInterface<Pull> {};
+
+TEST_P(PulledCable, IsNothingToTheOthersAndComesBackByItself) {
+  const Pull pull = GetParam();
   ASSERT_TRUE(all_empty());
-  bool pulled = false;
+  std::optional<SteadyTime> due;
   station.on_event = [&](const sequence::LineEvent& event) {
     const auto* changed = std::get_if<sequence::NestChanged>(&event);
-    if (pulled || !changed || changed->view.nest != 2 || changed->view.stage != 3) return;
-    pulled = true;
-    boost::asio::post(station.io(), [&] { station.bench().pull({2, DeviceKind::adapter}).value(); });
+    if (due || !changed || changed->view.nest != 2 || changed->view.stage != pull.stage) return;
+    due = station.clock().steady_now() + std::chrono::milliseconds(pull.after_ms);
+    boost::asio::co_spawn(station.io(), station.clock().wait_until(*due), [&](const std::exception_ptr&) {
+      station.bench().pull({2, pull.device}).value();
+    });
   };
   const auto ended = test_all();
+  ASSERT_TRUE(due);
   ASSERT_EQ(ended.size(), static_cast<std::size_t>(nests));
   for (const auto& [nest, outcome] : ended)
     EXPECT_EQ(outcome.verdict, nest == 2 ? RunVerdict::void_run : RunVerdict::pass) << outcome.cause_words;
   EXPECT_EQ(ended.at(2).cause, "device_lost");
   EXPECT_EQ(ended.at(1).asked_again + ended.at(3).asked_again + ended.at(4).asked_again, 0);
-  station.bench().plug({2, DeviceKind::adapter}).value();
+  station.bench().plug({2, pull.device}).value();
   for (int nest = 1; nest <= nests; ++nest) station.bench().remove(nest).value();
   EXPECT_TRUE(all_empty()) << station.line().views()[1].words;
   ASSERT_TRUE(station.finish());
 }
+
+// Each stage with captures, both devices, early and in mid-capture.
+INSTANTIATE_TEST_SUITE_P(TenTimes, PulledCable,
+                         ::testing::Values(Pull{1, DeviceKind::adapter, 20}, Pull{2, DeviceKind::phantom, 40},
+                                           Pull{2, DeviceKind::adapter, 90}, Pull{3, DeviceKind::adapter, 10},
+                                           Pull{3, DeviceKind::phantom, 150}, Pull{4, DeviceKind::adapter, 300},
+                                           Pull{4, DeviceKind::phantom, 60}, Pull{5, DeviceKind::adapter, 450},
+                                           Pull{5, DeviceKind::phantom, 200}, Pull{6, DeviceKind::adapter, 120}));
 
 }  // namespace
 }  // namespace probewright
