@@ -65,7 +65,7 @@ std::int64_t Change::append(std::string_view kind, std::string_view who, const B
       .run();
   for (std::size_t i = 0; i < projected_tables().size(); ++i) {
     const ProjectedTable& table = projected_tables()[i];
-    if (kind != table.kind) continue;
+    if (!makes_rows(table, kind)) continue;
     const auto rows = project(table, head.number, data, digested);
     if (!rows) throw std::logic_error("a body lacks what its table needs: " + std::string{table.table});
     for (const auto& cells : *rows) {

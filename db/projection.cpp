@@ -91,6 +91,13 @@ constexpr std::array carried_try_columns = std::to_array<ProjectedColumn>({
     {"place", place, ""},
 });
 
+constexpr std::array entry_about_columns = std::to_array<ProjectedColumn>({
+    {"entry", entry_number, ""},
+    {"subject", about_subject, ""},
+    {"name", about_name, ""},
+});
+constexpr std::array subjects = std::to_array<const char*>({"lot", "person", "serial"});
+
 constexpr std::array tables = std::to_array<ProjectedTable>({
     {"document", "document", "", "entry", document_columns},
     {"signature", "document_signed", "", "entry", signature_columns},
@@ -101,6 +108,7 @@ constexpr std::array tables = std::to_array<ProjectedTable>({
     {"run_closed", "run_closed", "", "entry", run_closed_columns},
     {"pruned", "prune", "captures", "entry", pruned_columns},
     {"carried_try", "tries_carried", "tries", "entry", carried_try_columns, 2},
+    {"entry_about", "", "", "entry", entry_about_columns, 3},
 });
 
 std::optional<Cell> digest_cell(const Body& member) {
@@ -184,7 +192,7 @@ std::string column_list(const ProjectedTable& table) {
 /// The column that keeps the rows of one entry in the order of their list.
 const char* order_of(const ProjectedTable& table) {
   for (const ProjectedColumn& column : table.columns)
-    if (column.source == place || column.source == item) return column.name;
+    if (column.source == place || column.source == item || column.source == about_subject) return column.name;
   return table.entry_key;
 }
 
@@ -196,6 +204,11 @@ std::span<const ProjectedTable> projected_tables_at(std::int64_t step) {
   const auto newer = [step](const ProjectedTable& table) { return table.since > step; };
   const auto end = std::find_if(tables.begin(), tables.end(), newer);  // later steps stand at the end
   return {tables.begin(), end};
+}
+
+bool makes_rows(const ProjectedTable& table, std::string_view kind) {
+  if (*table.kind != '\0') return kind == table.kind;
+  return kind != "run_opened" && kind != "run_closed";
 }
 
 bool is_projected(std::string_view kind) {
@@ -218,6 +231,14 @@ std::string shown(const Cell& cell) {
 std::optional<std::vector<std::vector<Cell>>> project(const ProjectedTable& table, std::int64_t entry, const Body& data,
                                                       const std::string& digested) {
   std::vector<std::vector<Cell>> rows;
+  if (*table.kind == '\0') {
+    for (const char* subject : subjects) {
+      const Body* name = data.find(subject);
+      if (name && name->string() && !name->string()->empty())
+        rows.push_back({entry, std::string{subject}, *name->string()});
+    }
+    return rows;
+  }
   const auto take = [&](std::int64_t at, const Body& from) {
     auto row = project_row(table, entry, at, from, digested);
     if (row) rows.push_back(*std::move(row));

@@ -15,17 +15,19 @@ namespace probewright::db {
 
 /// Where a column comes from.
 enum class Source {
-  entry_number,  ///< the number of the entry itself
-  place,         ///< the item's place in its list, from 0
-  item,          ///< the item of the list, an integer
-  text,          ///< member `key`, a string
-  integer,       ///< member `key`, an integer
-  flag,          ///< member `key`, true or false, as 1 or 0
-  decimal,       ///< member `key`, a number written as a string, or null
-  digest,        ///< member `key`, a SHA-256 as 64 hexadecimal digits
-  maybe_digest,  ///< the same, or null
-  words,         ///< member `key`, a list of strings, joined with ", "
-  digested_text  ///< not in the body: text whose SHA-256 is member `key`
+  entry_number,   ///< the number of the entry itself
+  place,          ///< the item's place in its list, from 0
+  item,           ///< the item of the list, an integer
+  text,           ///< member `key`, a string
+  integer,        ///< member `key`, an integer
+  flag,           ///< member `key`, true or false, as 1 or 0
+  decimal,        ///< member `key`, a number written as a string, or null
+  digest,         ///< member `key`, a SHA-256 as 64 hexadecimal digits
+  maybe_digest,   ///< the same, or null
+  words,          ///< member `key`, a list of strings, joined with ", "
+  digested_text,  ///< not in the body: text whose SHA-256 is member `key`
+  about_subject,  ///< which of lot, person, serial the row is for
+  about_name      ///< the member of data with that name
 };
 
 struct ProjectedColumn {
@@ -36,7 +38,7 @@ struct ProjectedColumn {
 
 struct ProjectedTable {
   const char* table;
-  const char* kind;       ///< the kind of entry that makes its rows
+  const char* kind;       ///< the kind of entry that makes its rows; "": every kind but run_opened and run_closed
   const char* list;       ///< member of data with one row each, or "" for one row an entry
   const char* entry_key;  ///< the column that holds the entry's number
   std::span<const ProjectedColumn> columns;
@@ -47,7 +49,10 @@ struct ProjectedTable {
 std::span<const ProjectedTable> projected_tables();
 /// Those that a ledger has after `step` steps of the layout.
 std::span<const ProjectedTable> projected_tables_at(std::int64_t step);
-/// True where entries of this kind have rows in a projected table, so that only their own function may add them.
+/// Whether entries of this kind make rows of the table.
+bool makes_rows(const ProjectedTable& table, std::string_view kind);
+/// True where entries of this kind have rows in a table for this kind alone, so that only their own function may add
+/// them.
 bool is_projected(std::string_view kind);
 
 /// One cell: NULL, INTEGER, REAL, TEXT or BLOB.

@@ -174,7 +174,10 @@ void Store::climb(const StoreOptions& options) {
   if (const auto difference = schema_difference(connection_, found); !difference.what.empty())
     throw ProblemError({"ledger_layout_altered", path(), {{"name", difference.name}, {"what", difference.what}}});
   Transaction change{connection_};
-  for (std::int64_t step = found + 1; step <= newest_step; ++step) connection_.run(std::string{schema_step(step)});
+  for (std::int64_t step = found + 1; step <= newest_step; ++step) {
+    connection_.run(std::string{schema_step(step)});
+    connection_.run(std::string{schema_filling(step)});
+  }
   connection_.run("PRAGMA user_version=" + std::to_string(newest_step));
   prepare();
   Change first{*this, newest_entry()};

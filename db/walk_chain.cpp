@@ -136,7 +136,9 @@ std::optional<std::int64_t> lowest_stray(Connection& connection, const std::stri
 }
 
 std::string of_kind(const ProjectedTable& table) {
-  return "entry AS e WHERE e.kind = '" + std::string{table.kind} + "' AND e.number";
+  const std::string kind = table.kind;
+  const std::string of = kind.empty() ? "NOT IN ('run_opened', 'run_closed')" : "= '" + kind + "'";
+  return "entry AS e WHERE e.kind " + of + " AND e.number";
 }
 
 std::string count_sql(const ProjectedTable& table) {
@@ -153,7 +155,7 @@ Projections::Projections(Connection& connection) {
 
 std::optional<Fault> Projections::fault(std::string_view kind, std::int64_t number, const Body& data) {
   for (Projected& projected : tables_)
-    if (kind == projected.table->kind)
+    if (makes_rows(*projected.table, kind))
       if (auto fault = rows_fault(*projected.select, *projected.table, number, data, projected.agreed)) return fault;
   return std::nullopt;
 }

@@ -15,6 +15,9 @@ constexpr std::string_view step_1 =
 constexpr std::string_view step_2 =
 #include "db/schema/step_2.inc"
     ;
+constexpr std::string_view step_3 =
+#include "db/schema/step_3.inc"
+    ;
 
 /// The layout after each step, the first one at place 0.
 std::vector<std::vector<SchemaObject>> schemas_of_steps() {
@@ -32,7 +35,17 @@ std::vector<std::vector<SchemaObject>> schemas_of_steps() {
 std::string_view schema_step(std::int64_t step) {
   if (step == 1) return step_1;
   if (step == 2) return step_2;
+  if (step == 3) return step_3;
   throw std::logic_error("no such step of the layout");
+}
+
+std::string_view schema_filling(std::int64_t step) {
+  if (step != 3) return {};
+  return "INSERT INTO entry_about(entry, subject, name)"
+         " SELECT e.number, s.value, json_extract(e.body, '$.data.' || s.value) AS name"
+         " FROM entry AS e, json_each('[\"lot\",\"person\",\"serial\"]') AS s"
+         " WHERE e.kind NOT IN ('run_opened', 'run_closed')"
+         " AND json_type(e.body, '$.data.' || s.value) = 'text' AND name <> ''";
 }
 
 std::vector<SchemaObject> schema_objects(Connection& connection) {

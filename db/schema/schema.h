@@ -11,8 +11,10 @@ namespace probewright::db {
 /// "PWLG": says in the file's header that it is a ledger of this program.
 inline constexpr std::int64_t application_id = 0x50574c47;
 /// The newest step of the layout that this program knows; `user_version` of the file.
-inline constexpr std::int64_t newest_step = 2;
+inline constexpr std::int64_t newest_step = 3;
 
+/// SQL that fills what a step added from the entries that a ledger has already; empty where there is nothing to fill.
+std::string_view schema_filling(std::int64_t step);
 /// SQL of one step, 1 to newest_step.
 std::string_view schema_step(std::int64_t step);
 

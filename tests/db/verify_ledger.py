@@ -17,7 +17,8 @@ import sys
 
 APPLICATION_ID = 0x50574C47
 LAYOUTS = {1: "c259876579837accc7a983fb3ae6fb3b0c5496d5c1b1cd66066ceb4bbb043cbf",
-           2: "3ec2680e60e7a7dc27ea23099fdad174d5aec008406285d89a83a317a6645048"}
+           2: "3ec2680e60e7a7dc27ea23099fdad174d5aec008406285d89a83a317a6645048",
+           3: "751f023a779b26a08f7fcb609b8b94d784846b28b1fd061d9ec2b61f6e15ae75"}
 
 # table: (kind of entry, list in data or None, column that holds the entry's number, [(column, how, member)])
 TABLES = {
@@ -54,8 +55,10 @@ TABLES = {
     "carried_try": ("tries_carried", "tries", "entry", [
         ("serial", "text", "serial"), ("purpose", "text", "purpose"), ("tries", "integer", "tries"),
         ("entry", "entry", None), ("place", "place", None)]),
+    # Every kind but those of runs; one row for each of the three that the entry names.
+    "entry_about": (None, None, "entry", [("entry", "entry", None), ("subject", "subject", None), ("name", "name", None)]),
 }
-SINCE = {"carried_try": 2}  # tables that an earlier layout lacks
+SINCE = {"carried_try": 2, "entry_about": 3}  # tables that an earlier layout lacks
 
 READING = [("place", "integer"), ("check_slug", "text"), ("value", "maybe_real"), ("none_reason", "maybe_text"),
            ("expanded_uncertainty", "maybe_real"), ("unit", "text"), ("lower_limit", "maybe_real"),
@@ -130,7 +133,11 @@ def same(found, expected):
 def check_projected(db, table, number, data):
     kind, list_name, key, columns = TABLES[table]
     items = [data] if list_name is None else data[list_name]
-    order = next((c for c, how, _ in columns if how in ("place", "item")), key)
+    if table == "entry_about":
+        items = [{"subject": s, "name": data[s]} for s in ("lot", "person", "serial")
+                 if isinstance(data, dict) and isinstance(data.get(s), str) and data[s] != ""]
+        columns = [("entry", "entry", None), ("subject", "text", "subject"), ("name", "text", "name")]
+    order = "subject" if table == "entry_about" else next((c for c, how, _ in columns if how in ("place", "item")), key)
     names = ", ".join(c for c, _, _ in columns)
     rows = db.execute(f"SELECT {names} FROM {table} WHERE {key} = ? ORDER BY {order}", (number,)).fetchall()
     if len(rows) != len(items):
@@ -172,7 +179,7 @@ def check_entries(db, tables, first):
         if (number == 1) != (kind == "ledger_begun"):
             raise Fault("entry", number, "kind", "ledger_begun is entry 1 and no other")
         for table, (its_kind, _, _, _) in tables.items():
-            if kind == its_kind:
+            if kind == its_kind or (its_kind is None and kind not in ("run_opened", "run_closed")):
                 check_projected(db, table, number, parsed["data"])
         previous = stored
     if count < first:
@@ -182,7 +189,8 @@ def check_entries(db, tables, first):
 
 def check_nothing_over(db, tables):
     """Rows that belong to no entry, no run, no capture."""
-    questions = [(table, f"SELECT count(*) FROM {table} WHERE {key} NOT IN (SELECT number FROM entry WHERE kind = '{kind}')")
+    questions = [(table, f"SELECT count(*) FROM {table} WHERE {key} NOT IN (SELECT number FROM entry WHERE "
+                  + (f"kind = '{kind}')" if kind else "kind NOT IN ('run_opened', 'run_closed'))"))
                  for table, (kind, _, key, _) in tables.items()]
     for table, key, parent, parent_key in (("reading", "run", "run_opened", "run"), ("capture", "run", "run_opened", "run"),
                                            ("capture_bytes", "capture", "capture", "number")):
