@@ -14,7 +14,7 @@ using emulated::DeviceKind;
 using emulated::ScenarioFault;
 using emulated::Way;
 
-constexpr double about_a_shift_s = 35.0;
+constexpr double about_a_shift_s = 20.0;
 
 /// Draws for one part of the plan, so that a change in one part leaves the others as they are.
 class Draw {
@@ -65,7 +65,7 @@ void draw_when(Draw& draw, ScenarioFault& fault, double& rate, double per_shift)
 }
 
 void draw_size(Draw& draw, ScenarioFault& fault) {
-  constexpr double bytes_in_a_shift = 60e3, messages_in_a_shift = 2000.0;  // of one line
+  constexpr double bytes_in_a_shift = 40e3, messages_in_a_shift = 1200.0;  // of one line
   switch (fault.fault) {
     case BenchFault::byte_lost:
     case BenchFault::byte_changed:
@@ -139,25 +139,25 @@ emulated::Scenario drawn_scenario(std::uint64_t seed, int nests) {
   return scenario;
 }
 
-/// A ledger of a shift takes some 500 writes and 120 syncs.
+/// A ledger of a shift takes some 300 writes and 70 syncs.
 db::DiskFaults drawn_disk_faults(Draw& draw) {
   db::DiskFaults disk;
   switch (draw.whole(0, 5)) {
     case 0:
     case 1:
-      disk.die_at = draw.whole(1, 600);
+      disk.die_at = draw.whole(1, 380);
       break;
     case 2:
-      disk.fail_write = draw.whole(1, 500);
+      disk.fail_write = draw.whole(1, 300);
       break;
     case 3:
-      disk.fail_sync = draw.whole(1, 120);
+      disk.fail_sync = draw.whole(1, 70);
       break;
     case 4:
-      disk.short_write = draw.whole(1, 500);
+      disk.short_write = draw.whole(1, 300);
       break;
     default:
-      disk.full_at = draw.whole(50'000, 900'000);
+      disk.full_at = draw.whole(50'000, 700'000);
       break;
   }
   disk.from_then_on = draw.chance(0.5);

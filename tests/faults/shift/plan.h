@@ -30,7 +30,7 @@ struct ShiftPlan {
 };
 
 /// The shift of a seed; `scenario` instead of the one that would be drawn.
-ShiftPlan drawn_shift(std::uint64_t seed, const std::optional<emulated::Scenario>& scenario = {}, int probes = 12);
+ShiftPlan drawn_shift(std::uint64_t seed, const std::optional<emulated::Scenario>& scenario = {}, int probes = 6);
 
 /// "byte_lost in nest 1 at 3.2 s; disk: the 40th write fails; ...": what the plan holds, for a report.
 std::string words_of(const ShiftPlan& plan);

@@ -12,7 +12,7 @@ using namespace probewright;
 
 struct Options {
   std::uint64_t from = 1, seeds = 100;
-  int probes = 12;
+  int probes = 6;
   std::string scenario;
   bool verbose = false;
 };
@@ -48,7 +48,7 @@ bool read(int argc, char** argv, Options& options) {
 
 std::string command_for(const Options& options, std::uint64_t seed) {
   std::string command = "tests/faults/run --seeds 1 --from " + std::to_string(seed) + " --verbose";
-  if (options.probes != 12) command += " --probes " + std::to_string(options.probes);
+  if (options.probes != 6) command += " --probes " + std::to_string(options.probes);
   if (!options.scenario.empty()) command += " --scenario " + options.scenario;
   return command;
 }
@@ -76,7 +76,9 @@ int main(int argc, char** argv) {
   for (std::uint64_t seed = options.from; seed < options.from + options.seeds; ++seed) {
     const faults::ShiftPlan plan = faults::drawn_shift(seed, scenario, options.probes);
     if (options.verbose) std::cout << words_of(plan);
-    const faults::ShiftReport report = faults::make_shift(plan);
+    faults::Diary diary;
+    if (options.verbose) diary = [](const std::string& line) { std::cout << line << "\n"; };
+    const faults::ShiftReport report = faults::make_shift(plan, {}, diary);
     if (!report.breaches.empty()) {
       ++broken;
       std::cout << "seed " << seed << ":\n";

@@ -28,6 +28,7 @@ using trial::MemoryLedger;
 using trial::Trial;
 
 constexpr double watchdog_s = 2.0;
+constexpr double longest_shift_s = 400.0;  ///< device time; a probe rests for a minute before its second try
 
 sequence::Configuration with_nests(int nests) {
   sequence::Configuration configuration = trial::demonstration();
@@ -58,6 +59,33 @@ bool clearly_bad(const emulated::Truth& truth, const limits::Sheet& sheet) {
     return (rule.limits.lower && value < *rule.limits.lower - beyond) ||
            (rule.limits.upper && value > *rule.limits.upper + beyond);
   });
+}
+
+std::string words_of(const sequence::NestChanged& changed) {
+  const auto& view = changed.view;
+  return "nest " + std::to_string(view.nest) + ": " + (view.stage > 0 ? view.doing : view.words);
+}
+std::string words_of(const sequence::RunStarted& started) {
+  return "nest " + std::to_string(started.nest) + ": run " + std::to_string(started.run) + " of " + started.serial;
+}
+std::string words_of(const sequence::RunEnded& ended) {
+  const RunOutcome& outcome = ended.outcome;
+  return "nest " + std::to_string(outcome.nest) + ": " + outcome.serial + " " + std::string(slug(outcome.verdict)) +
+         ", " + outcome.cause + " " + outcome.cause_words;
+}
+std::string words_of(const sequence::RunNotRecorded& lost) {
+  return "nest " + std::to_string(lost.nest) + ": not recorded, " + lost.problem.text();
+}
+std::string words_of(const sequence::ArmingEnded& ended) {
+  return "nest " + std::to_string(ended.nest) + ": " + ended.problem.text();
+}
+std::string words_of(const sequence::Answered& answered) { return "answer: " + answered.words; }
+std::string words_of(const sequence::PersonChanged& changed) {
+  return changed.person ? changed.person->name + " is there" : "nobody is there";
+}
+std::string words_of(const sequence::LotChanged& changed) { return "lot " + changed.lot; }
+std::string words_of(const LineEvent& event) {
+  return std::visit([](const auto& kind) { return words_of(kind); }, event);
 }
 
 class BenchHands final : public production::ProbeHandler {
@@ -91,6 +119,7 @@ class BenchHands final : public production::ProbeHandler {
 struct Shift {
   const ShiftPlan& plan;
   const Doubles& doubles;
+  const Diary& diary;
   ShiftReport report;
   std::map<std::int64_t, Told> told;           ///< by run
   std::map<std::string, RunVerdict> verdicts;  ///< of serials, told
@@ -126,7 +155,7 @@ class OneLife {
     for (const auto& event : station_.events()) hear(event);
     station_.on_event = [this](const auto& event) { hear(event); };
     const bool finished = work();
-    note_what_struck();
+    note_what_struck(finished);
     if (!finished) return false;
     recover();
     if (!station_.finish()) shift_.breach("the line does not end", "");
@@ -180,11 +209,25 @@ class OneLife {
     });
     if (life_.step_at_s) run_to(*life_.step_at_s, ended);
     if (life_.step_at_s && !dead() && !ended) station_.clock().step_utc(from_seconds(life_.step_by_s));
-    run_to(life_.killed_at_s.value_or(1800.0), ended);
+    run_to(life_.killed_at_s.value_or(longest_shift_s), ended);
     if (station_.broken()) shift_.breach("a nest broke", *station_.broken());
     if (life_.killed_at_s && !ended) return false;
     if (dead()) return die();
+    if (!ended && set_back()) return give_up(ended);
     if (!ended) shift_.breach("a shift without end", station_.line().views().front().words);
+    return ended;
+  }
+
+  /// Somebody set the clock back, so probes that failed before are told to rest until it has caught up.
+  bool set_back() const {
+    return std::any_of(shift_.plan.lives.begin(), shift_.plan.lives.end(),
+                       [](const Life& life) { return life.step_at_s && life.step_by_s < 0.0; });
+  }
+  bool give_up(const bool& ended) {
+    ++shift_.report.endings["probes left to rest: the clock was set back"];
+    person_->stop();
+    run_to(longest_shift_s + 120.0, ended);
+    if (!ended) shift_.breach("a shift without end", "though nothing more is scanned");
     return ended;
   }
 
@@ -229,6 +272,8 @@ class OneLife {
   }
 
   void hear(const LineEvent& event) {
+    if (station_.seal().entry > shift_.known.entry) shift_.known = station_.seal();
+    if (shift_.diary) shift_.diary(fixed(now_s(), 3) + " s  " + words_of(event));
     std::visit([this](const auto& kind) { heard(kind); }, event);
     if (person_) person_->hear(event);
   }
@@ -249,9 +294,9 @@ class OneLife {
     if (station_.seal().entry < outcome.closing_entry)
       shift_.breach("told before it was kept", "run " + std::to_string(outcome.run));
     if (outcome.verdict != RunVerdict::void_run) shift_.verdicts[outcome.serial] = outcome.verdict;
+    check_cause(outcome, told.struck);
     check_readings(outcome, told.struck);
     shift_.told[outcome.run] = std::move(told);
-    shift_.known = station_.seal();
   }
 
   void heard(const sequence::RunNotRecorded& lost) {
@@ -290,6 +335,42 @@ class OneLife {
     return nullptr;
   }
 
+  /// A run ends by a person or the probe only when somebody did that, and by a device not for one lone fault that the
+  /// drivers must get over.
+  void check_cause(const RunOutcome& outcome, const std::map<BenchFault, std::uint64_t>& faults) {
+    const std::string where = outcome.serial + ": " + outcome.cause_words;
+    if (outcome.cause == "probe_unplugged" || outcome.cause == "probe_exchanged")
+      shift_.breach("a disturbance that was none", where);  // nobody takes a probe out in mid-run
+    if (outcome.cause == "lid_opened" && !lid_was_opened(outcome, faults))
+      shift_.breach("a disturbance that was none", where);
+    const bool by_device = outcome.verdict == RunVerdict::void_run && outcome.cause.starts_with("device_");
+    if (by_device && lone(outcome.nest, faults)) shift_.breach("a lone fault cost a run", where);
+  }
+
+  bool lid_was_opened(const RunOutcome& outcome, const std::map<BenchFault, std::uint64_t>& faults) const {
+    if (faults.contains(BenchFault::lid_opened)) return true;
+    for (const auto& fault : shift_.plan.scenario.faults)  // it may have been open already
+      if (fault.fault == BenchFault::lid_opened && fault.nest.value_or(outcome.nest) == outcome.nest) return true;
+    for (std::size_t i = 0; i < person_->pieces().size(); ++i)
+      if (person_->pieces()[i].serial == outcome.serial && shift_.plan.mistakes.rate > 0.0) return true;
+    return false;
+  }
+
+  /// One message late by less than a second, lost, or behind some noise, and nothing else wrong with the nest.
+  bool lone(int nest, const std::map<BenchFault, std::uint64_t>& faults) const {
+    if (faults.size() != 1 || faults.begin()->second != 1) return false;
+    const BenchFault struck = faults.begin()->first;
+    if (struck != BenchFault::reply_late && struck != BenchFault::reply_missing && struck != BenchFault::noise_bytes)
+      return false;
+    int of_nest = 0;
+    for (const auto& fault : shift_.plan.scenario.faults) {
+      const bool here = !fault.nest || *fault.nest == nest;
+      of_nest += here;
+      if (here && fault.fault == struck && fault.by_s > 0.9) return false;
+    }
+    return of_nest == 1;
+  }
+
   /// Readings belong to the serial under which they stand: the bench's truth of it says so. Of probes without a fault
   /// on a bench without errors beyond those that its certificates allow.
   void check_readings(const RunOutcome& outcome, const std::map<BenchFault, std::uint64_t>& faults) {
@@ -313,7 +394,7 @@ class OneLife {
     }
   }
 
-  void note_what_struck() {
+  void note_what_struck(bool finished) {
     for (const auto& [fault, times] : station_.bench().troubles())
       shift_.report.faults["bench: " + std::string(slug_of(fault))].times += times;
     for (const auto& blunder : person_->done().blunders) {
@@ -321,13 +402,13 @@ class OneLife {
       Fates& fates = shift_.report.faults["person: " + std::string(slug(blunder.mistake))];
       ++fates.times;
       ++fates.endings[blunder.taken ? "taken" : "refused in words"];
-      if (!blunder.taken && blunder.told.empty())
+      if (finished && !blunder.taken && blunder.told.empty())
         shift_.breach("silent about a mistake", std::string(slug(blunder.mistake)));
     }
     shift_.report.device_s += now_s();
     shift_.clock = station_.clock().utc_now();
     shift_.clock.microseconds += 60'000'000;
-    if (const auto seal = station_.seal(); !dead() && seal.entry > shift_.known.entry) shift_.known = seal;
+    if (const auto seal = station_.seal(); seal.entry > shift_.known.entry) shift_.known = seal;
   }
 
   Shift& shift_;
@@ -354,6 +435,7 @@ class Audit {
       if (shift_.known.entry > 0) shift_.breach("the ledger is gone", report.error().text());
       return;
     }
+    if (!report->ok() && shift_.known.entry == 0) return;  // it was killed before its first entry was kept
     if (!report->ok())
       return shift_.breach("the ledger does not agree", report->first_fault->table + " " + report->first_fault->what);
     if (last && report->open_runs > 0) shift_.breach("a run stays open", std::to_string(report->open_runs));
@@ -477,8 +559,8 @@ void ShiftReport::add(const ShiftReport& other) {
   seal = other.seal;
 }
 
-ShiftReport make_shift(const ShiftPlan& plan, const Doubles& doubles) {
-  Shift shift{plan, doubles, {}, {}, {}, {}, {}};
+ShiftReport make_shift(const ShiftPlan& plan, const Doubles& doubles, const Diary& diary) {
+  Shift shift{plan, doubles, diary, {}, {}, {}, {}, {}};
   const sequence::Configuration configuration = with_nests(plan.nests);
   auto disk = std::make_unique<db::MemoryDisk>();
   std::uint64_t crash = plan.seed;

@@ -44,8 +44,11 @@ struct Doubles {
   bool disk_lies = false;
 };
 
+/// Hears what happens, line by line: device time and words.
+using Diary = std::function<void(const std::string&)>;
+
 /// Makes a shift. All that it holds is in the plan: the same plan gives the same report.
-ShiftReport make_shift(const ShiftPlan& plan, const Doubles& doubles = {});
+ShiftReport make_shift(const ShiftPlan& plan, const Doubles& doubles = {}, const Diary& diary = {});
 
 /// The table of all faults and how the runs ended in which they struck.
 std::string table_of(const ShiftReport& report);
