@@ -1,9 +1,11 @@
 #include <gtest/gtest.h>
 
+#include <algorithm>
 #include <cmath>
 #include <cstdlib>
 #include <iostream>
 #include <map>
+#include <numeric>
 
 #include "drivers/emulated/deviates.h"
 #include "station/base/catalogue.h"
@@ -28,21 +30,36 @@ int probes() {
   return wanted ? static_cast<int>(parse_integer(wanted).value()) : usual_probes;
 }
 
-/// Errors of one check's readings.
+/// Errors of one check's readings, and what their uncertainties are made of.
 struct Errors {
-  double sum = 0.0, squares = 0.0, expanded = 0.0;
-  int n = 0, covered = 0, none = 0;
+  std::vector<double> errors;
+  double expanded = 0.0;
+  int covered = 0, none = 0;
+  std::map<std::string, double> components;  ///< sums of squares
 
-  void add(double error, double u) {
-    sum += error, squares += error * error, expanded += u;
-    ++n;
+  void add(double error, const measure::Reading& reading) {
+    const double u = reading.expanded_uncertainty.value_or(0.0);
+    errors.push_back(error);
+    expanded += u;
     covered += std::abs(error) <= u ? 1 : 0;
+    for (const measure::Component& c : reading.components) components[c.name] += c.standard_u * c.standard_u;
   }
-  double bias() const { return sum / n; }
-  double sd() const { return std::sqrt(std::max(0.0, (squares - sum * sum / n) / (n - 1))); }
-  double rms() const { return std::sqrt(squares / n); }
-  double mean_U() const { return expanded / n; }
-  double coverage() const { return static_cast<double>(covered) / n; }
+  double n() const { return static_cast<double>(errors.size()); }
+  double bias() const { return std::accumulate(errors.begin(), errors.end(), 0.0) / n(); }
+  double sd() const {
+    double squares = 0.0;
+    for (const double error : errors) squares += (error - bias()) * (error - bias());
+    return std::sqrt(squares / (n() - 1.0));
+  }
+  /// What 95 of 100 errors stay within.
+  double within_95() const {
+    std::vector<double> sizes;
+    for (const double error : errors) sizes.push_back(std::abs(error));
+    std::sort(sizes.begin(), sizes.end());
+    return sizes[static_cast<std::size_t>(0.95 * (n() - 1.0))];
+  }
+  double mean_U() const { return expanded / n(); }
+  double coverage() const { return covered / n(); }
 };
 
 void take(std::map<std::string, Errors>& errors, const measure::Reading& reading, std::optional<double> truth) {
@@ -51,7 +68,7 @@ void take(std::map<std::string, Errors>& errors, const measure::Reading& reading
   if (!reading.value)
     ++of.none;
   else if (std::isfinite(*truth))
-    of.add(*reading.value - *truth, reading.expanded_uncertainty.value_or(0.0));
+    of.add(*reading.value - *truth, reading);
 }
 
 std::string padded(std::string text, std::size_t width) {
@@ -65,21 +82,38 @@ std::string significant(double value) {
   return fixed(value, std::clamp(decimals, 0, 9));
 }
 
-/// One line for each check: bias, standard deviation, U, and how large the errors are in units of U / 2.
-void print(const std::map<std::string, Errors>& errors, const limits::Sheet& sheet) {
-  std::cout << padded("check", 30) << padded("bias", 12) << padded("sd", 12) << padded("mean U", 12)
-            << padded("declared", 12) << padded("rms/(U/2)", 11) << padded("covered", 9) << "  judged\n";
+std::vector<std::pair<std::string, const Errors*>> in_order(const std::map<std::string, Errors>& errors) {
+  std::vector<std::pair<std::string, const Errors*>> all;
   for (const Check& check : catalogue()) {
     const auto found = errors.find(std::string{check.slug});
-    if (found == errors.end() || found->second.n == 0 || found->second.mean_U() == 0.0) continue;
-    const Errors& of = found->second;
-    const limits::CheckRule* rule = sheet.find(check.slug);
-    std::cout << padded(std::string{check.slug}, 30) << padded(significant(of.bias()), 12)
-              << padded(significant(of.sd()), 12) << padded(significant(of.mean_U()), 12)
+    if (found != errors.end() && !found->second.errors.empty() && found->second.mean_U() > 0.0)
+      all.emplace_back(check.slug, &found->second);
+  }
+  return all;
+}
+
+/// One line for each check: what its errors are, what its U is, and how often that holds.
+void print_errors(const std::map<std::string, Errors>& errors, const limits::Sheet& sheet) {
+  std::cout << padded("check", 30) << padded("bias", 12) << padded("sd", 12) << padded("95 % within", 12)
+            << padded("mean U", 12) << padded("declared U", 12) << padded("covered", 9) << "  judged\n";
+  for (const auto& [check, of] : in_order(errors)) {
+    const limits::CheckRule* rule = sheet.find(check);
+    std::cout << padded(check, 30) << padded(significant(of->bias()), 12) << padded(significant(of->sd()), 12)
+              << padded(significant(of->within_95()), 12) << padded(significant(of->mean_U()), 12)
               << padded(rule ? significant(rule->expanded_uncertainty) : "", 12)
-              << padded(fixed(of.rms() / (0.5 * of.mean_U()), 2), 11) << padded(fixed(100.0 * of.coverage(), 1), 8)
-              << "%  " << (rule && rule->use == limits::Use::judged ? "yes" : "no")
-              << (of.none ? ", without a reading " + std::to_string(of.none) : "") << "\n";
+              << padded(fixed(100.0 * of->coverage(), 1), 7) << " %  "
+              << (rule && rule->use == limits::Use::judged ? "yes" : "no")
+              << (of->none ? ", without a reading " + std::to_string(of->none) : "") << "\n";
+  }
+}
+
+/// Standard uncertainties of the components, root mean square over the readings.
+void print_components(const std::map<std::string, Errors>& errors) {
+  for (const auto& [check, of] : in_order(errors)) {
+    std::cout << padded(check, 30) << ":";
+    for (const auto& [name, squares] : of->components)
+      std::cout << " " << name << " " << significant(std::sqrt(squares / of->n()));
+    std::cout << "\n";
   }
 }
 
@@ -103,7 +137,8 @@ TEST(Coverage, UncertaintiesHoldOnFreshlyDrawnStations) {
     for (const measure::Reading& reading : *readings)
       take(errors, reading, values.at_station(truth, reading.check, place.errors, place.room_degC));
   }
-  print(errors, sheet);
+  print_errors(errors, sheet);
+  print_components(errors);
   const double chance = 3.0 * std::sqrt(0.05 * 0.95 / probes());
   for (const auto& [check, of] : errors) {
     const limits::CheckRule* rule = sheet.find(check);
