@@ -117,11 +117,8 @@ void print_components(const std::map<std::string, Errors>& errors) {
   }
 }
 
-TEST(Coverage, UncertaintiesHoldOnFreshlyDrawnStations) {
-  const sequence::Configuration& demo = trial::demonstration();
-  const measure::Model& model = demo.models.at("AQ-20").value;
-  const limits::Sheet& sheet = demo.sheets.at("AQ-20").value;
-  const measure::Certificates certificates = simulated_certificates(demo).value();
+/// Errors of healthy probes, each on its own station.
+std::map<std::string, Errors> errors_of(const measure::Model& model, const measure::Certificates& certificates) {
   const TrueValues values{model};
   std::map<std::string, Errors> errors;
   for (int i = 0; i < probes(); ++i) {
@@ -131,12 +128,20 @@ TEST(Coverage, UncertaintiesHoldOnFreshlyDrawnStations) {
                                20.0 + 10.0 * room.uniform()};
     const emulated::Probe probe = emulated::draw_probe(seed, "coverage", model.name);
     SimulatedNest nest{place};
-    const auto readings = nest.test(probe);
-    ASSERT_TRUE(readings) << readings.error().text();
+    const auto readings = nest.test(probe).value();
     const emulated::Truth truth = emulated::truth_of(probe);
-    for (const measure::Reading& reading : *readings)
+    for (const measure::Reading& reading : readings)
       take(errors, reading, values.at_station(truth, reading.check, place.errors, place.room_degC));
   }
+  return errors;
+}
+
+class Coverage : public testing::TestWithParam<const char*> {};
+
+TEST_P(Coverage, UncertaintiesHoldOnFreshlyDrawnStations) {
+  const sequence::Configuration& demo = trial::demonstration();
+  const limits::Sheet& sheet = demo.sheets.at(GetParam()).value;
+  const auto errors = errors_of(demo.models.at(GetParam()).value, simulated_certificates(demo).value());
   print_errors(errors, sheet);
   print_components(errors);
   const double chance = 3.0 * std::sqrt(0.05 * 0.95 / probes());
@@ -145,9 +150,12 @@ TEST(Coverage, UncertaintiesHoldOnFreshlyDrawnStations) {
     if (rule == nullptr || rule->use != limits::Use::judged || rule->must_be_yes) continue;
     EXPECT_GE(of.coverage(), 0.93 - chance) << check;
     EXPECT_LE(of.coverage(), 0.97 + chance) << check;
+    EXPECT_LE(of.mean_U(), rule->expanded_uncertainty) << check;
     EXPECT_EQ(of.none, 0) << check;
   }
 }
+
+INSTANTIATE_TEST_SUITE_P(Models, Coverage, testing::Values("AQ-20", "AQ-35"));
 
 }  // namespace
 }  // namespace probewright

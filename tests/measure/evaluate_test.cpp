@@ -98,22 +98,22 @@ TEST(Evaluate, DarkCurrentFarFrom25CCoversAnotherDoubling) {
   EXPECT_GT(*reading.expanded_uncertainty, *reading.value - 0.8);
 }
 
-// Expanded uncertainties of a healthy probe at 25 C, k = 2, against the figures that the demonstration's sheet
-// declares.
+// Expanded uncertainties of a healthy probe, k = 2: at most what the demonstration's sheet declares, at least what 95
+// of 100 errors stay within in the coverage trial (tests/faults), rounded down.
 TEST(Evaluate, UncertaintiesStayBelowTheDeclaredOnes) {
   for (const double temperature_C : {22.0, 25.0, 28.0}) {
     const auto r = readings(healthy(temperature_C, 11));
     const std::map<std::string, std::pair<double, double>> bounds = {// at least, at most
-                                                                     {"id_deviation", {0.10, 0.16}},
-                                                                     {"red_forward_voltage", {0.003, 0.0051}},
+                                                                     {"id_deviation", {0.11, 0.16}},
+                                                                     {"red_forward_voltage", {0.002, 0.0051}},
                                                                      {"infrared_forward_voltage", {0.002, 0.0051}},
                                                                      {"red_drive", {0.03, 0.052}},
                                                                      {"red_centroid", {0.2, 0.33}},
-                                                                     {"infrared_centroid", {0.4, 0.63}},
-                                                                     {"dark_current", {0.05, 0.4}},
+                                                                     {"infrared_centroid", {0.35, 0.63}},
+                                                                     {"dark_current", {0.03, 0.4}},
                                                                      {"ratio_deviation_1p0", {0.5, 0.71}},
-                                                                     {"red_width", {0.1, 0.23}},
-                                                                     {"infrared_width", {0.3, 0.56}}};
+                                                                     {"red_width", {0.05, 0.23}},
+                                                                     {"infrared_width", {0.11, 0.56}}};
     for (const auto& [check, bound] : bounds) {
       const double U = r.at(check).expanded_uncertainty.value();
       EXPECT_GE(U, bound.first) << check;
@@ -130,8 +130,8 @@ TEST(Evaluate, UncertaintyIsMadeOfNamedComponents) {
     if (reading.expanded_uncertainty) expect_relative(*reading.expanded_uncertainty, 2.0 * std::sqrt(sum), 1e-12);
   }
   const auto r = readings(healthy(28.0, 11));
-  expect_relative(u_of(r.at("red_centroid"), "temperature"), 0.14 * 0.5, 1e-12);
-  expect_relative(u_of(r.at("red_centroid"), "temperature_coefficient"), 0.015 * 3.0, 1e-9);
+  expect_relative(u_of(r.at("red_centroid"), "temperature"), 0.14 * 0.25, 1e-12);
+  expect_relative(u_of(r.at("red_centroid"), "temperature_coefficient"), 0.005 * 3.0, 1e-9);
   expect_relative(u_of(r.at("red_drive"), "current_source"), 0.0012 * 20.03, 1e-9);
   EXPECT_GT(u_of(r.at("ratio_deviation_1p0"), "noise"), 0.0);
 }
