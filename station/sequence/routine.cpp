@@ -25,6 +25,8 @@ constexpr int most_exposures = 4;
 constexpr Duration lid_pause = std::chrono::milliseconds(100);
 /// Device time that no run takes, however often it has to ask again.
 constexpr Duration longest_run = std::chrono::minutes(10);
+/// Of an LED's die after a moment at another drive: ten of its time constants.
+constexpr double recovery_s = 0.050;
 /// Of the phantom's optics after a change of modulation; a moving blade takes 100 ms of it.
 constexpr double settling_s = 0.150, settling_after_blade_s = 0.050;
 
@@ -368,6 +370,7 @@ asio::awaitable<void> Routine::take_all_pulses(std::vector<measure::SetPoint> se
                 (last && model_.wants_red_alone() ? ", spectra" : ""));
     co_await devices_.phantom.wait_settled();
     co_await wait_since_both_on(last ? model_.warmup_s : model_.pulses_after_s);
+    co_await clock_.wait_until(recovered_);
     if (last) {
       co_await both(take_pulses(set_points[i]), take_spectra());
     } else {
@@ -419,10 +422,11 @@ asio::awaitable<void> Routine::take_pulses(measure::SetPoint set_point) {
   pulses.modulator_Hz = model_.modulator_Hz;
   {
     const std::string ratio = ratio_words(set_point);
-    const Going step{*this,
-                     "pulses " + ratio,
-                     on_adapter,
-                     {{"modulator " + ratio, settling_s_}, {"both on", model_.pulses_after_s}}};
+    const Going step{
+        *this,
+        "pulses " + ratio,
+        on_adapter,
+        {{"modulator " + ratio, settling_s_}, {"both on", model_.pulses_after_s}, {"quarter voltages", recovery_s}}};
     const adapter::Capture taken = co_await capture(model_.pulse_capture_s);
     take_slots(pulses, taken);
   }
@@ -447,6 +451,7 @@ asio::awaitable<void> Routine::take_quarter_voltages() {
         co_await devices_.adapter.forward_voltage_at(led_of(band), microamperes(quarter_mA));
     driven_.led.of(band).at_quarter = forward_voltage(told, quarter_mA);
   }
+  recovered_ = clock_.steady_now() + from_seconds(recovery_s / clock_.speed());
 }
 
 void Routine::add_driven() {

@@ -123,6 +123,7 @@ class Routine {
   adapter::ForwardVoltage infrared_first_;
   measure::ElectricalCapture contact_, driven_;
   SteadyTime both_on_{};
+  SteadyTime recovered_{};  ///< when the LEDs are as before their voltages at a quarter of the drive
   bool blade_in_ = false;
   double settling_s_ = 0.0;  ///< of the optics, after the last step that changed them
 };

@@ -3,9 +3,15 @@
 #include <cmath>
 #include <map>
 #include <string>
+#include <string_view>
+
+#include "drivers/emulated/truth.h"
 
 // How far a station's readings are from what the emulated bench knows, check by check.
 namespace probewright::faults {
+
+/// The truth of a check of a demonstration model's probe, in the check's unit; not a number where the bench knows none.
+double truth_of(const emulated::Truth& truth, std::string_view check);
 
 /// Mean and standard deviation of errors.
 class Moments {
