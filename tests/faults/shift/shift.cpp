@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <boost/asio/co_spawn.hpp>
 #include <cmath>
+#include <limits>
 
 #include "db/queries/entry_range.h"
 #include "db/queries/run_brief.h"
@@ -11,7 +12,7 @@
 #include "drivers/emulated/demo_lot.h"
 #include "station/base/numbers.h"
 #include "station/sequence/labels.h"
-#include "tests/faults/measured.h"
+#include "station/sequence/production/true_values.h"
 #include "tests/trial/memory_ledger.h"
 
 namespace probewright::faults {
@@ -51,13 +52,14 @@ struct Told {
 };
 
 /// Whether a truth lies outside what the sheet allows, by more than its uncertainty: nobody may pass that.
-bool clearly_bad(const emulated::Truth& truth, const limits::Sheet& sheet) {
+bool clearly_bad(const emulated::Truth& truth, const limits::Sheet& sheet, const production::TrueValues& values) {
   return std::any_of(sheet.checks.begin(), sheet.checks.end(), [&](const limits::CheckRule& rule) {
     if (rule.use != limits::Use::judged || rule.must_be_yes) return false;
-    const double value = truth_of(truth, rule.check);
+    const auto value = values.of(truth, rule.check);
     const double beyond = rule.expanded_uncertainty;
-    return (rule.limits.lower && value < *rule.limits.lower - beyond) ||
-           (rule.limits.upper && value > *rule.limits.upper + beyond);
+    if (!value) return false;
+    return std::isnan(*value) || (rule.limits.lower && *value < *rule.limits.lower - beyond) ||
+           (rule.limits.upper && *value > *rule.limits.upper + beyond);
   });
 }
 
@@ -380,11 +382,13 @@ class OneLife {
     shift_.truths.insert_or_assign(outcome.serial, truth->second);
     if (shift_.bad_physics() || faults.contains(BenchFault::lid_opened)) return;
     const auto& sheet = trial::demonstration().sheets.at(piece->model).value;
-    if (outcome.verdict == RunVerdict::pass && clearly_bad(truth->second, sheet))
+    if (outcome.verdict == RunVerdict::pass && clearly_bad(truth->second, sheet, values_))
       shift_.breach("a bad probe passed", outcome.serial + " " + piece->fault);
     if (!piece->fault.empty()) return;
     for (const auto& [reading, judgement] : outcome.readings) {
-      const double expected = truth_of(truth->second, reading.check);
+      const auto found = values_.at_station(truth->second, reading.check, station_.bench().own_errors(outcome.nest),
+                                            station_.bench().options().ambient_degC);
+      const double expected = found.value_or(std::numeric_limits<double>::quiet_NaN());
       if (!reading.value || !reading.expanded_uncertainty || std::isnan(expected)) continue;
       // k = 2, so 3.5 U are 7 standard deviations: noise of a million runs stays within.
       if (std::abs(*reading.value - expected) > 3.5 * *reading.expanded_uncertainty)
@@ -414,6 +418,7 @@ class OneLife {
   Shift& shift_;
   const Life& life_;
   MemoryLedger& ledger_;
+  production::TrueValues values_{trial::demonstration().models.at("AQ-20").value};
   Trial station_;
   std::optional<BenchHands> hands_;
   std::optional<production::EmulatedOperator> person_;
