@@ -84,8 +84,11 @@ double Nest::shown_degC() { return ambient_degC_ + errors_.thermometer_K + noise
 void Nest::drive(double time_s, double red_mA, double infrared_mA) { leds_.set(time_s, red_mA, infrared_mA); }
 
 double Nest::ambient_light(double time_s) const {
-  const double flicker = std::sin(2.0 * std::numbers::pi * (2.0 * mains_Hz_ * time_s + mains_phase_turns_));
-  const double room = lid_open_.at(time_s) ? room_light * (1.0 + room_flicker_depth * flicker) : 0.0;
+  double room = 0.0;
+  if (lid_open_.at(time_s)) {
+    const double flicker = std::sin(2.0 * std::numbers::pi * (2.0 * mains_Hz_ * time_s + mains_phase_turns_));
+    room = room_light * (1.0 + room_flicker_depth * flicker);
+  }
   return room + lamp_light(lamp_.at(time_s), time_s, mains_phase_turns_) +
          flicker_light(flicker_.at(time_s), time_s, mains_phase_turns_);
 }
@@ -95,7 +98,7 @@ double Nest::mains_nA(double time_s) const {
   return probe_->mains_pickup_nA * std::numbers::sqrt2 * std::sin(angle);
 }
 
-double Nest::led_light_nA(LedColour colour, double time_s, const LedDrive::Moment& drive) const {
+double Nest::led_light_nA(LedColour colour, const LedDrive::Moment& drive, const Path& phantom) const {
   const bool red = colour == LedColour::red;
   const double current_mA = red ? drive.red_mA : drive.infrared_mA;
   if (current_mA <= 0.0) return 0.0;
@@ -103,12 +106,11 @@ double Nest::led_light_nA(LedColour colour, double time_s, const LedDrive::Momen
   if (!shines(led)) return 0.0;
   const bool red_light = led.colour == LedColour::red;
   const double light = light_at(led, excess_K(led, ambient_degC_, red ? drive.red : drive.infrared));
-  const auto bands = modulator_.at(time_s);
   const double transmission = 1.0 + (red_light ? errors_.red_transmission : errors_.infrared_transmission);
   const double secondary = red_light ? probe_->secondary_current : 0.0;
-  const double own_band = red_light ? bands.red : bands.infrared;
-  const double through = (1.0 - secondary) * own_band + secondary * bands.infrared;
-  const double path = blade_.at(time_s) ? 0.0 : (1.0 - probe_->direct_light) * transmission * through;
+  const double own_band = red_light ? phantom.bands.red : phantom.bands.infrared;
+  const double through = (1.0 - secondary) * own_band + secondary * phantom.bands.infrared;
+  const double path = phantom.blade_in ? 0.0 : (1.0 - probe_->direct_light) * transmission * through;
   return current_mA * led.transfer_nA_per_mA * light * seat_coupling_ * (path + probe_->direct_light);
 }
 
@@ -121,8 +123,9 @@ Nest::Photocurrent Nest::photocurrent(Slot slot, double time_s) {
                           share * probe_->ambient_nA * ambient_light(time_s) + mains_nA(time_s);
   if (slot == Slot::dark) return current;
   const LedDrive::Moment drive = leds_.at(time_s);
-  const double red = led_light_nA(LedColour::red, time_s, drive);
-  const double infrared = led_light_nA(LedColour::infrared, time_s, drive);
+  const Path phantom{modulator_.at(time_s), blade_.at(time_s)};
+  const double red = led_light_nA(LedColour::red, drive, phantom);
+  const double infrared = led_light_nA(LedColour::infrared, drive, phantom);
   const double own = slot == Slot::red ? red : infrared, other = slot == Slot::red ? infrared : red;
   current.light_nA = share * (own + probe_->slot_crosstalk * other) * (1.0 + noise_.normal(0.0, probe_->contact_noise));
   return current;

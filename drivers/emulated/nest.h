@@ -84,7 +84,12 @@ class Nest {
   double ambient_light(double time_s) const;
   void apply_modulation(double time_s);
   double mains_nA(double time_s) const;
-  double led_light_nA(LedColour colour, double time_s, const LedDrive::Moment& drive) const;
+  /// What the phantom does with light at one moment.
+  struct Path {
+    Modulator::Bands bands;
+    bool blade_in = false;
+  };
+  double led_light_nA(LedColour colour, const LedDrive::Moment& drive, const Path& phantom) const;
   void add_led_lines(std::vector<SpectralLine>& lines, double from_s, double to_s) const;
 
   struct Modulation {
