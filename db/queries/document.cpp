@@ -17,8 +17,8 @@ std::vector<SignatureRecord> signatures_of(Reader& reader, const Digest& digest)
       "SELECT s.entry, e.time, s.signer, s.role, s.meaning, s.public_key, s.signature, e.body FROM signature AS s"
       " JOIN entry AS e ON e.number = s.entry WHERE s.document = ? ORDER BY s.entry");
   for (row.values(digest); row.step();)
-    signatures.push_back({row.integer(0), time_of_signing(row), row.text(2), row.text(3), row.text(4), row.text(5),
-                          row.text(6)});
+    signatures.push_back(
+        {row.integer(0), time_of_signing(row), row.text(2), row.text(3), row.text(4), row.text(5), row.text(6)});
   return signatures;
 }
 

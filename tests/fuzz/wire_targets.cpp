@@ -115,7 +115,8 @@ void messages(std::span<const std::byte> bytes) {
   if (message.fault) require(message.fault->at <= text.size(), "a fault lies inside the message");
   static_cast<void>(wire::parse_data(text));
   std::string joined;
-  for (const std::string_view piece : wire::split_outside(text, ';')) joined += (joined.empty() ? "" : ";") + std::string(piece);
+  for (const std::string_view piece : wire::split_outside(text, ';'))
+    joined += (joined.empty() ? "" : ";") + std::string(piece);
 }
 
 void blocks(std::span<const std::byte> bytes) {

@@ -98,7 +98,8 @@ def library_faults(sources):
             library = next((l for l in LIBRARIES if re.fullmatch(l.pattern, name)), None)
             if library is None:
                 continue
-            if library.folders is not None and place not in library.folders and not (is_test and place is None):
+            here = {place, source.name.rpartition("/")[0]}
+            if library.folders is not None and not here & library.folders and not (is_test and place is None):
                 yield f"{source.name}:{line}: <{name}> is not for this folder: {library.why}"
             if source.is_header and not library.headers and (library.in_tests_too or not is_test):
                 yield f"{source.name}:{line}: <{name}> is not for headers: {library.why}"

@@ -36,6 +36,8 @@ TEST_REACH = {
     "made": "db",
     "screens": "station/windows",
     "rederive": "station/text",
+    "speed": "station/trace",
+    "fuzz": "station/text",
 }
 
 # A test folder may use the layer that it tests, all below it, the test folders of those, what tests share, and the
@@ -75,7 +77,7 @@ LIBRARIES = [
     Library(r"boost/math/.*", "distributions stand in one place", folders={"limits"}, headers=False),
     Library(r"yaml-cpp/.*", "documents are read strictly, through station/base/strict_yaml.h", folders={"station/base"},
             headers=False),
-    Library(r"(sqlite3|zstd)\.h", "the ledger's storage stays behind db", folders={"db"}),
+    Library(r"(sqlite3|zstd)\.h", "the ledger's storage stays behind db", folders={"db", "tests/speed"}),
     Library(r"openssl/.*", "hashes and signatures stay behind db", folders={"db"}),
     Library(r"zint\.h", "codes are drawn in pages", folders={"station/pages"}, at_most=1, headers=False),
     Library(r"QtWidgets", "the umbrella header takes seconds; name the class", folders=set()),

@@ -8,6 +8,10 @@
 #include "tests/fuzz/targets.h"
 
 namespace probewright::fuzz {
+
+/// How a failed test names its target.
+void PrintTo(const Target& target, std::ostream* out) { *out << target.name; }
+
 namespace {
 
 namespace fs = std::filesystem;
@@ -57,8 +61,6 @@ TEST_P(Corpus, EveryFileAndItsBeginnings) {
 
 INSTANTIATE_TEST_SUITE_P(All, Corpus, ::testing::ValuesIn(all_targets().begin(), all_targets().end()),
                          [](const auto& tried) { return std::string(tried.param.name); });
-
-void PrintTo(const Target& target, std::ostream* out) { *out << target.name; }
 
 }  // namespace
 }  // namespace probewright::fuzz

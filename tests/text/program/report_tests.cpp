@@ -76,8 +76,7 @@ class Reports : public testing::Test {
   std::size_t labels_in_ledger() {
     std::size_t labels = 0;
     const auto told = ask({"trace", "--lot", "AQ20-W48-07", "--json"}).json();
-    for (const auto& entry : told["entries"])
-      labels += entry["kind"] == "label_made" ? 1 : 0;
+    for (const auto& entry : told["entries"]) labels += entry["kind"] == "label_made" ? 1 : 0;
     return labels;
   }
 
