@@ -100,7 +100,7 @@ TEST_F(OneDemo, FindsWhatIsPlainlyWrongAndLosesNoProbe) {
     const json& faults = truth["probes"].at(one["serial"].get<std::string>())["faults"];
     if (faults.empty()) EXPECT_EQ(one["verdict"], "pass") << one;
     for (const json& fault : faults)
-      if (hard.contains(fault["name"])) EXPECT_EQ(one["verdict"], "fail") << one << fault;
+      if (hard.contains(fault["fault"])) EXPECT_EQ(one["verdict"], "fail") << one << fault;
     EXPECT_NE(one["verdict"], "void") << one;
   }
 }
@@ -234,7 +234,7 @@ class Typist {
  public:
   explicit Typist(const std::string& path) : path_(path) {
     ::mkfifo(path.c_str(), 0600);
-    descriptor_ = ::open(path.c_str(), O_RDWR);  // both ends, so that nobody waits for the other
+    descriptor_ = ::open(path.c_str(), O_RDWR | O_CLOEXEC);  // both ends, so that nobody waits for the other
   }
   ~Typist() { close(); }
   void type(const std::string& line) {
