@@ -61,37 +61,33 @@ void put_text(std::string& to, std::string_view text) {
 }
 
 /// Appends one column; false where its type or value cannot be there.
-bool put(std::string& to, const Row& row, int column, Field field) {
+bool put(std::string& to, const Row::Peek& cell, Field field) {
+  using Type = Row::Peek::Type;
   switch (field) {
     case Field::integer:
-      if (!row.is_integer(column)) return false;
-      put_integer(to, row.integer(column));
+      if (cell.type != Type::integer) return false;
+      put_integer(to, cell.integer);
       return true;
     case Field::text:
-      if (!row.is_text(column)) return false;
-      put_text(to, row.text_view(column));
+      if (cell.type != Type::text) return false;
+      put_text(to, cell.bytes);
       return true;
-    case Field::maybe_text: {
-      const bool none = row.is_null(column);
-      to += none ? '\0' : '\1';
-      return none || put(to, row, column, Field::text);
-    }
-    case Field::maybe_real: {
-      const bool real = row.is_real(column);
-      to += real ? '\1' : '\0';
-      if (!real) return row.is_null(column);
-      put_big_endian(to, std::bit_cast<std::uint64_t>(row.real(column)));
+    case Field::maybe_text:
+      to += cell.type == Type::null ? '\0' : '\1';
+      return cell.type == Type::null || put(to, cell, Field::text);
+    case Field::maybe_real:
+      to += cell.type == Type::null ? '\0' : '\1';
+      if (cell.type == Type::null) return true;
+      if (cell.type != Type::real) return false;
+      put_big_endian(to, std::bit_cast<std::uint64_t>(cell.real));
       return true;
-    }
-    case Field::flag: {
-      const std::int64_t flag = row.is_integer(column) ? row.integer(column) : -1;
-      if (flag != 0 && flag != 1) return false;
-      to += flag != 0 ? '\1' : '\0';
+    case Field::flag:
+      if (cell.type != Type::integer || (cell.integer != 0 && cell.integer != 1)) return false;
+      to += static_cast<char>(cell.integer);
       return true;
-    }
     case Field::digest:
-      if (!row.is_blob(column) || row.blob(column).size() != 32) return false;
-      to.append(reinterpret_cast<const char*>(row.blob(column).data()), 32);
+      if (cell.type != Type::blob || cell.bytes.size() != 32) return false;
+      to += cell.bytes;
       return true;
   }
   return false;
@@ -142,7 +138,7 @@ int RowsDigest::add(const Row& row) {
   const std::size_t row_begin = bytes_.size();
   for (std::size_t i = 0; i < columns_.size(); ++i) {
     const std::size_t before = bytes_.size();
-    if (!put(bytes_, row, static_cast<int>(i), columns_[i].field)) return static_cast<int>(i);
+    if (!put(bytes_, row.peek(static_cast<int>(i)), columns_[i].field)) return static_cast<int>(i);
     if (with_tags_) column_bytes_[i].append(bytes_, before);
   }
   if (with_tags_) row_tags_.push_back(tag(std::string_view{bytes_}.substr(row_begin)));

@@ -92,6 +92,27 @@ Digest Row::digest(int column) const {
   return digest;
 }
 
+Row::Peek Row::peek(int column) const {
+  // Values of a statement in one thread need no protection; sqlite.org/c3ref/value.html.
+  sqlite3_value* const value = sqlite3_column_value(statement_.handle_, column);
+  const auto bytes = [&] {
+    const auto* data = static_cast<const char*>(sqlite3_value_blob(value));
+    return std::string_view{data ? data : "", static_cast<std::size_t>(sqlite3_value_bytes(value))};
+  };
+  switch (sqlite3_value_type(value)) {
+    case SQLITE_INTEGER:
+      return {Peek::Type::integer, sqlite3_value_int64(value), 0.0, {}};
+    case SQLITE_FLOAT:
+      return {Peek::Type::real, 0, sqlite3_value_double(value), {}};
+    case SQLITE_TEXT:
+      return {Peek::Type::text, 0, 0.0, bytes()};
+    case SQLITE_BLOB:
+      return {Peek::Type::blob, 0, 0.0, bytes()};
+    default:
+      return {};
+  }
+}
+
 int Row::columns() const { return sqlite3_column_count(statement_.handle_); }
 
 Statement::Statement(Connection& connection, std::string_view sql) : connection_(connection) {

@@ -70,6 +70,14 @@ class Row {
   /// A BLOB of 32 bytes; of any other size: cut or filled with zero bytes.
   Digest digest(int column) const;
   int columns() const;
+  /// One column looked at once, for walks over millions of rows. Views live until the next step.
+  struct Peek {
+    enum class Type : std::uint8_t { null, integer, real, text, blob } type = Type::null;
+    std::int64_t integer = 0;
+    double real = 0.0;
+    std::string_view bytes;  ///< of text or blob
+  };
+  Peek peek(int column) const;
 
  private:
   friend class Statement;

@@ -67,7 +67,7 @@ class Ranges {
   const RangeWalk& total() const { return total_; }
 
  private:
-  static constexpr std::int64_t span = 1000;
+  static constexpr std::int64_t span = 500;
 
   void take(std::int64_t range, const RangeWalk& walk) {
     const std::lock_guard lock(mutex_);
@@ -99,7 +99,11 @@ class Ranges {
 
 /// A connection for looking only, in the manner that the options ask for. Throws ProblemError.
 std::unique_ptr<Connection> look_at(const std::string& path, const VerifyOptions& options) {
-  if (!options.exclusive) return open_readable(path, options.archive ? ReadFrom::archive : ReadFrom::live, options.vfs);
+  if (!options.exclusive) {
+    auto connection = open_readable(path, options.archive ? ReadFrom::archive : ReadFrom::live, options.vfs);
+    connection->run("PRAGMA cache_size=-16384");  // a range of entries with all its rows stays in memory
+    return connection;
+  }
   auto connection = std::make_unique<Connection>(path, Access::read_write, options.vfs);
   connection->demand("locking_mode", "EXCLUSIVE", "exclusive");
   connection->run("PRAGMA query_only=1");
@@ -162,9 +166,24 @@ std::optional<Fault> page_fault(Connection& connection) {
 /// What is left to look at when all ranges agree.
 std::optional<Fault> rest_fault(Connection& connection, const VerifyOptions& options, std::int64_t newest) {
   if (auto fault = row_out_of_range(connection, options.from > 1 ? 0 : 1, newest)) return fault;
-  if (auto fault = stray_bytes(connection)) return fault;
-  return page_fault(connection);
+  return stray_bytes(connection);
 }
+
+/// The look at pages, by whichever thread: its fault counts only where everything else agrees, for it names no row.
+class Pages {
+ public:
+  void look(Connection& connection) {
+    try {
+      fault_ = page_fault(connection);
+    } catch (const Error& error) {
+      fault_ = file_fault(error.problem());
+    }
+  }
+  const std::optional<Fault>& fault() const { return fault_; }
+
+ private:
+  std::optional<Fault> fault_;
+};
 
 VerifyReport report_of(const RangeWalk& walk) {
   VerifyReport report;
@@ -213,17 +232,24 @@ VerifyReport walk_all(Connection& connection, Connection* second, const VerifyOp
     throw ProblemError({"verify_from_beyond", connection.path(), {{"newest", std::to_string(newest)}}});
   const Telling telling(options, newest - options.from + 1);
   Ranges ranges(options.from, newest, options.stop);
+  Pages pages;
   {
     std::jthread beside;
-    if (second) beside = std::jthread([&] { ranges.work(*second); });
+    if (second)
+      beside = std::jthread([&] {
+        pages.look(*second);
+        ranges.work(*second);
+      });
     if (options.from > 1) ranges.work_earlier_runs(connection);
     ranges.work(connection, [&] { telling.at(ranges.done()); });
   }
+  if (!second && !options.stop.stop_requested()) pages.look(connection);
   if (options.stop.stop_requested()) throw ProblemError({"verify_stopped", connection.path()});
   VerifyReport report = report_of(ranges.total());
   const auto printed = options.printed ? printed_fault(connection, *options.printed, newest) : std::nullopt;
   if (printed && (!report.first_fault || printed->entry < report.first_fault->entry)) report.first_fault = printed;
   if (!report.first_fault) report.first_fault = rest_fault(connection, options, newest);
+  if (!report.first_fault) report.first_fault = pages.fault();
   telling.end();
   return report;
 }

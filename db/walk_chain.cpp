@@ -3,11 +3,13 @@
 #include <vector>
 
 #include "db/chain.h"
+#include "db/glance.h"
 #include "db/hex.h"
 #include "db/projection.h"
 #include "db/sha256.h"
 #include "db/statement.h"
 #include "db/walk.h"
+#include "station/base/numbers.h"
 
 namespace probewright::db {
 
@@ -16,6 +18,9 @@ class Projections {
  public:
   explicit Projections(Connection& connection);
   std::optional<Fault> fault(std::string_view kind, std::int64_t number, const Body& data);
+  /// Whether the rows are surely those of the entry, told without making any of them. False says nothing: `fault` must
+  /// look.
+  bool surely_agree(std::string_view kind, std::int64_t number, const Glance& body, std::uint32_t data);
   /// A row of a table whose entry's number lies from first to last and that no entry has made: looked for only where
   /// there are more rows than agreed.
   std::optional<Fault> stray(Connection& connection, std::int64_t first, std::int64_t last);
@@ -97,14 +102,114 @@ std::optional<Fault> rows_fault(Statement& select, const ProjectedTable& table, 
   return std::nullopt;
 }
 
+bool is_hex_of(std::string_view text, std::span<const std::byte> bytes) {
+  constexpr std::string_view digits = "0123456789abcdef";
+  if (text.size() != 2 * bytes.size()) return false;
+  for (std::size_t i = 0; i < bytes.size(); ++i) {
+    const auto byte = std::to_integer<unsigned>(bytes[i]);
+    if (text[2 * i] != digits[byte >> 4] || text[2 * i + 1] != digits[byte & 15]) return false;
+  }
+  return true;
+}
+
+using Node = Glance::Node;
+
+bool is_text_of(const Row& row, int column, const Node& node) {
+  return node.kind == Glance::Kind::string && row.is_text(column) && row.text_view(column) == node.text;
+}
+
+bool is_integer_of(const Row& row, int column, const Node& node) {
+  return node.kind == Glance::Kind::integer && row.is_integer(column) && row.integer(column) == Glance::integer(node);
+}
+
+bool is_flag_of(const Row& row, int column, const Node& node) {
+  if (!row.is_integer(column)) return false;
+  return (node.kind == Glance::Kind::yes && row.integer(column) == 1) ||
+         (node.kind == Glance::Kind::no && row.integer(column) == 0);
+}
+
+bool is_decimal_of(const Row& row, int column, const Node& node) {
+  if (node.kind == Glance::Kind::null) return row.is_null(column);
+  const auto value = node.kind == Glance::Kind::string ? parse_double(node.text) : std::nullopt;
+  return value && row.is_real(column) && row.real(column) == *value;
+}
+
+bool is_digest_of(const Row& row, int column, const Node& node) {
+  return node.kind == Glance::Kind::string && row.is_blob(column) && row.blob(column).size() == 32 &&
+         is_hex_of(node.text, row.blob(column));
+}
+
+/// Only the empty list is simple enough.
+bool are_no_words(const Row& row, int column, const Node& node, std::uint32_t place) {
+  return node.kind == Glance::Kind::array && node.end == place + 1 && row.is_text(column) &&
+         row.text_view(column).empty();
+}
+
+bool is_member_of(const ProjectedColumn& column, const Row& row, int c, const Node& node, std::uint32_t place) {
+  switch (column.source) {
+    case Source::text:
+      return is_text_of(row, c, node);
+    case Source::integer:
+      return is_integer_of(row, c, node);
+    case Source::flag:
+      return is_flag_of(row, c, node);
+    case Source::decimal:
+      return is_decimal_of(row, c, node);
+    case Source::maybe_digest:
+      return node.kind == Glance::Kind::null ? row.is_null(c) : is_digest_of(row, c, node);
+    case Source::digest:
+      return is_digest_of(row, c, node);
+    case Source::words:
+      return are_no_words(row, c, node, place);
+    default:
+      return false;
+  }
+}
+
+/// Whether a row is surely the one that `from` (data, or an item of its list) makes.
+bool is_row_of(const ProjectedTable& table, const Row& row, std::int64_t number, std::int64_t at, const Glance& body,
+               std::uint32_t from) {
+  for (std::size_t i = 0; i < table.columns.size(); ++i) {
+    const ProjectedColumn& column = table.columns[i];
+    const int c = static_cast<int>(i);
+    if (column.source == Source::entry_number || column.source == Source::place) {
+      if (!row.is_integer(c) || row.integer(c) != (column.source == Source::place ? at : number)) return false;
+      continue;
+    }
+    if (body.at(from).kind != Glance::Kind::object) return false;
+    const auto member = body.find(from, column.key);
+    if (!member || !is_member_of(column, row, c, body.at(*member), *member)) return false;
+  }
+  return true;
+}
+
+/// As entry_fault_of below, for bodies that are simple: true where all surely agrees.
+bool surely_agrees(const Row& row, std::int64_t number, Glance& body, Projections& projections) {
+  if (!body.take(row.text_view(4))) return false;
+  constexpr std::string_view names[] = {"data", "kind", "number", "recipe", "time", "who"};
+  std::uint32_t places[6], node = Glance::first(0);
+  for (int i = 0; i < 6; ++i) {
+    if (node >= body.at(0).end || body.at(node).key != names[i]) return false;
+    places[i] = node;
+    node = body.at(node).end;
+  }
+  if (node != body.at(0).end || !is_text_of(row, 2, body.at(places[1])) || !is_text_of(row, 1, body.at(places[4])) ||
+      !is_text_of(row, 3, body.at(places[5])) || !is_integer_of(row, 0, body.at(places[2])) ||
+      body.at(places[3]).kind != Glance::Kind::integer || Glance::integer(body.at(places[3])) != recipe ||
+      body.at(places[0]).kind != Glance::Kind::object || (number == 1) != (row.text_view(2) == "ledger_begun"))
+    return false;
+  return projections.surely_agree(row.text_view(2), number, body, places[0]);
+}
+
 /// One entry: what follows from the hash before it, and what its columns and rows say.
 std::optional<Fault> entry_fault_of(const Row& row, std::int64_t number, const Digest& previous,
-                                    Projections& projections, Sha256& hash) {
+                                    Projections& projections, Sha256& hash, Glance& glance) {
   if (row.integer(0) != number) return entry_fault(number, "number", "is missing");
   if (!row.is_text(4)) return entry_fault(number, "body", "is not text");
   if (!row.is_blob(5) || row.blob(5).size() != 32) return entry_fault(number, "hash", "is not 32 bytes");
   if (hash.add(previous).add(row.text_view(4)).finish() != row.digest(5))
     return entry_fault(number, "hash", "is not that of the hash before it and this body");
+  if (surely_agrees(row, number, glance, projections)) return std::nullopt;
   const auto body = parse_body(row.text_view(4));
   if (!body) return entry_fault(number, "body", "is not canonical: " + body.error().what());
   if (auto fault = head_fault(row, number, *body)) return fault;
@@ -160,6 +265,28 @@ std::optional<Fault> Projections::fault(std::string_view kind, std::int64_t numb
   return std::nullopt;
 }
 
+bool Projections::surely_agree(std::string_view kind, std::int64_t number, const Glance& body, std::uint32_t data) {
+  std::int64_t counts[16] = {};
+  for (std::size_t t = 0; t < tables_.size(); ++t) {
+    const ProjectedTable& table = *tables_[t].table;
+    if (!makes_rows(table, kind)) continue;
+    if (*table.kind == '\0' || t >= std::size(counts)) return false;  // what other entries are about: they are few
+    std::uint32_t from = data, end = body.at(data).end;
+    if (*table.list != '\0') {
+      const auto list = body.find(data, table.list);
+      if (!list || body.at(*list).kind != Glance::Kind::array) return false;
+      from = Glance::first(*list), end = body.at(*list).end;
+    }
+    Row row = tables_[t].select->begin();
+    row.values(number);
+    for (; from < end; from = *table.list == '\0' ? end : body.at(from).end)
+      if (!row.step() || !is_row_of(table, row, number, counts[t]++, body, from)) return false;
+    if (row.step()) return false;
+  }
+  for (std::size_t t = 0; t < tables_.size() && t < std::size(counts); ++t) tables_[t].agreed += counts[t];
+  return true;
+}
+
 void Projections::count_anew() {
   for (Projected& projected : tables_) projected.agreed = 0;
 }
@@ -193,11 +320,12 @@ RangeWalk RangeWalker::walk_entries(std::int64_t first, std::int64_t last) {
   }
   walk.seal = {first - 1, *before};
   Sha256 hash;
+  Glance glance;
   Row row = connection_.begin(
       "SELECT number, time, kind, who, body, hash FROM entry WHERE number BETWEEN ? AND ? ORDER BY number");
   for (row.values(first, last); row.step();) {
     const std::int64_t number = walk.seal.entry + 1;
-    walk.fault = entry_fault_of(row, number, walk.seal.hash, *projections_, hash);
+    walk.fault = entry_fault_of(row, number, walk.seal.hash, *projections_, hash, glance);
     if (walk.fault) return walk;
     walk.seal = {number, row.digest(5)};
     ++walk.entries;
