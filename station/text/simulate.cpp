@@ -107,14 +107,14 @@ Result<Simulation> watched(const SimulatedDocuments& documents, const Simulation
 }  // namespace
 
 int simulate(const SimulateOptions& options, Console& console) {
+  const auto mix = mix_of(options.faults);
+  if (!mix) return console.refuse(mix.error());
   const auto configuration = chosen_configuration(options.choice);
   if (!configuration) return console.refuse(configuration.error());
   const auto meant = meant_by(options, *configuration);
   if (!meant) return console.refuse(meant.error());
   const auto certificates = simulated_certificates(*configuration);
   if (!certificates) return console.refuse(certificates.error());
-  const auto mix = mix_of(options.faults);
-  if (!mix) return console.refuse(mix.error());
   SimulationOptions asked = options.simulation;
   asked.faults = *mix;
   const SimulatedDocuments documents{meant->model->value, meant->sheet.value, *certificates};

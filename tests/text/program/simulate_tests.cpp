@@ -1,9 +1,9 @@
 #include <gmock/gmock.h>
 #include <gtest/gtest.h>
 
+#include <chrono>
 #include <csignal>
-#include <fstream>
-#include <sstream>
+#include <thread>
 
 #include "program.h"
 
@@ -31,7 +31,8 @@ TEST(Simulate, TellsItsEstimatesAndWhatTheyRestOn) {
 
 TEST(Simulate, GivesTheSameJsonWhateverTheThreads) {
   const Folder folder;
-  const std::vector<std::string> arguments{"simulate", "--probes", "200", "--seed", "5", "--retest", "--json"};
+  const std::vector<std::string> arguments{"simulate", "--model", "AQ-20",    "--probes", "200",
+                                           "--seed",   "5",       "--retest", "--json"};
   auto with_threads = [&](const std::string& count) {
     auto all = arguments;
     all.insert(all.end(), {"--threads", count});
@@ -53,7 +54,7 @@ TEST(Simulate, GivesTheSameJsonWhateverTheThreads) {
 // A person stops a long simulation: what there is is told, and marked.
 TEST(Simulate, EndsEarlyWithWhatThereIs) {
   const Folder folder;
-  program::Beside beside{folder, {"simulate", "--probes", "1000000", "--json"}, "simulate"};
+  program::Beside beside{folder, {"simulate", "--model", "AQ-35", "--probes", "1000000", "--json"}, "simulate"};
   std::this_thread::sleep_for(std::chrono::seconds{2});
   EXPECT_EQ(beside.end_by(SIGINT), 0);
   const auto json = nlohmann::json::parse(beside.out());
@@ -72,8 +73,9 @@ TEST(Simulate, RefusesWhatMakesNoSense) {
     EXPECT_THAT(told.err, HasSubstr(words));
   };
   refused({"--faults", "many"}, "does not say which probes are faulty");
-  refused({"--faults", "1.5"}, "makes no sense");
-  refused({"--stations", "100"}, "are too few for 100 stations");
+  refused({"--model", "AQ-20", "--faults", "1.5"}, "makes no sense");
+  refused({"--model", "AQ-20", "--stations", "100"}, "are too few for 100 stations");
+  refused({}, "which model is simulated is not told: there is AQ-20, AQ-35");
   refused({"--model", "AQ-99"}, "has no model AQ-99");
   refused({"--probes", "0"}, "is not a whole number");
   refused({"--sheet", folder.write("sheet.yaml", "sheet: AQ-20\n")}, "sheet.yaml");
