@@ -38,7 +38,7 @@ void make(const std::string& path, std::int64_t runs) {
   const auto begin = Clock::now();
   auto store = db::Store::open(store_options(path), clock).value();
   std::int64_t made = 0;
-  make_runs(*store, {runs, 100, 500}, [&](std::int64_t more) {
+  make_runs(*store, {runs, 100, 10000}, [&](std::int64_t more) {
     made += more;
     if (made % 100000 == 0) say("    " + std::to_string(made) + " runs after " + fixed(since(begin), 0) + " s");
   });
