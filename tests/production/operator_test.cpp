@@ -166,9 +166,7 @@ TEST(Operator, WorksThroughALotInAllNestsAtOnce) {
     const Piece& piece = shop.person.pieces()[attempt.piece];
     const auto fault = emulated::parse_fault(piece.fault);
     if (piece.fault.empty()) EXPECT_EQ(attempt.outcome.verdict, RunVerdict::pass) << attempt.outcome.cause_words;
-    // The routine does not hold the ID against the wavelength yet.
-    if (fault && is_hard(*fault) && *fault != emulated::ProbeFault::id_other_bin)
-      EXPECT_EQ(attempt.outcome.verdict, RunVerdict::fail) << piece.fault;
+    if (fault && is_hard(*fault)) EXPECT_EQ(attempt.outcome.verdict, RunVerdict::fail) << piece.fault;
   }
   EXPECT_EQ(nests.size(), 4u);
   // Four nests side by side: the lot takes less than half of what its runs take one after the other.
@@ -218,9 +216,9 @@ INSTANTIATE_TEST_SUITE_P(Of, EachMistake,
 
 TEST(Operator, MistakesAtRandomNeverMixUpProbes) {
   std::map<Mistake, int> made;
-  for (std::uint64_t seed = 1; seed <= 6; ++seed) {
+  for (std::uint64_t seed = 1; seed <= 4; ++seed) {
     SCOPED_TRACE(seed);
-    Shop shop{3, pieces_of(emulated::demo_lot("AQ-20", 48, 24, seed)), {0.6, seed, {}}, seed};
+    Shop shop{3, pieces_of(emulated::demo_lot("AQ-20", 48, 20, seed)), {0.7, seed, {}}, seed};
     ASSERT_TRUE(shop.work());
     shop.expect_right_pairs();
     for (const auto& blunder : shop.person.done().blunders) {
@@ -229,9 +227,9 @@ TEST(Operator, MistakesAtRandomNeverMixUpProbes) {
       EXPECT_FALSE(blunder.told.empty()) << slug(blunder.mistake);
       EXPECT_FALSE(blunder.taken) << slug(blunder.mistake);
     }
-    EXPECT_EQ(shop.verdicts().size() + shop.person.done().left_out.size(), 24u);
+    EXPECT_EQ(shop.verdicts().size() + shop.person.done().left_out.size(), 20u);
   }
-  EXPECT_EQ(made.size(), production::all_mistakes().size()) << "each kind comes up in 86 draws of nine kinds";
+  EXPECT_EQ(made.size(), production::all_mistakes().size()) << "each kind comes up in 56 draws of nine kinds";
 }
 
 TEST(Operator, WithOneNestAMistakeThatNeedsTwoIsToldAsNotMade) {
