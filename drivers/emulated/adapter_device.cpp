@@ -105,7 +105,7 @@ asio::awaitable<void> AdapterDevice::answer(Shared self, std::shared_ptr<Outbox>
 void AdapterDevice::begin_stream(Shared self, std::shared_ptr<Outbox> outbox) {
   const Capture capture = *self->capture_;
   asio::co_spawn(self->executor_, stream(self, std::move(outbox), capture, self->captures_), end_of_coroutine);
-  if (self->capture_began_) self->capture_began_(capture.start_s);
+  if (const auto began = self->capture_began_) began(capture.start_s);  // a copy: who hears may take it back meanwhile
 }
 
 asio::awaitable<void> AdapterDevice::stream(Shared self, std::shared_ptr<Outbox> outbox, Capture capture,
