@@ -73,9 +73,11 @@ int unread(int slave) {
 
 asio::awaitable<void> drain_line(LineClock* clock, std::shared_ptr<Descriptor> line, std::shared_ptr<OwnedFd> slave,
                                  SteadyTime deadline) {
-  // The kernel hands bytes over in pieces, so an empty buffer must be seen empty again a moment later.
+  // The kernel hands bytes over in pieces and on a thread of its own, which a busy machine lets wait: an empty buffer must
+  // be seen empty several times in a row.
   constexpr auto moment = std::chrono::milliseconds(2);
-  for (int empty = 0; empty < 2;) {
+  constexpr int looks = 8;
+  for (int empty = 0; empty < looks;) {
     if (!line->is_open()) throw PortLost(line->name(), "closed");
     if (clock->steady_now() > deadline) throw DeadlinePassed(line->name());
     empty = unread(slave->get()) == 0 ? empty + 1 : 0;

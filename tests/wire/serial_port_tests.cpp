@@ -192,7 +192,7 @@ TEST_F(Serial, DrainWaitsUntilTheLastBytesWereRead) {
   const auto port = open(there->slave_path()).value();
   const auto drained = line.start([&]() -> asio::awaitable<void> {
     co_await there->write_all(bytes_of("unread"), line.in(5s));
-    co_await there->drain(line.in(30ms));
+    co_await there->drain(line.in(100ms));
   });
   EXPECT_TRUE(line.run_until_done(*drained));
   EXPECT_EQ(drained->end(), "deadline passed");
