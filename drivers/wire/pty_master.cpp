@@ -73,8 +73,8 @@ int unread(int slave) {
 
 asio::awaitable<void> drain_line(LineClock* clock, std::shared_ptr<Descriptor> line, std::shared_ptr<OwnedFd> slave,
                                  SteadyTime deadline) {
-  // The kernel hands bytes over in pieces and on a thread of its own, which a busy machine lets wait: an empty buffer must
-  // be seen empty several times in a row.
+  // The kernel hands bytes over in pieces and on a thread of its own, which a busy machine lets wait: an empty buffer
+  // must be seen empty several times in a row.
   constexpr auto moment = std::chrono::milliseconds(2);
   constexpr int looks = 8;
   for (int empty = 0; empty < looks;) {
