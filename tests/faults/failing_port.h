@@ -51,7 +51,7 @@ inline sequence::PortOpener failing_ports(sequence::PortOpener ports, std::share
     // Captures go by value into a coroutine of its own: the source may be gone when it resumes.
     const auto open = [](wire::PortSource inner,
                          std::shared_ptr<PortFailure> of) -> wire::asio::awaitable<std::unique_ptr<wire::Port>> {
-      if (of->strikes()) of->strike("a port");
+      if (of->strikes()) throw wire::PortLost("a port", "it does not open, as planned");
       auto port = co_await inner();
       co_return std::make_unique<FailingPort>(std::move(port), std::move(of));
     };

@@ -103,10 +103,10 @@ void fail_each(PortFailure::How how, bool from_then_on, std::int64_t most) {
   EXPECT_EQ(counts.passed + counts.voided + counts.not_tested, tried);
 }
 
-TEST(PortFaults, EachCallLosesThePortOnce) { fail_each(PortFailure::How::lost, false, 250); }
-TEST(PortFaults, EachCallLosesThePortFromThenOn) { fail_each(PortFailure::How::lost, true, 100); }
-TEST(PortFaults, EachCallIsLateOnce) { fail_each(PortFailure::How::late, false, 250); }
-TEST(PortFaults, EachCallIsLateFromThenOn) { fail_each(PortFailure::How::late, true, 100); }
+TEST(PortFaults, EachCallLosesThePortOnce) { fail_each(PortFailure::How::lost, false, 120); }
+TEST(PortFaults, EachCallLosesThePortFromThenOn) { fail_each(PortFailure::How::lost, true, 60); }
+TEST(PortFaults, EachCallIsLateOnce) { fail_each(PortFailure::How::late, false, 120); }
+TEST(PortFaults, EachCallIsLateFromThenOn) { fail_each(PortFailure::How::late, true, 60); }
 
 }  // namespace
 }  // namespace probewright

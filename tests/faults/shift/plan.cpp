@@ -72,7 +72,7 @@ void draw_size(Draw& draw, ScenarioFault& fault) {
     case BenchFault::byte_doubled:
       return draw_when(draw, fault, fault.per_byte, bytes_in_a_shift);
     case BenchFault::bytes_paused:
-      fault.by_s = draw.spread(0.01, 2.0);
+      fault.by_s = draw.spread(0.05, 2.0);
       return draw_when(draw, fault, fault.per_byte, bytes_in_a_shift);
     case BenchFault::bytes_split:
       fault.by_s = draw.spread(1e-4, 0.1);
@@ -81,7 +81,7 @@ void draw_size(Draw& draw, ScenarioFault& fault) {
       fault.bytes = static_cast<int>(draw.spread(1.0, 500.0));
       return draw_when(draw, fault, fault.per_reply, messages_in_a_shift);
     case BenchFault::reply_late:
-      fault.by_s = draw.spread(0.1, 3.0);
+      fault.by_s = draw.spread(0.2, 2.0);
       return draw_when(draw, fault, fault.per_reply, messages_in_a_shift);
     case BenchFault::reply_missing:
       return draw_when(draw, fault, fault.per_reply, messages_in_a_shift);
