@@ -93,8 +93,8 @@ bool put(std::string& to, const Row::Peek& cell, Field field) {
   return false;
 }
 
-Tag tag(std::string_view bytes) {
-  const Digest digest = sha256(bytes);
+Tag tag(Sha256& hash, std::string_view bytes) {
+  const Digest digest = hash.add(bytes).finish();
   Tag first{};
   std::copy_n(digest.begin(), first.size(), first.begin());
   return first;
@@ -141,14 +141,14 @@ int RowsDigest::add(const Row& row) {
     if (!put(bytes_, row.peek(static_cast<int>(i)), columns_[i].field)) return static_cast<int>(i);
     if (with_tags_) column_bytes_[i].append(bytes_, before);
   }
-  if (with_tags_) row_tags_.push_back(tag(std::string_view{bytes_}.substr(row_begin)));
+  if (with_tags_) row_tags_.push_back(tag(*hash_, std::string_view{bytes_}.substr(row_begin)));
   ++rows_;
   return -1;
 }
 
 std::vector<Tag> RowsDigest::column_tags() const {
   std::vector<Tag> tags;
-  for (const std::string& bytes : column_bytes_) tags.push_back(tag(bytes));
+  for (const std::string& bytes : column_bytes_) tags.push_back(tag(*hash_, bytes));
   return tags;
 }
 

@@ -1,6 +1,7 @@
 #pragma once
 #include <array>
 #include <cstdint>
+#include <memory>
 #include <span>
 #include <string>
 #include <string_view>
@@ -49,7 +50,9 @@ class RowsDigest {
  public:
   enum class Tags { none, wanted };
   explicit RowsDigest(std::span<const DigestedColumn> columns, Tags tags = Tags::wanted)
-      : columns_(columns), with_tags_(tags == Tags::wanted), column_bytes_(with_tags_ ? columns.size() : 0) {}
+      : columns_(columns), with_tags_(tags == Tags::wanted), column_bytes_(with_tags_ ? columns.size() : 0) {
+    if (with_tags_) hash_ = std::make_unique<Sha256>();
+  }
   /// Forgets all rows and keeps the memory.
   void clear();
   /// Takes the row that stands in `row`, whose columns are those of the select. Returns the place of a column that
@@ -67,6 +70,7 @@ class RowsDigest {
   std::string bytes_;
   std::vector<std::string> column_bytes_;
   std::vector<Tag> row_tags_;
+  std::unique_ptr<Sha256> hash_;  ///< one for all tags: to make one costs more than a short digest
 };
 
 /// SHA-256 over recipe, run, number of readings, readings, number of captures, captures.

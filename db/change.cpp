@@ -201,18 +201,6 @@ struct Judged {
   std::vector<std::string> checks;
 };
 
-Judged judged_readings(Connection& connection, RunId run) {
-  Judged judged;
-  Row row = connection.begin("SELECT check_slug, ok FROM reading WHERE run = ?");
-  for (row.values(run.value); row.step();) {
-    judged.checks.push_back(row.text(0));
-    judged.ok += row.text_view(1) == "ok";
-    judged.not_ok += row.text_view(1) == "not_ok";
-    judged.none += row.text_view(1) == "none";
-  }
-  return judged;
-}
-
 /// What speaks against the verdict, or empty.
 std::string contradiction(const RunClosed& closed, const Judged& judged) {
   if (closed.verdict == "void") return closed.cause.empty() ? "a void names its cause" : "";
@@ -229,24 +217,44 @@ std::string contradiction(const RunClosed& closed, const Judged& judged) {
   return "";
 }
 
+/// Digests the rows of a run; `each` sees every row that stands in the select.
+template <class Each>
 RowsDigest digest_rows(Connection& connection, const std::string& select, std::span<const DigestedColumn> columns,
-                       RunId run) {
+                       RunId run, const Each& each) {
   RowsDigest digest(columns);
   Row row = connection.begin(select.c_str());
-  for (row.values(run.value); row.step();)
+  for (row.values(run.value); row.step(); each(row))
     if (digest.add(row) >= 0) throw std::logic_error("a row of this run holds a type that cannot be there");
   return digest;
+}
+
+int column_of(std::span<const DigestedColumn> columns, std::string_view name) {
+  const auto named = [name](const DigestedColumn& column) { return column.name == name; };
+  return static_cast<int>(std::find_if(columns.begin(), columns.end(), named) - columns.begin());
+}
+
+/// Digests readings and notes what they say about the verdict.
+RowsDigest digest_readings(Connection& connection, RunId run, Judged& judged) {
+  const int slug = column_of(reading_columns(), "check_slug"), ok = column_of(reading_columns(), "ok");
+  return digest_rows(connection, select_readings(), reading_columns(), run, [&](const Row& row) {
+    judged.checks.push_back(row.text(slug));
+    const std::string_view word = row.text_view(ok);
+    judged.ok += word == "ok";
+    judged.not_ok += word == "not_ok";
+    judged.none += word == "none";
+  });
 }
 
 }  // namespace
 
 Seal Change::close_run(const RunClosed& closed) {
   need_open(closed.run);
-  if (const std::string against = contradiction(closed, judged_readings(store_.connection_, closed.run));
-      !against.empty())
+  Judged judged;
+  const RowsDigest readings = digest_readings(store_.connection_, closed.run, judged);
+  if (const std::string against = contradiction(closed, judged); !against.empty())
     refuse("run_verdict_contradicts", name_of(closed.run), {{"verdict", closed.verdict}, {"against", against}});
-  const RowsDigest readings = digest_rows(store_.connection_, select_readings(), reading_columns(), closed.run);
-  const RowsDigest captures = digest_rows(store_.connection_, select_captures(), capture_columns(), closed.run);
+  const RowsDigest captures =
+      digest_rows(store_.connection_, select_captures(), capture_columns(), closed.run, [](const Row&) {});
   append("run_closed", closed.who,
          Body::Object{{"bench", closed.bench},
                       {"capture_column_tags", tags_text(captures.column_tags())},

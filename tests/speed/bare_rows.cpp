@@ -3,6 +3,7 @@
 #include <sqlite3.h>
 
 #include <chrono>
+#include <ctime>
 #include <stdexcept>
 
 #include "db/schema/schema.h"
@@ -60,7 +61,7 @@ Rows read(sqlite3* db, const Table& table, const std::vector<std::int64_t>& ends
 
 }  // namespace
 
-double write_bare(const std::string& from, const std::string& to, const std::vector<std::int64_t>& ends) {
+BareTime write_bare(const std::string& from, const std::string& to, const std::vector<std::int64_t>& ends) {
   sqlite3 *source = nullptr, *target = nullptr;
   demand(sqlite3_open_v2(from.c_str(), &source, SQLITE_OPEN_READONLY, nullptr), source);
   std::vector<Rows> all;
@@ -76,6 +77,7 @@ double write_bare(const std::string& from, const std::string& to, const std::vec
   for (const Rows& rows : all)
     demand(sqlite3_prepare_v2(target, rows.insert.c_str(), -1, &inserts.emplace_back(), nullptr), target);
   const auto begin = std::chrono::steady_clock::now();
+  const std::clock_t cpu_begin = std::clock();
   for (std::size_t group = 0; group < ends.size(); ++group) {
     run("BEGIN IMMEDIATE");
     // An entry's run must be there before its readings, and the closing row after them.
@@ -88,7 +90,8 @@ double write_bare(const std::string& from, const std::string& to, const std::vec
       }
     run("COMMIT");
   }
-  const std::chrono::duration<double> took = std::chrono::steady_clock::now() - begin;
+  const BareTime took{std::chrono::duration<double>(std::chrono::steady_clock::now() - begin).count(),
+                      static_cast<double>(std::clock() - cpu_begin) / CLOCKS_PER_SEC};
   for (sqlite3_stmt* insert : inserts) sqlite3_finalize(insert);
   for (Rows& rows : all)
     for (auto& group : rows.of_group)
@@ -96,7 +99,7 @@ double write_bare(const std::string& from, const std::string& to, const std::vec
         for (sqlite3_value* value : values) sqlite3_value_free(value);
   sqlite3_close(source);
   sqlite3_close(target);
-  return took.count();
+  return took;
 }
 
 }  // namespace probewright::speed
