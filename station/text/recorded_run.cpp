@@ -72,11 +72,17 @@ Result<RecordedRun> run_in(const Body& header, std::string_view where) {
 std::vector<std::pair<std::string, const DocumentText*>> documents_of(const Configuration& configuration) {
   std::vector<std::pair<std::string, const DocumentText*>> all;
   const auto add = [&](const DocumentText& document) {
-    const auto path = std::filesystem::path{document.file}.lexically_relative(configuration.folder);
-    all.emplace_back(path.generic_string(), &document);
+    const auto path = std::filesystem::path{document.file}.lexically_relative(configuration.folder).generic_string();
+    const bool there = std::any_of(all.begin(), all.end(), [&](const auto& item) { return item.first == path; });
+    if (!there) all.emplace_back(path, &document);  // two models may name one table
   };
   add(configuration.station.document);
-  for (const auto& [name, model] : configuration.models) add(model.document);
+  for (const auto& [name, model] : configuration.models) {
+    add(model.document);
+    for (const DocumentText& part : model.parts) add(part);
+  }
+  if (configuration.diagnosis) add(configuration.diagnosis->document);
+  if (configuration.people) add(configuration.people->document);
   for (const auto& [name, sheet] : configuration.sheets) add(sheet.document);
   for (const auto& [name, certificate] : configuration.phantom_certificates) add(certificate.document);
   for (const auto& [name, certificate] : configuration.adapter_certificates) add(certificate.document);

@@ -81,14 +81,15 @@ std::string words(const Fault& fault) {
 /// Which of several set points deviates most may change with the noise, and the sign with it.
 bool tells_the_largest(const std::string& check) { return check.ends_with("_modulation_deviation"); }
 
-/// A capture that was asked for again has other noise; it must agree within the uncertainty that it claims.
+/// A capture that was asked for again has other noise; both must agree within the uncertainty that they claim: that of
+/// a difference of two is sqrt(2) times that of one.
 void expect_right(const measure::Reading& reading, const measure::Reading& clean) {
   ASSERT_EQ(reading.value.has_value(), clean.value.has_value()) << reading.check << " " << reading.none_reason;
   if (!reading.value) return;
   const bool size_only = tells_the_largest(reading.check);
   const double is = size_only ? std::abs(*reading.value) : *reading.value;
   const double was = size_only ? std::abs(*clean.value) : *clean.value;
-  EXPECT_LE(std::abs(is - was), clean.expanded_uncertainty.value_or(0.0)) << reading.check;
+  EXPECT_LE(std::abs(is - was), std::sqrt(2.0) * clean.expanded_uncertainty.value_or(0.0)) << reading.check;
 }
 
 struct Counts {
